@@ -8,7 +8,13 @@ const table = {
   'engine/study': ['engine/spans', 'engine/numbers'],
   'engine/text': ['engine/spans', 'engine/numbers'],
   'engine/model': ['engine/numbers'],
-  'engine/themes': ['engine/model', 'engine/text', 'engine/study', 'engine/spans', 'engine/numbers'],
+  'engine/themes': [
+    'engine/model',
+    'engine/text',
+    'engine/study',
+    'engine/spans',
+    'engine/numbers',
+  ],
   'engine/evidence': [
     'engine/model',
     'engine/text',

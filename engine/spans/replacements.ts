@@ -13,7 +13,11 @@ export type Side = 'before' | 'after';
  * overlap. An offset inside a replaced stretch moves to the stretch's new start ('before') or new
  * end ('after'); so does one at a pure insertion.
  */
-export function mapOffset(offset: number, replacements: readonly Replacement[], side: Side): number {
+export function mapOffset(
+  offset: number,
+  replacements: readonly Replacement[],
+  side: Side,
+): number {
   let shift = 0;
   for (const { start, end, inserted } of replacements) {
     if (offset < start) break;

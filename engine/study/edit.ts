@@ -1,0 +1,173 @@
+import type { Replacement, Span, Turn } from '../spans/index.ts';
+import type {
+  BlobRef,
+  Coding,
+  CodingId,
+  Definition,
+  Fit,
+  FitId,
+  Memo,
+  MemoId,
+  None,
+  Participant,
+  ParticipantId,
+  Reader,
+  SettingValue,
+  Speaker,
+  Theme,
+  ThemeId,
+  Transcript,
+  TranscriptId,
+} from './study.ts';
+
+/** What a revision of a transcript's text replaces. */
+export interface TextState {
+  readonly text: BlobRef;
+  readonly length: number;
+  readonly turns: readonly Turn[];
+}
+
+/** The part of a coding that can be changed afterwards. */
+export type CodingState = Pick<Coding, 'theme' | 'standing' | 'span' | 'memo'>;
+
+/**
+ * One decision, in the past tense, as plain data. Each carries what it replaces, so that its inverse
+ * needs nothing but the edit itself and the trail can be read without replaying it. The `kind` is
+ * the stable code in the file; what people read is in main/sentences.
+ */
+export type Edit =
+  | { readonly kind: 'studyStarted'; readonly study: string; readonly name: string }
+  | { readonly kind: 'studyRenamed'; readonly from: string; readonly to: string }
+  | {
+      readonly kind: 'settingsChanged';
+      /** `null` stands for "not set: the default". */
+      readonly changes: readonly {
+        readonly key: string;
+        readonly from: SettingValue;
+        readonly to: SettingValue;
+      }[];
+    }
+  | { readonly kind: 'readerAdded'; readonly reader: Reader }
+  | { readonly kind: 'readerRemoved'; readonly reader: Reader }
+  | { readonly kind: 'transcriptGathered'; readonly transcript: Transcript }
+  | { readonly kind: 'transcriptRemoved'; readonly transcript: Transcript }
+  | {
+      readonly kind: 'transcriptRenamed';
+      readonly transcript: TranscriptId;
+      readonly from: string;
+      readonly to: string;
+    }
+  | {
+      readonly kind: 'speakersAssigned';
+      readonly transcript: TranscriptId;
+      readonly from: readonly Speaker[];
+      readonly to: readonly Speaker[];
+    }
+  | {
+      readonly kind: 'textRevised';
+      readonly transcript: TranscriptId;
+      readonly from: TextState;
+      readonly to: TextState;
+      readonly replacements: readonly Replacement[];
+      /** Spans that mapping does not bring where they belong, and where that is. */
+      readonly placed: readonly { readonly id: string; readonly span: Span }[];
+      /** Spans as they are before, which mapping back would not restore (see `spansLost`). */
+      readonly lost: readonly { readonly id: string; readonly span: Span }[];
+    }
+  | { readonly kind: 'participantAdded'; readonly participant: Participant }
+  | { readonly kind: 'participantRemoved'; readonly participant: Participant }
+  | {
+      readonly kind: 'participantDescribed';
+      readonly participant: ParticipantId;
+      readonly from: Omit<Participant, 'id'>;
+      readonly to: Omit<Participant, 'id'>;
+    }
+  | { readonly kind: 'themeAdded'; readonly theme: Theme }
+  | { readonly kind: 'themeRemoved'; readonly theme: Theme }
+  | {
+      readonly kind: 'themeRenamed';
+      readonly theme: ThemeId;
+      readonly from: string | null;
+      readonly to: string | null;
+    }
+  | {
+      readonly kind: 'themeDefined';
+      readonly theme: ThemeId;
+      readonly from: { readonly version: number; readonly definition: Definition };
+      readonly to: { readonly version: number; readonly definition: Definition };
+    }
+  | { readonly kind: 'themePinned'; readonly theme: ThemeId }
+  | { readonly kind: 'themeUnpinned'; readonly theme: ThemeId }
+  | { readonly kind: 'themeSetAside'; readonly theme: ThemeId }
+  | { readonly kind: 'themeBroughtBack'; readonly theme: ThemeId }
+  | {
+      readonly kind: 'themesMerged';
+      readonly into: ThemeId;
+      readonly from: readonly ThemeId[];
+    }
+  | {
+      readonly kind: 'themesUnmerged';
+      readonly into: ThemeId;
+      readonly from: readonly ThemeId[];
+    }
+  | {
+      readonly kind: 'themesOrdered';
+      readonly from: readonly ThemeId[];
+      readonly to: readonly ThemeId[];
+    }
+  | { readonly kind: 'wordSeeded'; readonly theme: ThemeId; readonly word: string }
+  | { readonly kind: 'wordUnseeded'; readonly theme: ThemeId; readonly word: string }
+  | { readonly kind: 'wordShutOut'; readonly theme: ThemeId; readonly word: string }
+  | { readonly kind: 'wordLetIn'; readonly theme: ThemeId; readonly word: string }
+  | { readonly kind: 'codingMade'; readonly coding: Coding }
+  | { readonly kind: 'codingRemoved'; readonly coding: Coding }
+  | {
+      readonly kind: 'codingRevised';
+      readonly transcript: TranscriptId;
+      readonly coding: CodingId;
+      readonly from: CodingState;
+      readonly to: CodingState;
+    }
+  | { readonly kind: 'noneMarked'; readonly none: None }
+  | { readonly kind: 'noneCleared'; readonly none: None }
+  | { readonly kind: 'memoWritten'; readonly memo: Memo }
+  | { readonly kind: 'memoErased'; readonly memo: Memo }
+  | {
+      readonly kind: 'memoRevised';
+      readonly memo: MemoId;
+      readonly from: string;
+      readonly to: string;
+    }
+  | {
+      readonly kind: 'modelFitted';
+      readonly fit: Fit;
+      /** Candidate themes that this fit found. */
+      readonly found: readonly Theme[];
+      /** The fit that was on screen before. */
+      readonly before: FitId | null;
+    }
+  | { readonly kind: 'fitChosen'; readonly from: FitId | null; readonly to: FitId | null }
+  | {
+      readonly kind: 'fitRenamed';
+      readonly fit: FitId;
+      readonly from: string | null;
+      readonly to: string | null;
+    };
+
+export type EditKind = Edit['kind'];
+export type EditOf<Kind extends EditKind> = Extract<Edit, { readonly kind: Kind }>;
+
+/** An edit with its place in the trail. */
+export interface Entry {
+  /** Sequence number of its record in the file; ascends, with gaps where blobs stand. */
+  readonly sequence: number;
+  /** ISO 8601 in UTC, as the machine's clock gave it. */
+  readonly at: string;
+  /** The reader's id, or a fixed word for a program acting without one ("command line"). */
+  readonly by: string;
+  /** Edits of one gesture share a group and are undone together. */
+  readonly group?: string;
+  /** The sequence number of the edit that this one takes back (an undo, or the undo of one). */
+  readonly undoes?: number;
+  readonly edit: Edit;
+}

@@ -1,0 +1,109 @@
+import type { Span } from '../../spans/index.ts';
+import { done, refused, type Refusal } from '../refusal.ts';
+import type { Coding, Study, ThemeId } from '../study.ts';
+import { label } from './themes.ts';
+import { sameJson, withEntry, withoutEntry, type Rules } from './rule.ts';
+
+export const codingRules: Rules<
+  'codingMade' | 'codingRemoved' | 'codingRevised' | 'noneMarked' | 'noneCleared'
+> = {
+  codingMade: {
+    apply(study, { coding }) {
+      const fault =
+        spanFault(study, coding.transcript, coding.span) ?? themeFault(study, coding.theme);
+      if (fault !== null) return fault;
+      const here = study.codings.get(coding.transcript) ?? new Map<string, Coding>();
+      if (here.has(coding.id)) return refused('already there', coding.id);
+      return done(withCodings(study, coding.transcript, withEntry(here, coding.id, coding)));
+    },
+    inverse: ({ coding }) => ({ kind: 'codingRemoved', coding }),
+  },
+
+  codingRemoved: {
+    apply(study, { coding }) {
+      const here = study.codings.get(coding.transcript);
+      const current = here?.get(coding.id);
+      if (here === undefined || current === undefined) return refused('unknown coding', coding.id);
+      if (!sameJson(current, coding)) return refused('changed since', coding.id);
+      return done(withCodings(study, coding.transcript, withoutEntry(here, coding.id)));
+    },
+    inverse: ({ coding }) => ({ kind: 'codingMade', coding }),
+  },
+
+  codingRevised: {
+    apply(study, { transcript, coding: id, from, to }) {
+      const here = study.codings.get(transcript);
+      const current = here?.get(id);
+      if (here === undefined || current === undefined) return refused('unknown coding', id);
+      const { theme, standing, span, memo } = current;
+      if (!sameJson({ theme, standing, span, memo }, from)) return refused('changed since', id);
+      const fault =
+        spanFault(study, transcript, to.span) ??
+        (to.theme === theme ? null : themeFault(study, to.theme));
+      if (fault !== null) return fault;
+      return done(withCodings(study, transcript, withEntry(here, id, { ...current, ...to })));
+    },
+    inverse: ({ transcript, coding, from, to }) => ({
+      kind: 'codingRevised',
+      transcript,
+      coding,
+      from: to,
+      to: from,
+    }),
+  },
+
+  noneMarked: {
+    apply(study, { none }) {
+      const fault = spanFault(study, none.transcript, none.span);
+      if (fault !== null) return fault;
+      const here = study.nones.get(none.transcript) ?? new Map();
+      if (here.has(none.id)) return refused('already there', none.id);
+      return done({
+        ...study,
+        nones: withEntry(study.nones, none.transcript, withEntry(here, none.id, none)),
+      });
+    },
+    inverse: ({ none }) => ({ kind: 'noneCleared', none }),
+  },
+
+  noneCleared: {
+    apply(study, { none }) {
+      const here = study.nones.get(none.transcript);
+      const current = here?.get(none.id);
+      if (here === undefined || current === undefined) return refused('unknown coding', none.id);
+      if (!sameJson(current, none)) return refused('changed since', none.id);
+      return done({
+        ...study,
+        nones: withEntry(study.nones, none.transcript, withoutEntry(here, none.id)),
+      });
+    },
+    inverse: ({ none }) => ({ kind: 'noneMarked', none }),
+  },
+};
+
+function withCodings(
+  study: Study,
+  transcript: string,
+  codings: ReadonlyMap<string, Coding>,
+): Study {
+  return { ...study, codings: withEntry(study.codings, transcript, codings) };
+}
+
+/** Refuses a span that is empty, reversed, fractional or past the end of its transcript. */
+export function spanFault(study: Study, transcript: string, span: Span): Refusal | null {
+  const current = study.transcripts.get(transcript);
+  if (current === undefined) return refused('unknown transcript', transcript);
+  const { start, end } = span;
+  const whole = Number.isInteger(start) && Number.isInteger(end);
+  if (!whole || start < 0 || end <= start || end > current.length) {
+    return refused('outside the text', current.name);
+  }
+  return null;
+}
+
+function themeFault(study: Study, id: ThemeId): Refusal | null {
+  const theme = study.themes.get(id);
+  if (theme === undefined) return refused('unknown theme', id);
+  if (theme.mergedInto !== null) return refused('merged theme', label(theme));
+  return null;
+}

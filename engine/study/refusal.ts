@@ -1,0 +1,50 @@
+/** Why an edit cannot be made. main/sentences turns each code into words. */
+export type RefusalCode =
+  | 'already there'
+  | 'changed since'
+  | 'codings remain'
+  | 'empty name'
+  | 'fit is in use'
+  | 'merged theme'
+  | 'merge into itself'
+  | 'name taken'
+  | 'no speaker'
+  | 'not a participant'
+  | 'nothing to undo'
+  | 'outside the text'
+  | 'participant in use'
+  | 'same as before'
+  | 'shut out everywhere'
+  | 'study not started'
+  | 'study already started'
+  | 'theme by hand'
+  | 'theme in use'
+  | 'theme set aside'
+  | 'unknown coding'
+  | 'unknown fit'
+  | 'unknown memo'
+  | 'unknown participant'
+  | 'unknown reader'
+  | 'unknown theme'
+  | 'unknown transcript'
+  | 'word not seeded there'
+  | 'word not shut out there'
+  | 'word seeded there'
+  | 'word shut out there';
+
+export interface Refusal {
+  readonly ok: false;
+  readonly code: RefusalCode;
+  /** The name, word or id that the code speaks of. */
+  readonly subject: string;
+}
+
+export type Result<Value> = { readonly ok: true; readonly value: Value } | Refusal;
+
+export function done<Value>(value: Value): Result<Value> {
+  return { ok: true, value };
+}
+
+export function refused(code: RefusalCode, subject: string): Refusal {
+  return { ok: false, code, subject };
+}

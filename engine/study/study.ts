@@ -1,0 +1,250 @@
+import type { Detail, Role, Span, Turn } from '../spans/index.ts';
+
+/** An id is minted outside the engine and never changes. */
+export type ReaderId = string;
+export type TranscriptId = string;
+export type ParticipantId = string;
+export type ThemeId = string;
+export type CodingId = string;
+export type NoneId = string;
+export type MemoId = string;
+export type FitId = string;
+
+/** Bytes kept in the study file, addressed by the sequence number of their record. */
+export interface BlobRef {
+  readonly sequence: number;
+  /** Length in bytes. */
+  readonly bytes: number;
+}
+
+/** Settings are flat ("text.stemming"), so that a change reads as one line in the trail. */
+export type SettingValue = string | number | boolean | null | readonly string[];
+export type SettingValues = Readonly<Record<string, SettingValue>>;
+
+/** A person who codes. */
+export interface Reader {
+  readonly id: ReaderId;
+  readonly name: string;
+}
+
+/** A person whose words were recorded. */
+export interface Participant {
+  readonly id: ParticipantId;
+  readonly name: string;
+  /** Attribute name to value, both as given; a missing value is absent. */
+  readonly attributes: Readonly<Record<string, string>>;
+}
+
+/** One label of a transcript and whose it is. */
+export interface Speaker {
+  /** The label as it stands in the turns; null for turns without one. */
+  readonly label: string | null;
+  readonly role: Role;
+  /** Set for participants only. */
+  readonly participant: ParticipantId | null;
+}
+
+export interface Transcript {
+  readonly id: TranscriptId;
+  /** Unique in the study; a path with "/" where folders were gathered. */
+  readonly name: string;
+  readonly source: {
+    readonly fileName: string;
+    readonly format: string;
+    /** SHA-256 of the file's bytes, hex. */
+    readonly hash: string;
+  };
+  /** The canonical text that every offset counts in. */
+  readonly text: BlobRef;
+  /** Its length in UTF-16 code units. */
+  readonly length: number;
+  readonly details: readonly Detail[];
+  readonly turns: readonly Turn[];
+  readonly speakers: readonly Speaker[];
+}
+
+/** A codebook entry (MacQueen, McLellan, Kay & Milstein 1998), without its name. */
+export interface Definition {
+  readonly brief: string;
+  readonly full: string;
+  readonly whenToUse: string;
+  readonly whenNotToUse: string;
+  readonly examples: string;
+}
+
+export const emptyDefinition: Definition = {
+  brief: '',
+  full: '',
+  whenToUse: '',
+  whenNotToUse: '',
+  examples: '',
+};
+
+export interface Theme {
+  readonly id: ThemeId;
+  /** Null while it is a candidate: a fitted theme that no person has named. */
+  readonly name: string | null;
+  /** A theme by hand has no word distribution and stays out of the model. */
+  readonly origin: 'fitted' | 'asked for' | 'by hand';
+  readonly definition: Definition;
+  /** Counts the wordings of the codebook entry from 1; codings remember theirs. */
+  readonly version: number;
+  readonly pinned: boolean;
+  readonly setAside: boolean;
+  /** Where its codings and words went; null while it stands for itself. */
+  readonly mergedInto: ThemeId | null;
+  /** Word forms in code-unit order. */
+  readonly seeds: readonly string[];
+  readonly shutOut: readonly string[];
+}
+
+export type Standing = 'confirmed' | 'rejected' | 'by hand';
+
+/** What was known and in sight when a decision was made. */
+export interface DecidedUnder {
+  readonly reader: ReaderId;
+  /** ISO 8601 in UTC. */
+  readonly at: string;
+  /** The reading list that the passage was drawn from. */
+  readonly drawnBy: string;
+  /** Whether suggestions were visible. */
+  readonly seenSuggestion: boolean;
+  /** The fit on screen, or null before the first. */
+  readonly fit: FitId | null;
+}
+
+/** One theme on one span of one transcript, decided by a person. */
+export interface Coding {
+  readonly id: CodingId;
+  readonly transcript: TranscriptId;
+  readonly span: Span;
+  readonly theme: ThemeId;
+  readonly standing: Standing;
+  readonly under: DecidedUnder;
+  /** The model's strength at that moment, 0 to 1; null where there was none. */
+  readonly strength: number | null;
+  /** The version of the theme's codebook entry at that moment. */
+  readonly codebookVersion: number;
+  readonly memo: string;
+}
+
+/** Read, and no theme applies. */
+export interface None {
+  readonly id: NoneId;
+  readonly transcript: TranscriptId;
+  readonly span: Span;
+  readonly under: DecidedUnder;
+}
+
+export type MemoSubject =
+  | { readonly kind: 'study' }
+  | { readonly kind: 'transcript'; readonly transcript: TranscriptId }
+  | { readonly kind: 'passage'; readonly transcript: TranscriptId; readonly span: Span }
+  | { readonly kind: 'theme'; readonly theme: ThemeId };
+
+export interface Memo {
+  readonly id: MemoId;
+  readonly subject: MemoSubject;
+  readonly text: string;
+  readonly reader: ReaderId;
+  /** ISO 8601 in UTC. */
+  readonly at: string;
+}
+
+/** What a fit was made from and what came out: enough to make it again, bit for bit. */
+export interface Fit {
+  readonly id: FitId;
+  readonly name: string | null;
+  /** Rows of the fitted arrays, in order. */
+  readonly themes: readonly ThemeId[];
+  /** The trail up to this sequence number was taken into account. */
+  readonly basis: number;
+  readonly start: {
+    readonly kind: 'fresh' | 'warm';
+    readonly seed: number;
+    /** The fit that a warm one starts from. */
+    readonly from: FitId | null;
+  };
+  /** Number of the numerical method; results of different methods differ. */
+  readonly method: number;
+  /** Number of the rules that turn texts into counted words. */
+  readonly preparation: number;
+  /** All settings with their defaults, as they were. */
+  readonly settings: SettingValues;
+  readonly passages: number;
+  readonly vocabulary: number;
+  readonly countedWords: number;
+  readonly sweeps: number;
+  readonly stopReason: string;
+  /** Nats. */
+  readonly bound: number;
+  readonly boundTerms: Readonly<Record<string, number>>;
+  readonly trace: readonly {
+    readonly sweep: number;
+    readonly bound: number | null;
+    readonly likelihood: number | null;
+    readonly change: number;
+  }[];
+  /** SHA-256, hex, of the stored words, the priors and the stored result. */
+  readonly hashes: {
+    readonly words: string;
+    readonly priors: string;
+    readonly result: string;
+    readonly previousResult: string | null;
+  };
+  /** Passages, vocabulary, counted words and their places. */
+  readonly words: BlobRef;
+  /** Proportions and distributions, f32. */
+  readonly result: BlobRef;
+}
+
+/** A chain of units that undo or redo can reach, newest first. */
+export interface HistoryStep {
+  /** Sequence numbers in the order in which they were made. */
+  readonly sequences: readonly number[];
+  readonly group: string | null;
+  readonly below: HistoryStep | null;
+}
+
+/**
+ * A study: the fold of its trail. Immutable; holds lengths and references, no texts and no arrays.
+ * Codings and nones are kept by transcript so that one decision replaces one small map.
+ */
+export interface Study {
+  readonly id: string;
+  readonly name: string;
+  /** Sequence number of the last edit folded in; -1 before the first. */
+  readonly sequence: number;
+  readonly settings: SettingValues;
+  readonly readers: ReadonlyMap<ReaderId, Reader>;
+  readonly transcripts: ReadonlyMap<TranscriptId, Transcript>;
+  readonly participants: ReadonlyMap<ParticipantId, Participant>;
+  /** In codebook order. */
+  readonly themes: ReadonlyMap<ThemeId, Theme>;
+  readonly codings: ReadonlyMap<TranscriptId, ReadonlyMap<CodingId, Coding>>;
+  readonly nones: ReadonlyMap<TranscriptId, ReadonlyMap<NoneId, None>>;
+  readonly memos: ReadonlyMap<MemoId, Memo>;
+  readonly fits: ReadonlyMap<FitId, Fit>;
+  /** The fit on screen. */
+  readonly fit: FitId | null;
+  readonly undo: HistoryStep | null;
+  readonly redo: HistoryStep | null;
+}
+
+export const emptyStudy: Study = {
+  id: '',
+  name: '',
+  sequence: -1,
+  settings: {},
+  readers: new Map(),
+  transcripts: new Map(),
+  participants: new Map(),
+  themes: new Map(),
+  codings: new Map(),
+  nones: new Map(),
+  memos: new Map(),
+  fits: new Map(),
+  fit: null,
+  undo: null,
+  redo: null,
+};
