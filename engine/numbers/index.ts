@@ -1,0 +1,11 @@
+export { compareCodeUnits } from './compare-code-units.ts';
+export { digamma } from './digamma.ts';
+export { exp } from './exp.ts';
+export { expDigamma } from './exp-digamma.ts';
+export { createGenerator, type Generator } from './generator.ts';
+export { hash32 } from './hash.ts';
+export { lgamma } from './lgamma.ts';
+export { log } from './log.ts';
+export { sha256 } from './sha256.ts';
+export { sum } from './sum.ts';
+export { trigamma } from './trigamma.ts';
