@@ -49,7 +49,7 @@ export function apply(study: Study, entry: Entry): Result<Study> {
   if (study.id === '' && edit.kind !== 'studyStarted') return refused('study not started', '');
   const history = historyAfter(study, entry, inverse(edit) !== null);
   if (!history.ok) return history;
-  const changed = ruleFor(edit.kind).apply(study, edit, sequence);
+  const changed = ruleFor(edit.kind).apply(study, edit, entry.undoes !== undefined);
   if (!changed.ok) return changed;
   return done({ ...changed.value, ...history.value, sequence });
 }

@@ -82,8 +82,18 @@ export type Edit =
       readonly from: Omit<Participant, 'id'>;
       readonly to: Omit<Participant, 'id'>;
     }
-  | { readonly kind: 'themeAdded'; readonly theme: Theme }
-  | { readonly kind: 'themeRemoved'; readonly theme: Theme }
+  | {
+      readonly kind: 'themeAdded';
+      readonly theme: Theme;
+      /** Its place in codebook order, counted from 0; null or absent for the last. */
+      readonly place?: number | null;
+    }
+  | {
+      readonly kind: 'themeRemoved';
+      readonly theme: Theme;
+      /** The place that it leaves, counted from 0; null for the last. */
+      readonly place: number | null;
+    }
   | {
       readonly kind: 'themeRenamed';
       readonly theme: ThemeId;
@@ -144,6 +154,14 @@ export type Edit =
       /** Candidate themes that this fit found. */
       readonly found: readonly Theme[];
       /** The fit that was on screen before. */
+      readonly before: FitId | null;
+    }
+  | {
+      /** Takes the newest fit back. Its arrays stay in the file, so a redo computes nothing. */
+      readonly kind: 'fitRemoved';
+      readonly fit: Fit;
+      readonly found: readonly Theme[];
+      /** The fit that comes on screen again. */
       readonly before: FitId | null;
     }
   | { readonly kind: 'fitChosen'; readonly from: FitId | null; readonly to: FitId | null }

@@ -1,6 +1,13 @@
 export * from './study.ts';
 export type { CodingState, Edit, EditKind, EditOf, Entry, TextState } from './edit.ts';
-export { done, refused, type Refusal, type RefusalCode, type Result } from './refusal.ts';
+export {
+  done,
+  refusalCodes,
+  refused,
+  type Refusal,
+  type RefusalCode,
+  type Result,
+} from './refusal.ts';
 export { apply, editKinds, fold, inverse } from './apply.ts';
 export { takingBack, type TakingBack } from './undo.ts';
 export { spansLost } from './edits/transcripts.ts';

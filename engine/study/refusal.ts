@@ -1,36 +1,42 @@
 /** Why an edit cannot be made. main/sentences turns each code into words. */
-export type RefusalCode =
-  | 'already there'
-  | 'changed since'
-  | 'codings remain'
-  | 'empty name'
-  | 'fit is in use'
-  | 'merged theme'
-  | 'merge into itself'
-  | 'name taken'
-  | 'no speaker'
-  | 'not a participant'
-  | 'nothing to undo'
-  | 'outside the text'
-  | 'participant in use'
-  | 'same as before'
-  | 'shut out everywhere'
-  | 'study not started'
-  | 'study already started'
-  | 'theme by hand'
-  | 'theme in use'
-  | 'theme set aside'
-  | 'unknown coding'
-  | 'unknown fit'
-  | 'unknown memo'
-  | 'unknown participant'
-  | 'unknown reader'
-  | 'unknown theme'
-  | 'unknown transcript'
-  | 'word not seeded there'
-  | 'word not shut out there'
-  | 'word seeded there'
-  | 'word shut out there';
+export const refusalCodes = [
+  'already there',
+  'changed since',
+  'codings remain',
+  'empty name',
+  'fit is in use',
+  'memos remain',
+  'merge into itself',
+  'merged theme',
+  'name taken',
+  'no speaker',
+  'not a participant',
+  'nothing to undo',
+  'outside the text',
+  'participant in use',
+  'reader in use',
+  'same as before',
+  'shut out everywhere',
+  'study already started',
+  'study not started',
+  'theme by hand',
+  'theme in use',
+  'theme set aside',
+  'unknown coding',
+  'unknown fit',
+  'unknown memo',
+  'unknown participant',
+  'unknown reader',
+  'unknown theme',
+  'unknown transcript',
+  'unusable value',
+  'word not seeded there',
+  'word not shut out there',
+  'word seeded there',
+  'word shut out there',
+] as const;
+
+export type RefusalCode = (typeof refusalCodes)[number];
 
 export interface Refusal {
   readonly ok: false;

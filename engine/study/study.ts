@@ -208,6 +208,8 @@ export interface HistoryStep {
 
 /**
  * A study: the fold of its trail. Immutable; holds lengths and references, no texts and no arrays.
+ * Only the order of themes has a meaning: an undone removal puts anything else back at the end of
+ * its map, so what depends on an order has to sort.
  * Codings and nones are kept by transcript so that one decision replaces one small map.
  */
 export interface Study {

@@ -37,6 +37,7 @@ export function themesWithDecisions(study: Study): ReadonlySet<ThemeId> {
   const decided = new Set<ThemeId>();
   for (const theme of study.themes.values()) {
     if (
+      theme.name !== null ||
       theme.pinned ||
       theme.setAside ||
       theme.seeds.length > 0 ||
@@ -48,6 +49,12 @@ export function themesWithDecisions(study: Study): ReadonlySet<ThemeId> {
     if (theme.mergedInto !== null) {
       const target = resolveTheme(study, theme.id);
       if (target !== undefined) decided.add(target.id);
+    }
+  }
+  for (const { subject } of study.memos.values()) {
+    if (subject.kind === 'theme') {
+      const theme = resolveTheme(study, subject.theme);
+      if (theme !== undefined) decided.add(theme.id);
     }
   }
   for (const byId of study.codings.values()) {

@@ -1,16 +1,15 @@
-import type { Span } from '../../spans/index.ts';
+import { sameSpan, type Span } from '../../spans/index.ts';
 import { done, refused, type Refusal } from '../refusal.ts';
-import type { Coding, Study, ThemeId } from '../study.ts';
+import type { Coding, DecidedUnder, None, Study, ThemeId } from '../study.ts';
 import { label } from './themes.ts';
-import { sameJson, withEntry, withoutEntry, type Rules } from './rule.ts';
+import { sameJson, withEntry, withInner, withoutEntry, type Rules } from './rule.ts';
 
 export const codingRules: Rules<
   'codingMade' | 'codingRemoved' | 'codingRevised' | 'noneMarked' | 'noneCleared'
 > = {
   codingMade: {
-    apply(study, { coding }) {
-      const fault =
-        spanFault(study, coding.transcript, coding.span) ?? themeFault(study, coding.theme);
+    apply(study, { coding }, restoring) {
+      const fault = restoring ? null : codingFault(study, coding);
       if (fault !== null) return fault;
       const here = study.codings.get(coding.transcript) ?? new Map<string, Coding>();
       if (here.has(coding.id)) return refused('already there', coding.id);
@@ -31,16 +30,18 @@ export const codingRules: Rules<
   },
 
   codingRevised: {
-    apply(study, { transcript, coding: id, from, to }) {
+    apply(study, { transcript, coding: id, from, to }, restoring) {
       const here = study.codings.get(transcript);
       const current = here?.get(id);
       if (here === undefined || current === undefined) return refused('unknown coding', id);
       const { theme, standing, span, memo } = current;
       if (!sameJson({ theme, standing, span, memo }, from)) return refused('changed since', id);
-      const fault =
-        spanFault(study, transcript, to.span) ??
-        (to.theme === theme ? null : themeFault(study, to.theme));
-      if (fault !== null) return fault;
+      if (!restoring) {
+        const fault =
+          (sameSpan(to.span, span) ? null : spanFault(study, transcript, to.span)) ??
+          (to.theme === theme ? null : themeFault(study, to.theme));
+        if (fault !== null) return fault;
+      }
       return done(withCodings(study, transcript, withEntry(here, id, { ...current, ...to })));
     },
     inverse: ({ transcript, coding, from, to }) => ({
@@ -53,14 +54,16 @@ export const codingRules: Rules<
   },
 
   noneMarked: {
-    apply(study, { none }) {
-      const fault = spanFault(study, none.transcript, none.span);
+    apply(study, { none }, restoring) {
+      const fault = restoring
+        ? null
+        : (spanFault(study, none.transcript, none.span) ?? underFault(study, none.under));
       if (fault !== null) return fault;
-      const here = study.nones.get(none.transcript) ?? new Map();
+      const here = study.nones.get(none.transcript) ?? new Map<string, None>();
       if (here.has(none.id)) return refused('already there', none.id);
       return done({
         ...study,
-        nones: withEntry(study.nones, none.transcript, withEntry(here, none.id, none)),
+        nones: withInner(study.nones, none.transcript, withEntry(here, none.id, none)),
       });
     },
     inverse: ({ none }) => ({ kind: 'noneCleared', none }),
@@ -74,7 +77,7 @@ export const codingRules: Rules<
       if (!sameJson(current, none)) return refused('changed since', none.id);
       return done({
         ...study,
-        nones: withEntry(study.nones, none.transcript, withoutEntry(here, none.id)),
+        nones: withInner(study.nones, none.transcript, withoutEntry(here, none.id)),
       });
     },
     inverse: ({ none }) => ({ kind: 'noneMarked', none }),
@@ -86,7 +89,7 @@ function withCodings(
   transcript: string,
   codings: ReadonlyMap<string, Coding>,
 ): Study {
-  return { ...study, codings: withEntry(study.codings, transcript, codings) };
+  return { ...study, codings: withInner(study.codings, transcript, codings) };
 }
 
 /** Refuses a span that is empty, reversed, fractional or past the end of its transcript. */
@@ -98,6 +101,24 @@ export function spanFault(study: Study, transcript: string, span: Span): Refusal
   if (!whole || start < 0 || end <= start || end > current.length) {
     return refused('outside the text', current.name);
   }
+  return null;
+}
+
+function codingFault(study: Study, coding: Coding): Refusal | null {
+  const { strength } = coding;
+  if (strength !== null && !(strength >= 0 && strength <= 1)) {
+    return refused('unusable value', coding.id);
+  }
+  return (
+    spanFault(study, coding.transcript, coding.span) ??
+    themeFault(study, coding.theme) ??
+    underFault(study, coding.under)
+  );
+}
+
+function underFault(study: Study, { reader, fit }: DecidedUnder): Refusal | null {
+  if (!study.readers.has(reader)) return refused('unknown reader', reader);
+  if (fit !== null && !study.fits.has(fit)) return refused('unknown fit', fit);
   return null;
 }
 

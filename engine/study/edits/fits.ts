@@ -1,7 +1,10 @@
 import { done, refused } from '../refusal.ts';
-import { withEntry, type Rules } from './rule.ts';
+import type { FitId, Study } from '../study.ts';
+import { isModelled } from '../themes.ts';
+import { isReferredTo, nameFault, outsideModel } from './themes.ts';
+import { sameJson, withEntry, withoutEntry, type Rules } from './rule.ts';
 
-export const fitRules: Rules<'modelFitted' | 'fitChosen' | 'fitRenamed'> = {
+export const fitRules: Rules<'modelFitted' | 'fitRemoved' | 'fitChosen' | 'fitRenamed'> = {
   modelFitted: {
     apply(study, { fit, found, before }) {
       if (study.fits.has(fit.id)) return refused('already there', fit.id);
@@ -9,14 +12,43 @@ export const fitRules: Rules<'modelFitted' | 'fitChosen' | 'fitRenamed'> = {
       const themes = new Map(study.themes);
       for (const theme of found) {
         if (themes.has(theme.id)) return refused('already there', theme.name ?? theme.id);
+        const fault = theme.name === null ? null : nameFault(study, theme.name, theme.id);
+        if (fault !== null) return fault;
         themes.set(theme.id, theme);
       }
-      for (const id of fit.themes) if (!themes.has(id)) return refused('unknown theme', id);
+      for (const id of fit.themes) {
+        const theme = themes.get(id);
+        if (theme === undefined) return refused('unknown theme', id);
+        if (!isModelled(theme)) return outsideModel(theme);
+      }
+      const { from } = fit.start;
+      if (from !== null && !study.fits.has(from)) return refused('unknown fit', from);
       return done({ ...study, themes, fits: withEntry(study.fits, fit.id, fit), fit: fit.id });
     },
-    // The fit and its themes stay in the study: taking it back shows the one before, and a redo
-    // computes nothing.
-    inverse: ({ fit, before }) => ({ kind: 'fitChosen', from: fit.id, to: before }),
+    // Showing the fit before would not be enough: themes asked for would stay in use by a fit that
+    // was taken back, and what came before it could not be undone any more.
+    inverse: ({ fit, found, before }) => ({ kind: 'fitRemoved', fit, found, before }),
+  },
+
+  fitRemoved: {
+    apply(study, { fit, found, before }) {
+      const current = study.fits.get(fit.id);
+      if (current === undefined) return refused('unknown fit', fit.id);
+      if (before !== null && !study.fits.has(before)) return refused('unknown fit', before);
+      const last = found.length === 0 ? [] : [...study.themes.values()].slice(-found.length);
+      if (study.fit !== fit.id || !sameJson(current, fit) || !sameJson(last, found)) {
+        return refused('changed since', fit.id);
+      }
+      const fits = withoutEntry(study.fits, fit.id);
+      if (before === fit.id || isFitInUse(study, fit.id)) return refused('fit is in use', fit.id);
+      const themes = new Map(study.themes);
+      for (const { id, name } of found) {
+        if (isReferredTo({ ...study, fits }, id)) return refused('theme in use', name ?? id);
+        themes.delete(id);
+      }
+      return done({ ...study, themes, fits, fit: before });
+    },
+    inverse: ({ fit, found, before }) => ({ kind: 'modelFitted', fit, found, before }),
   },
 
   fitChosen: {
@@ -38,3 +70,11 @@ export const fitRules: Rules<'modelFitted' | 'fitChosen' | 'fitRenamed'> = {
     inverse: ({ fit, from, to }) => ({ kind: 'fitRenamed', fit, from: to, to: from }),
   },
 };
+
+function isFitInUse(study: Study, id: FitId): boolean {
+  for (const { start } of study.fits.values()) if (start.from === id) return true;
+  for (const byId of [...study.codings.values(), ...study.nones.values()]) {
+    for (const { under } of byId.values()) if (under.fit === id) return true;
+  }
+  return false;
+}

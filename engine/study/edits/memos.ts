@@ -5,9 +5,12 @@ import { sameJson, withEntry, withoutEntry, type Rules } from './rule.ts';
 
 export const memoRules: Rules<'memoWritten' | 'memoErased' | 'memoRevised'> = {
   memoWritten: {
-    apply(study, { memo }) {
-      const fault = subjectFault(study, memo.subject);
-      if (fault !== null) return fault;
+    apply(study, { memo }, restoring) {
+      if (!restoring) {
+        const fault = subjectFault(study, memo.subject);
+        if (fault !== null) return fault;
+        if (!study.readers.has(memo.reader)) return refused('unknown reader', memo.reader);
+      }
       if (study.memos.has(memo.id)) return refused('already there', memo.id);
       return done({ ...study, memos: withEntry(study.memos, memo.id, memo) });
     },

@@ -4,7 +4,12 @@ import type { Study } from '../study.ts';
 
 /** What one kind of edit does and what takes it back. */
 export interface Rule<Kind extends EditKind> {
-  readonly apply: (study: Study, edit: EditOf<Kind>, sequence: number) => Result<Study>;
+  /**
+   * `restoring` is true for an entry that takes another one back. What it brings stood in the study
+   * before, so rules about what may be made anew (no coding on a merged theme) do not apply to it;
+   * else such an edit could never be undone.
+   */
+  readonly apply: (study: Study, edit: EditOf<Kind>, restoring: boolean) => Result<Study>;
   /** The edit that restores what was there before, or null for what cannot be taken back. */
   readonly inverse: (edit: EditOf<Kind>) => Edit | null;
 }
@@ -28,6 +33,30 @@ export function withoutEntry<Key, Value>(
   const copy = new Map(map);
   copy.delete(key);
   return copy;
+}
+
+/** A copy of a map with one entry put in at a position counted from 0; null stands for the end. */
+export function withEntryAt<Key, Value>(
+  map: ReadonlyMap<Key, Value>,
+  place: number | null,
+  key: Key,
+  value: Value,
+): ReadonlyMap<Key, Value> {
+  const entries = [...map];
+  entries.splice(place ?? entries.length, 0, [key, value]);
+  return new Map(entries);
+}
+
+/**
+ * A copy of a map of maps with one of them replaced; an empty one goes altogether, so that taking
+ * back a first decision leaves nothing behind.
+ */
+export function withInner<Key, InnerKey, Value>(
+  map: ReadonlyMap<Key, ReadonlyMap<InnerKey, Value>>,
+  key: Key,
+  inner: ReadonlyMap<InnerKey, Value>,
+): ReadonlyMap<Key, ReadonlyMap<InnerKey, Value>> {
+  return inner.size === 0 ? withoutEntry(map, key) : withEntry(map, key, inner);
 }
 
 /** Whether two plain JSON values are the same, whatever the order of their keys. */

@@ -2,7 +2,7 @@ import type { Edit } from '../edit.ts';
 import { done, refused, type Refusal, type Result } from '../refusal.ts';
 import type { Study, Theme, ThemeId } from '../study.ts';
 import { isModelled, nameKey, visibleThemes } from '../themes.ts';
-import { sameJson, withEntry, withoutEntry, type Rules } from './rule.ts';
+import { sameJson, withEntry, withEntryAt, withoutEntry, type Rules } from './rule.ts';
 
 export const themeRules: Rules<
   | 'themeAdded'
@@ -18,32 +18,43 @@ export const themeRules: Rules<
   | 'themesOrdered'
 > = {
   themeAdded: {
-    apply(study, { theme }) {
-      if (study.themes.has(theme.id)) return refused('already there', theme.name ?? theme.id);
-      const fault = theme.name === null ? null : nameFault(study, theme.name, theme.id);
-      if (fault !== null) return fault;
-      return done({ ...study, themes: withEntry(study.themes, theme.id, theme) });
+    apply(study, { theme, place = null }, restoring) {
+      if (study.themes.has(theme.id)) return refused('already there', label(theme));
+      if (!restoring) {
+        if (theme.mergedInto !== null) return refused('merged theme', label(theme));
+        const fault = nameOrNoneFault(study, theme.name, theme);
+        if (fault !== null) return fault;
+      }
+      if (
+        place !== null &&
+        !(Number.isInteger(place) && place >= 0 && place <= study.themes.size)
+      ) {
+        return refused('changed since', label(theme));
+      }
+      return done({ ...study, themes: withEntryAt(study.themes, place, theme.id, theme) });
     },
-    inverse: ({ theme }) => ({ kind: 'themeRemoved', theme }),
+    inverse: ({ theme, place = null }) => ({ kind: 'themeRemoved', theme, place }),
   },
 
   themeRemoved: {
-    apply(study, { theme }) {
+    apply(study, { theme, place }) {
       const current = study.themes.get(theme.id);
-      if (current === undefined) return refused('unknown theme', theme.name ?? theme.id);
-      if (!sameJson(current, theme)) return refused('changed since', current.name ?? current.id);
-      if (isReferredTo(study, theme.id)) return refused('theme in use', current.name ?? theme.id);
+      if (current === undefined) return refused('unknown theme', label(theme));
+      const leaves = place ?? study.themes.size - 1;
+      if (!sameJson(current, theme) || [...study.themes.keys()][leaves] !== theme.id) {
+        return refused('changed since', label(current));
+      }
+      if (isReferredTo(study, theme.id)) return refused('theme in use', label(current));
       return done({ ...study, themes: withoutEntry(study.themes, theme.id) });
     },
-    inverse: ({ theme }) => ({ kind: 'themeAdded', theme }),
+    inverse: ({ theme, place }) => ({ kind: 'themeAdded', theme, place }),
   },
 
   themeRenamed: {
     apply(study, { theme: id, from, to }) {
       return change(study, id, (theme) => {
         if (theme.name !== from) return refused('changed since', theme.name ?? id);
-        const fault = to === null ? null : nameFault(study, to, id);
-        return fault ?? done({ ...theme, name: to });
+        return nameOrNoneFault(study, to, theme) ?? done({ ...theme, name: to });
       });
     },
     inverse: ({ theme, from, to }) => ({ kind: 'themeRenamed', theme, from: to, to: from }),
@@ -60,8 +71,8 @@ export const themeRules: Rules<
     inverse: ({ theme, from, to }) => ({ kind: 'themeDefined', theme, from: to, to: from }),
   },
 
-  themePinned: flag('themeUnpinned', (theme) =>
-    !isModelled(theme)
+  themePinned: flag('themeUnpinned', (theme, restoring) =>
+    !isModelled(theme) && !restoring
       ? outsideModel(theme)
       : theme.pinned
         ? refused('same as before', label(theme))
@@ -81,11 +92,13 @@ export const themeRules: Rules<
   ),
 
   themesMerged: {
-    apply(study, { into, from }) {
+    apply(study, { into, from }, restoring) {
       const target = study.themes.get(into);
       if (target === undefined) return refused('unknown theme', into);
-      if (target.mergedInto !== null) return refused('merged theme', label(target));
-      if (target.setAside) return refused('theme set aside', label(target));
+      if (!restoring) {
+        if (target.mergedInto !== null) return refused('merged theme', label(target));
+        if (target.setAside) return refused('theme set aside', label(target));
+      }
       if (from.length === 0 || from.includes(into)) {
         return refused('merge into itself', label(target));
       }
@@ -95,6 +108,10 @@ export const themeRules: Rules<
         if (theme === undefined) return refused('unknown theme', id);
         if (theme.mergedInto !== null) return refused('merged theme', label(theme));
         if (theme.setAside) return refused('theme set aside', label(theme));
+        // Its words would have nowhere to go. The other way round, codings by hand join a theme.
+        if (target.origin === 'by hand' && theme.origin !== 'by hand') {
+          return refused('theme by hand', label(target));
+        }
         themes.set(id, { ...theme, mergedInto: into });
       }
       return done({ ...study, themes });
@@ -104,12 +121,13 @@ export const themeRules: Rules<
 
   themesUnmerged: {
     apply(study, { into, from }) {
+      if (from.length === 0) return refused('same as before', into);
       const themes = new Map(study.themes);
       for (const id of from) {
         const theme = themes.get(id);
         if (theme === undefined) return refused('unknown theme', id);
         if (theme.mergedInto !== into) return refused('changed since', label(theme));
-        const fault = theme.name === null ? null : nameFault(study, theme.name, id);
+        const fault = theme.name === null ? null : nameFault({ ...study, themes }, theme.name, id);
         if (fault !== null) return fault;
         themes.set(id, { ...theme, mergedInto: null });
       }
@@ -164,15 +182,23 @@ export function change(
 
 function flag<Back extends 'themePinned' | 'themeUnpinned' | 'themeSetAside' | 'themeBroughtBack'>(
   back: Back,
-  step: (theme: Theme) => Result<Theme>,
+  step: (theme: Theme, restoring: boolean) => Result<Theme>,
 ) {
   return {
-    apply: (study: Study, { theme }: { readonly theme: ThemeId }) => change(study, theme, step),
+    apply: (study: Study, { theme: id }: { readonly theme: ThemeId }, restoring: boolean) =>
+      change(study, id, (theme) => step(theme, restoring)),
     inverse: ({ theme }: { readonly theme: ThemeId }): Edit => ({ kind: back, theme }),
   };
 }
 
-function nameFault(study: Study, name: string, except: ThemeId): Refusal | null {
+/** Only a candidate may go without a name. */
+function nameOrNoneFault(study: Study, name: string | null, theme: Theme): Refusal | null {
+  if (name !== null) return nameFault(study, name, theme.id);
+  return theme.origin === 'fitted' ? null : refused('empty name', label(theme));
+}
+
+/** Refuses a name that is blank or another visible theme's. */
+export function nameFault(study: Study, name: string, except: ThemeId): Refusal | null {
   if (name.trim() === '') return refused('empty name', except);
   const key = nameKey(name);
   for (const other of visibleThemes(study)) {
@@ -183,7 +209,8 @@ function nameFault(study: Study, name: string, except: ThemeId): Refusal | null 
   return null;
 }
 
-function isReferredTo(study: Study, id: ThemeId): boolean {
+/** Whether a merge, a fit, a coding or a memo would lose its theme. */
+export function isReferredTo(study: Study, id: ThemeId): boolean {
   for (const theme of study.themes.values()) if (theme.mergedInto === id) return true;
   for (const fit of study.fits.values()) if (fit.themes.includes(id)) return true;
   for (const byId of study.codings.values()) {

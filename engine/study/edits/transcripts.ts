@@ -2,7 +2,12 @@ import { mapSpan, sameSpan, invertReplacements, type Span } from '../../spans/in
 import type { EditOf } from '../edit.ts';
 import { done, refused, type Refusal } from '../refusal.ts';
 import type { Memo, MemoId, Study, Transcript } from '../study.ts';
-import { sameJson, withEntry, withoutEntry, type Rules } from './rule.ts';
+import { sameJson, withEntry, withInner, withoutEntry, type Rules } from './rule.ts';
+
+interface PlacedSpan {
+  readonly id: string;
+  readonly span: Span;
+}
 
 export const transcriptRules: Rules<
   | 'transcriptGathered'
@@ -15,7 +20,10 @@ export const transcriptRules: Rules<
     apply(study, { transcript }) {
       if (transcript.name.trim() === '') return refused('empty name', transcript.source.fileName);
       if (study.transcripts.has(transcript.id)) return refused('already there', transcript.name);
-      const fault = nameFault(study, transcript.name) ?? speakerFault(study, transcript);
+      const fault =
+        nameFault(study, transcript.name, transcript.id) ??
+        turnFault(transcript) ??
+        speakerFault(study, transcript);
       if (fault !== null) return fault;
       return done({
         ...study,
@@ -31,6 +39,7 @@ export const transcriptRules: Rules<
       if (current === undefined) return refused('unknown transcript', transcript.name);
       if (!sameJson(current, transcript)) return refused('changed since', current.name);
       if (hasDecisions(study, transcript.id)) return refused('codings remain', current.name);
+      if (hasMemos(study, transcript.id)) return refused('memos remain', current.name);
       return done({ ...study, transcripts: withoutEntry(study.transcripts, transcript.id) });
     },
     inverse: ({ transcript }) => ({ kind: 'transcriptGathered', transcript }),
@@ -42,7 +51,7 @@ export const transcriptRules: Rules<
       if (current === undefined) return refused('unknown transcript', from);
       if (to.trim() === '') return refused('empty name', from);
       if (current.name !== from) return refused('changed since', current.name);
-      const fault = nameFault(study, to);
+      const fault = nameFault(study, to, transcript);
       if (fault !== null) return fault;
       return done(withTranscript(study, { ...current, name: to }));
     },
@@ -80,8 +89,12 @@ export const transcriptRules: Rules<
       if (!sameJson({ text, length, turns }, edit.from)) {
         return refused('changed since', current.name);
       }
-      if (!keepsWhatIsLost(study, edit)) return refused('changed since', current.name);
-      return done(reviseText(study, current, edit));
+      const revised = { ...current, ...edit.to };
+      const fault = turnFault(revised) ?? speakerFault(study, revised);
+      if (fault !== null) return fault;
+      if (!isWithinTexts(edit)) return refused('outside the text', current.name);
+      if (!canBeTakenBack(study, edit)) return refused('changed since', current.name);
+      return done(reviseText(study, revised, edit));
     },
     inverse: (edit) => ({
       kind: 'textRevised',
@@ -101,22 +114,55 @@ export const transcriptRules: Rules<
  */
 export function spansLost(
   study: Study,
-  edit: Pick<EditOf<'textRevised'>, 'transcript' | 'replacements'>,
-): { readonly id: string; readonly span: Span }[] {
+  edit: Pick<EditOf<'textRevised'>, 'transcript' | 'replacements' | 'placed'>,
+): PlacedSpan[] {
   const back = invertReplacements(edit.replacements);
+  const move = mover(edit);
   return spansOn(study, edit.transcript).filter(
-    ({ span }) => !sameSpan(mapSpan(mapSpan(span, edit.replacements), back), span),
+    ({ id, span }) => !sameSpan(mapSpan(move(id, span), back), span),
   );
 }
 
-/** An edit that forgot a span could not be undone exactly. */
-function keepsWhatIsLost(study: Study, edit: EditOf<'textRevised'>): boolean {
-  const kept = new Set(edit.lost.map(({ id }) => id));
-  const placed = new Set(edit.placed.map(({ id }) => id));
-  return spansLost(study, edit).every(({ id }) => kept.has(id) || placed.has(id));
+/** An edit that forgets a span, or remembers it wrongly, could not be undone exactly. */
+function canBeTakenBack(study: Study, edit: EditOf<'textRevised'>): boolean {
+  const here = spansOn(study, edit.transcript);
+  const spans = new Map(here.map(({ id, span }) => [id, span]));
+  const lost = new Map(edit.lost.map(({ id, span }) => [id, span]));
+  return (
+    edit.placed.every(({ id }) => spans.has(id)) &&
+    edit.lost.every(({ id, span }) => {
+      const current = spans.get(id);
+      return current !== undefined && sameSpan(current, span);
+    }) &&
+    spansLost(study, edit).every(({ id }) => lost.has(id))
+  );
 }
 
-function spansOn(study: Study, transcript: string): { id: string; span: Span }[] {
+/** Whether replacements and placed spans fit the two lengths between which they lead. */
+function isWithinTexts({ from, to, replacements, placed }: EditOf<'textRevised'>): boolean {
+  let reached = 0;
+  let length = from.length;
+  for (const { start, end, inserted } of replacements) {
+    if (!isSpan({ start, end }, from.length) || start < reached) return false;
+    if (!Number.isInteger(inserted) || inserted < 0) return false;
+    reached = end;
+    length += inserted - (end - start);
+  }
+  return length === to.length && placed.every(({ span }) => isSpan(span, to.length));
+}
+
+function isSpan({ start, end }: Span, length: number): boolean {
+  return (
+    Number.isInteger(start) && Number.isInteger(end) && 0 <= start && start <= end && end <= length
+  );
+}
+
+function mover(edit: Pick<EditOf<'textRevised'>, 'replacements' | 'placed'>) {
+  const placed = new Map(edit.placed.map(({ id, span }) => [id, span]));
+  return (id: string, span: Span): Span => placed.get(id) ?? mapSpan(span, edit.replacements);
+}
+
+function spansOn(study: Study, transcript: string): PlacedSpan[] {
   const memos = [...study.memos.values()].flatMap(({ id, subject }) =>
     subject.kind === 'passage' && subject.transcript === transcript
       ? [{ id, span: subject.span }]
@@ -129,9 +175,8 @@ function spansOn(study: Study, transcript: string): { id: string; span: Span }[]
   ].map(({ id, span: { start, end } }) => ({ id, span: { start, end } }));
 }
 
-function reviseText(study: Study, current: Transcript, edit: EditOf<'textRevised'>): Study {
-  const placed = new Map(edit.placed.map(({ id, span }) => [id, span]));
-  const move = (id: string, span: Span): Span => placed.get(id) ?? mapSpan(span, edit.replacements);
+function reviseText(study: Study, revised: Transcript, edit: EditOf<'textRevised'>): Study {
+  const move = mover(edit);
   const moveAll = <Item extends { readonly id: string; readonly span: Span }>(
     items: ReadonlyMap<string, Item> | undefined,
   ): ReadonlyMap<string, Item> =>
@@ -139,19 +184,14 @@ function reviseText(study: Study, current: Transcript, edit: EditOf<'textRevised
   const memos = new Map<MemoId, Memo>();
   for (const [id, memo] of study.memos) {
     const { subject } = memo;
-    const here = subject.kind === 'passage' && subject.transcript === current.id;
+    const here = subject.kind === 'passage' && subject.transcript === revised.id;
     memos.set(id, here ? { ...memo, subject: { ...subject, span: move(id, subject.span) } } : memo);
   }
-  const moved = withTranscript(study, { ...current, ...edit.to });
   return {
-    ...moved,
+    ...withTranscript(study, revised),
     memos,
-    codings: study.codings.has(current.id)
-      ? withEntry(study.codings, current.id, moveAll(study.codings.get(current.id)))
-      : study.codings,
-    nones: study.nones.has(current.id)
-      ? withEntry(study.nones, current.id, moveAll(study.nones.get(current.id)))
-      : study.nones,
+    codings: withInner(study.codings, revised.id, moveAll(study.codings.get(revised.id))),
+    nones: withInner(study.nones, revised.id, moveAll(study.nones.get(revised.id))),
   };
 }
 
@@ -159,15 +199,19 @@ function withTranscript(study: Study, transcript: Transcript): Study {
   return { ...study, transcripts: withEntry(study.transcripts, transcript.id, transcript) };
 }
 
-function nameFault(study: Study, name: string): Refusal | null {
+function nameFault(study: Study, name: string, except: string): Refusal | null {
   for (const other of study.transcripts.values()) {
-    if (other.name === name) return refused('name taken', name);
+    if (other.id !== except && other.name === name) return refused('name taken', name);
   }
   return null;
 }
 
 function speakerFault(study: Study, { speakers, turns }: Transcript): Refusal | null {
-  const labels = new Set(speakers.map(({ label }) => label));
+  const labels = new Set<string | null>();
+  for (const { label } of speakers) {
+    if (labels.has(label)) return refused('already there', label ?? '');
+    labels.add(label);
+  }
   for (const { speaker } of turns) {
     if (!labels.has(speaker)) return refused('no speaker', speaker ?? '');
   }
@@ -179,6 +223,24 @@ function speakerFault(study: Study, { speakers, turns }: Transcript): Refusal | 
     }
   }
   return null;
+}
+
+/** Turns are in order, apart, and inside the text. */
+function turnFault({ name, turns, length }: Transcript): Refusal | null {
+  let reached = 0;
+  for (const turn of turns) {
+    if (!isSpan(turn, length) || turn.start < reached) return refused('outside the text', name);
+    reached = turn.end;
+  }
+  return null;
+}
+
+function hasMemos(study: Study, transcript: string): boolean {
+  return [...study.memos.values()].some(
+    ({ subject }) =>
+      (subject.kind === 'transcript' || subject.kind === 'passage') &&
+      subject.transcript === transcript,
+  );
 }
 
 function hasDecisions(study: Study, transcript: string): boolean {

@@ -13,8 +13,8 @@ interface WordEdit {
 
 export const wordRules: Rules<'wordSeeded' | 'wordUnseeded' | 'wordShutOut' | 'wordLetIn'> = {
   wordSeeded: {
-    apply: (study, { theme, word }) =>
-      changeWords(study, { theme, word }, (current) => {
+    apply: (study, { theme, word }, restoring) =>
+      changeWords(study, { theme, word }, restoring, (current) => {
         if (current.shutOut.includes(word)) return refused('word shut out there', word);
         if (current.seeds.includes(word)) return refused('word seeded there', word);
         return done({ ...current, seeds: withWord(current.seeds, word) });
@@ -32,11 +32,11 @@ export const wordRules: Rules<'wordSeeded' | 'wordUnseeded' | 'wordShutOut' | 'w
   },
 
   wordShutOut: {
-    apply: (study, { theme, word }) =>
-      changeWords(study, { theme, word }, (current) => {
+    apply: (study, { theme, word }, restoring) =>
+      changeWords(study, { theme, word }, restoring, (current) => {
         if (current.seeds.includes(word)) return refused('word seeded there', word);
         if (current.shutOut.includes(word)) return refused('word shut out there', word);
-        if (isShutOutOfAllOthers(study, theme, word)) {
+        if (!restoring && isShutOutOfAllOthers(study, theme, word)) {
           return refused('shut out everywhere', word);
         }
         return done({ ...current, shutOut: withWord(current.shutOut, word) });
@@ -57,11 +57,12 @@ export const wordRules: Rules<'wordSeeded' | 'wordUnseeded' | 'wordShutOut' | 'w
 function changeWords(
   study: Study,
   { theme, word }: WordEdit,
+  restoring: boolean,
   step: (theme: Theme) => Result<Theme>,
 ): Result<Study> {
   if (word.trim() === '') return refused('empty name', theme);
   return change(study, theme, (current) =>
-    isModelled(current) ? step(current) : outsideModel(current),
+    restoring || isModelled(current) ? step(current) : outsideModel(current),
   );
 }
 
@@ -69,14 +70,19 @@ function withWord(words: readonly string[], word: string): string[] {
   return [...words, word].sort(compareCodeUnits);
 }
 
-/** A word with no theme left to belong to would make its passages impossible to model. */
+/**
+ * A word with no theme left to belong to could not be modelled. Before the first fit nobody knows
+ * how many candidates will stand beside the themes asked for, so nothing is refused then; whoever
+ * builds the priors has to look again.
+ */
 function isShutOutOfAllOthers(study: Study, theme: ThemeId, word: string): boolean {
-  const fitted = study.fit === null ? null : study.fits.get(study.fit);
+  const fitted = study.fit === null ? undefined : study.fits.get(study.fit)?.themes;
+  if (fitted === undefined) return false;
   const others = [...study.themes.values()].filter(
     (other) =>
       other.id !== theme &&
       isModelled(other) &&
-      (other.origin === 'asked for' || fitted === null || fitted?.themes.includes(other.id)),
+      (other.origin === 'asked for' || fitted.includes(other.id)),
   );
   return others.every((other) => other.shutOut.includes(word));
 }
