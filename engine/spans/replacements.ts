@@ -35,11 +35,11 @@ export function mapOffset(
 /**
  * A span after its text changed. Its start clings to what follows and its end to what comes before,
  * so that words put in at either edge stay outside, and a replaced word at an edge stays inside
- * whole. A span whose words were all removed becomes empty.
+ * whole. A span whose words were all removed becomes empty, and an empty one stays empty.
  */
 export function mapSpan<S extends Span>(span: S, replacements: readonly Replacement[]): S {
   const start = mapStart(span.start, replacements);
-  const end = mapEnd(span.end, replacements);
+  const end = span.start === span.end ? start : mapEnd(span.end, replacements);
   return { ...span, start, end: Math.max(start, end) };
 }
 
