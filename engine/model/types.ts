@@ -77,7 +77,11 @@ export interface TracePoint {
   readonly change: number;
 }
 
-export type StopReason = 'converged' | 'sweep limit' | 'stopped by a person';
+/**
+ * Why a fit ended: its likelihood settled; its sweeps were used up; it had a fixed plan and carried
+ * it out (a fit from scratch, or one in which every theme is pinned); or it was cancelled.
+ */
+export type StopReason = 'converged' | 'sweep limit' | 'schedule completed' | 'stopped by a person';
 
 /** The terms of the evidence lower bound; their sum is the bound. Nats. */
 export interface BoundTerms {
@@ -95,7 +99,12 @@ export interface ModelFit {
   readonly themeWords: Float64Array;
   /** Mean negative log likelihood a counted word in each passage, nats; NaN-free: 0 for no words. */
   readonly unexplained: Float32Array;
+  /**
+   * The history of the one run that was made, or, of a pool of runs, of the first; the last point is
+   * the answer itself, with its themes frozen and all passages folded in.
+   */
   readonly trace: readonly TracePoint[];
+  /** Sweeps made over all runs together, without the passes of the fold. */
   readonly sweeps: number;
   readonly stopReason: StopReason;
   readonly boundTerms: BoundTerms;

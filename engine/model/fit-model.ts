@@ -1,0 +1,111 @@
+import { sum } from '../numbers/index.ts';
+import { boundOf } from './bound.ts';
+import { collapsedBound } from './collapsed/history.ts';
+import { prepare, type Prepared } from './collapsed/prepare.ts';
+import { poolRun, warmRun, type FreshStart, type Run } from './collapsed/runs.ts';
+import { themeSizes } from './collapsed/state.ts';
+import { passageLengths } from './check-counts.ts';
+import { consensus } from './consensus.ts';
+import { foldIn, proportions } from './fold-in.ts';
+import type { FitSettings } from './settings.ts';
+import type { Counts, ModelFit, Priors, Start, StopReason, TracePoint, Watcher } from './types.ts';
+import { unexplained } from './unexplained.ts';
+
+/**
+ * The fit people use: collapsed variational inference of order zero (CVB0), and one steady answer.
+ *
+ * From scratch: a pool of short annealed runs, the consensus of their themes, those themes frozen,
+ * and every passage folded in. From a fit before: sweeps that begin where it ended, then the same.
+ * Equal arguments give equal bits, on every machine. A cancelled fit ends with what it has.
+ */
+export function fitModel(
+  counts: Counts,
+  priors: Priors,
+  start: Start,
+  settings: FitSettings,
+  watcher?: Watcher,
+): ModelFit {
+  const prepared = prepare('fitModel', counts, priors);
+  if (prepared.priors.pinned.every((phi) => phi !== null)) {
+    return finishFit(prepared, settings, pinnedThemes(prepared), [], 'schedule completed');
+  }
+  if (start.kind === 'warm') {
+    const run = warmRun(prepared, start, settings, watcher);
+    return finishFit(prepared, settings, run.phi, [run], run.stopReason);
+  }
+  const runs: Run[] = [];
+  for (let number = 0; number < settings.runs; number++) {
+    const done = poolRun(prepared, start, settings, number, partOf(watcher, number, settings.runs));
+    const stopped = done.stopReason === 'stopped by a person';
+    // A run cut short would blur the others; alone it is better than nothing.
+    if (!stopped || runs.length === 0) runs.push(done);
+    if (stopped) return finishPool(prepared, start, settings, runs, done.stopReason);
+  }
+  return finishPool(prepared, start, settings, runs, 'schedule completed');
+}
+
+/** The consensus of a pool's runs, in the order of their numbers, and every passage folded in. */
+export function finishPool(
+  prepared: Prepared,
+  start: FreshStart,
+  settings: FitSettings,
+  runs: readonly Run[],
+  stopReason: StopReason,
+): ModelFit {
+  const { priors, counts } = prepared;
+  const phi = consensus(runs, priors, drawnThemes(prepared, start), counts.words, settings);
+  return finishFit(prepared, settings, phi, runs, stopReason);
+}
+
+function finishFit(
+  prepared: Prepared,
+  settings: FitSettings,
+  phi: Float32Array,
+  runs: readonly Run[],
+  stopReason: StopReason,
+): ModelFit {
+  const { counts, priors, kernel, state, countedWords } = prepared;
+  foldIn(kernel, state, priors, phi, settings.foldPasses);
+  const theta = proportions(state, priors);
+  const terms = collapsedBound(prepared);
+  const surprise = unexplained(counts, priors.themes, theta, phi);
+  const trace = runs.length > 0 ? runs[0].trace : [];
+  const answer: TracePoint = {
+    sweep: trace.length + 1,
+    bound: boundOf(terms),
+    likelihood: countedWords > 0 ? -meanOverWords(prepared, surprise) : 0,
+    change: 0,
+  };
+  return {
+    theta,
+    phi,
+    themeWords: themeSizes(state),
+    unexplained: surprise,
+    trace: [...trace, answer],
+    sweeps: runs.reduce((total, run) => total + run.sweeps, 0),
+    stopReason,
+    boundTerms: terms,
+  };
+}
+
+/** Themes that decisions draw to a row of their own: seeded, or confirmed in a passage. */
+function drawnThemes({ priors }: Prepared, { leanings }: FreshStart): boolean[] {
+  return priors.raised.map((raised, k) => raised || leanings.some(({ theme }) => theme === k));
+}
+
+function pinnedThemes({ counts, priors }: Prepared): Float32Array {
+  const phi = new Float32Array(priors.themes * counts.words);
+  priors.pinned.forEach((row, k) => row && phi.set(row, k * counts.words));
+  return phi;
+}
+
+/** A passage's mean over its words, averaged over all counted words. */
+function meanOverWords({ counts, countedWords }: Prepared, means: Float32Array): number {
+  const lengths = passageLengths(counts);
+  return sum(lengths.map((length, d) => means[d] * length)) / countedWords;
+}
+
+function partOf(watcher: Watcher | undefined, part: number, parts: number): Watcher | undefined {
+  if (!watcher) return undefined;
+  return { progress: (point, fraction) => watcher.progress(point, (part + fraction) / parts) };
+}
