@@ -1,0 +1,505 @@
+import { hex, SALT_BYTES, sameBytes } from './chain.ts';
+import { causeOf, failure, failureOf, StudyFileFault, success } from './failure.ts';
+import type { Result, StudyFileFailure } from './failure.ts';
+import { FileWindow } from './file-window.ts';
+import { decodeHead, HEAD_BYTES, headFor, removedHead } from './frame.ts';
+import { MOST_EDIT_BYTES, MOST_PAYLOAD_BYTES, type FrameHead, type Kind } from './frame.ts';
+import { FrameWriter } from './frame-writer.ts';
+import { encodeHeader, type Header } from './header.ts';
+import type { OwnerNote } from './owner-note.ts';
+import { scan, type StudyRecord } from './scan.ts';
+import { closeQuietly, readWhole, removeQuietly, sameFile } from './storage.ts';
+import type { Handle, Storage } from './storage.ts';
+import { place, putInPlace, writeBeside } from './write-beside.ts';
+import { takeWritersLock, type LockPlace, type WritersLock } from './writers-lock.ts';
+
+/** One decision on its way to the file: what it refers to, then itself. */
+export interface Act {
+  readonly blobs?: readonly Uint8Array[];
+  /**
+   * The edit, as anything JSON can say. It is told the sequence numbers of its blobs, in order, and
+   * its own.
+   */
+  readonly edit: (blobSequences: readonly number[], sequence: number) => unknown;
+}
+
+export type ReadOnlyBecause =
+  /** It was opened so. */
+  | 'asked'
+  /** An fsync failed: what was written last may or may not be on the drive. */
+  | 'not certain'
+  /** A write failed and could not be taken back. */
+  | 'not undone';
+
+/** What `openStudyFile` hands to the class; no business of anyone else's. */
+export interface OpenParts {
+  readonly path: string;
+  readonly storage: Storage;
+  readonly handle: Handle;
+  readonly header: Header;
+  readonly records: StudyRecord[];
+  readonly end: number;
+  readonly head: Uint8Array;
+  readonly leftOver: number;
+  readonly lock: WritersLock | null;
+  readonly note: OwnerNote | null;
+  readonly randomBytes: (size: number) => Uint8Array;
+  readonly onKnock: () => void;
+  readonly lockPlace: LockPlace;
+}
+
+const TAIL_BYTES = 64 * 1024;
+const COPY_BYTES = 1024 * 1024;
+
+/**
+ * An open study file: an append-only list of records, each an edit or a blob that an edit refers to.
+ * The file's format is in FORMAT.md. Its owner closes it.
+ */
+export class StudyFile {
+  /** With links followed. */
+  readonly path: string;
+  readonly studyId: string;
+  /**
+   * Bytes at the end that an interrupted write had left: taken away on opening for writing, passed
+   * over on opening read-only. 0 as a rule.
+   */
+  readonly leftOver: number;
+  readonly #storage: Storage;
+  readonly #randomBytes: (size: number) => Uint8Array;
+  readonly #onKnock: () => void;
+  readonly #lockPlace: LockPlace;
+  readonly #note: OwnerNote | null;
+  readonly #header: Header;
+  #records: StudyRecord[];
+  #handle: Handle | null;
+  #lock: WritersLock | null;
+  #size: number;
+  #link: Uint8Array;
+  /** The file's last bytes as we know them: of the last frame, or of the header. */
+  #tail: Uint8Array;
+  #readOnlyBecause: ReadOnlyBecause | null;
+  #compacting = false;
+
+  constructor(parts: OpenParts) {
+    this.path = parts.path;
+    this.studyId = parts.header.studyId;
+    this.leftOver = parts.leftOver;
+    this.#storage = parts.storage;
+    this.#randomBytes = parts.randomBytes;
+    this.#onKnock = parts.onKnock;
+    this.#lockPlace = parts.lockPlace;
+    this.#header = parts.header;
+    this.#records = parts.records;
+    this.#handle = parts.handle;
+    this.#lock = parts.lock;
+    this.#note = parts.note;
+    this.#size = parts.end;
+    this.#link = parts.head;
+    this.#readOnlyBecause = parts.lock === null ? 'asked' : null;
+    this.#tail = this.#readTail();
+  }
+
+  /** In the order of their sequence numbers, which begin at 1 and have no gaps. */
+  get records(): readonly StudyRecord[] {
+    return this.#records;
+  }
+
+  /** The number that the next record will get; an edit's comes after those of its blobs. */
+  get nextSequence(): number {
+    return this.#records.length + 1;
+  }
+
+  /** The chain's hash after the last record, in hexadecimal. */
+  get head(): string {
+    return hex(this.#link);
+  }
+
+  /** In bytes, up to the end of the last record. */
+  get size(): number {
+    return this.#size;
+  }
+
+  get readOnly(): boolean {
+    return this.#readOnlyBecause !== null;
+  }
+
+  get readOnlyBecause(): ReadOnlyBecause | null {
+    return this.#readOnlyBecause;
+  }
+
+  /**
+   * All edits in order, read as they are asked for; those whose content was removed are left out.
+   * Throws StudyFileFault where a record can't be read any more as it was on opening.
+   */
+  *edits(): Generator<{ readonly sequence: number; readonly json: unknown }> {
+    const window = new FileWindow(this.#storage, this.#openHandle('edits'), this.#size);
+    for (let index = 0; index < this.#records.length; index++) {
+      const record = this.#records[index];
+      if (record === undefined || record.kind !== 'edit' || record.removed) continue;
+      yield { sequence: record.sequence, json: this.#parse(record, this.#body(record, window)) };
+    }
+  }
+
+  /** One edit. Throws as `edits` does, and an Error where there is no such edit. */
+  readEdit(sequence: number): unknown {
+    const record = this.#record('readEdit', sequence, 'edit');
+    return this.#parse(record, this.#body(record));
+  }
+
+  /**
+   * The bytes of a blob, checked against its commitment. Throws StudyFileFault where it can't be read
+   * any more as it was on opening, and an Error where there is no such blob, or it was removed: ask
+   * `records`.
+   */
+  readBlob(sequence: number): Uint8Array {
+    const record = this.#record('readBlob', sequence, 'blob');
+    return this.#body(record);
+  }
+
+  /**
+   * Writes an edit and the blobs that it refers to, in one act: blobs first, the edit last, one fsync.
+   * The edit's sequence number once it is on the drive. See `appendAll` for failures.
+   */
+  append(blobs: readonly Uint8Array[], edit: Act['edit']): Result<number> {
+    const result = this.appendAll([{ blobs, edit }]);
+    return result.ok ? success(result.value[0] ?? 0) : result;
+  }
+
+  /**
+   * Several edits with one fsync; their sequence numbers. All or none, as long as the process lives;
+   * a machine that loses its power in the middle may keep the first few whole.
+   *
+   * Failures: 'read only', 'changed underneath' and 'too large' before anything is written; 'no
+   * space', 'not allowed' and 'cannot write' after which the file is as it was and may be tried
+   * again; 'not certain', after which the study is read-only. Throws when an edit is no JSON, when
+   * `edit` throws, and on a closed study; nothing is written then.
+   */
+  appendAll(acts: readonly Act[]): Result<number[]> {
+    const handle = this.#openHandle('appendAll');
+    if (this.#compacting) throw new Error('StudyFile.appendAll: must wait for compact');
+    if (this.readOnly) return failure('read only', this.path);
+    const prepared = this.#prepare(acts);
+    if (!prepared.ok) return prepared;
+    const { frames, edits } = prepared.value;
+    if (frames.length === 0) return success([]);
+    const changed = this.#changedUnderneath(handle);
+    if (changed !== null) return changed;
+
+    const records: StudyRecord[] = [];
+    const writer = new FrameWriter(this.#storage, handle, this.#size);
+    try {
+      for (const { head, body } of frames) {
+        const { kind, sequence, length } = head;
+        records.push({ sequence, kind, offset: writer.position, length, removed: false });
+        writer.frame(head, body);
+      }
+      writer.flush();
+    } catch (error) {
+      return this.#takeBack(handle, failureOf(error, this.path, 'cannot write'));
+    }
+    try {
+      this.#storage.sync(handle);
+    } catch (error) {
+      // The system may have thrown the unwritten pages away and call the next fsync a success.
+      this.#readOnlyBecause = 'not certain';
+      return failure('not certain', this.path, causeOf(error, this.path));
+    }
+    for (const record of records) this.#records.push(record);
+    this.#size = writer.position;
+    const last = frames[frames.length - 1];
+    if (last !== undefined) {
+      this.#link = last.head.link;
+      this.#tail = this.#readTail();
+    }
+    return success(edits);
+  }
+
+  /**
+   * Copies the study as it stands to another place, which may then be opened as a study of its own
+   * with the same id and chain. 'already there' unless told to replace. Its size in bytes.
+   */
+  async saveCopy(
+    to: string,
+    { replace = false }: { readonly replace?: boolean } = {},
+  ): Promise<Result<number>> {
+    const handle = this.#openHandle('saveCopy');
+    // A copy of the study in its own place would take it from under us.
+    if (replace && this.#isOurs(to, handle)) return failure('already there', to);
+    const written = writeBeside(this.#storage, to, replace, (target) => {
+      const window = new FileWindow(this.#storage, handle, this.#size);
+      for (let done = 0; done < this.#size;) {
+        const piece = window.bytes(done, COPY_BYTES);
+        if (piece.length === 0) throw Object.assign(new Error('cut short'), { code: 'EIO' });
+        target.add(piece);
+        target.flush();
+        done += piece.length;
+      }
+    });
+    if (!written.ok) return written;
+    const placed = await place(this.#storage, written.value, to);
+    return placed.ok ? success(this.#size) : placed;
+  }
+
+  /**
+   * Writes the file anew without the content of the records named, and puts it in place of the old
+   * one. The records stay with their commitments, so numbers and head are what they were. Sizes in
+   * bytes. Where it fails the old file stays, and the study stays open on it.
+   */
+  async compact(
+    unused: Iterable<number>,
+  ): Promise<Result<{ readonly before: number; readonly after: number }>> {
+    const handle = this.#openHandle('compact');
+    if (this.readOnly) return failure('read only', this.path);
+    if (this.#compacting) throw new Error('StudyFile.compact: must wait for the other compact');
+    const gone = new Set(unused);
+    for (const sequence of gone) {
+      if (this.#records[sequence - 1] === undefined) {
+        throw new Error(`StudyFile.compact: unused holds ${sequence}, must be a record's number`);
+      }
+    }
+    const changed = this.#changedUnderneath(handle);
+    if (changed !== null) return changed;
+    this.#compacting = true;
+    try {
+      return await this.#compact(handle, gone);
+    } finally {
+      this.#compacting = false;
+    }
+  }
+
+  /** Gives up the lock and takes the owner note away. Closing twice does nothing. */
+  close(): void {
+    const handle = this.#handle;
+    if (handle === null) return;
+    if (this.#compacting) throw new Error('StudyFile.close: must wait for compact');
+    this.#handle = null;
+    this.#note?.remove();
+    closeQuietly(this.#storage, handle);
+    this.#lock?.release();
+  }
+
+  async #compact(
+    handle: Handle,
+    gone: ReadonlySet<number>,
+  ): Promise<Result<{ before: number; after: number }>> {
+    const before = this.#size;
+    const mode = this.#storage.stat(handle).mode;
+    const written = writeBeside(
+      this.#storage,
+      this.path,
+      true,
+      (target) => this.#writeWithout(gone, handle, target),
+      mode,
+    );
+    if (!written.ok) return written;
+    const beside = written.value;
+    const giveUp = (why: StudyFileFailure, lock?: WritersLock): StudyFileFailure => {
+      lock?.release();
+      removeQuietly(this.#storage, beside);
+      return why;
+    };
+
+    let identity;
+    let fresh;
+    try {
+      const check = this.#storage.open(beside, 'read');
+      try {
+        identity = this.#storage.stat(check);
+        fresh = await scan(new FileWindow(this.#storage, check, identity.size), this.#header);
+      } finally {
+        this.#storage.close(check);
+      }
+    } catch (error) {
+      return giveUp(failureOf(error, this.path, 'cannot write'));
+    }
+    // Read back before it takes the place of the only other one.
+    const asWritten = fresh.damage === null && fresh.end === identity.size;
+    if (!asWritten || !sameBytes(fresh.head, this.#link)) {
+      return giveUp(failure('cannot write', this.path));
+    }
+    // The lock goes by the file's identity, so the new file needs its own before it can be found.
+    const taken = await takeWritersLock(identity, this.#onKnock, this.#lockPlace);
+    if (!taken.ok) return giveUp(failure('cannot lock', this.path));
+
+    // Windows replaces no open file.
+    closeQuietly(this.#storage, handle);
+    this.#handle = null;
+    let unsynced: unknown;
+    try {
+      unsynced = await putInPlace(this.#storage, beside, this.path);
+    } catch (error) {
+      const why = giveUp(failureOf(error, this.path, 'cannot write'), taken.lock);
+      this.#reopen();
+      return why;
+    }
+    this.#lock?.release();
+    this.#lock = taken.lock;
+    this.#records = fresh.records;
+    this.#size = fresh.end;
+    const reopened = this.#reopen();
+    if (reopened !== null) return reopened;
+    if (unsynced !== null) {
+      this.#readOnlyBecause = 'not certain';
+      return failure('not certain', this.path, causeOf(unsynced, this.path));
+    }
+    return success({ before, after: this.#size });
+  }
+
+  #writeWithout(gone: ReadonlySet<number>, from: Handle, target: FrameWriter): void {
+    const window = new FileWindow(this.#storage, from, this.#size);
+    target.add(encodeHeader(this.studyId, this.#header.locked, this.#header.keyRegion));
+    for (const record of this.#records) {
+      const head = this.#headAt(record, window.bytes(record.offset, HEAD_BYTES));
+      if (gone.has(record.sequence)) {
+        target.frame(removedHead(head), new Uint8Array(0));
+      } else {
+        target.frame(head, this.#body(record, window));
+      }
+    }
+  }
+
+  #reopen(): StudyFileFailure | null {
+    try {
+      this.#handle = this.#storage.open(this.path, 'write');
+      this.#tail = this.#readTail();
+      return null;
+    } catch (error) {
+      // Closed for good: the file is whole, but not in our hands.
+      if (this.#handle !== null) closeQuietly(this.#storage, this.#handle);
+      this.#handle = null;
+      this.#note?.remove();
+      this.#lock?.release();
+      return failureOf(error, this.path, 'cannot write');
+    }
+  }
+
+  #prepare(
+    acts: readonly Act[],
+  ): Result<{ frames: { head: FrameHead; body: Uint8Array }[]; edits: number[] }> {
+    const frames: { head: FrameHead; body: Uint8Array }[] = [];
+    const edits: number[] = [];
+    let link = this.#link;
+    const add = (kind: Kind, body: Uint8Array): number => {
+      const sequence = this.nextSequence + frames.length;
+      const salt = this.#randomBytes(SALT_BYTES);
+      if (salt.length !== SALT_BYTES) {
+        throw new Error(
+          `StudyFile: randomBytes gave ${salt.length} bytes, must give ${SALT_BYTES}`,
+        );
+      }
+      const head = headFor(kind, sequence, salt, body, link);
+      link = head.link;
+      frames.push({ head, body });
+      return sequence;
+    };
+    for (const { blobs = [], edit } of acts) {
+      if (blobs.some((blob) => blob.length > MOST_PAYLOAD_BYTES)) {
+        return failure('too large', this.path);
+      }
+      const blobSequences = blobs.map((blob) => add('blob', blob));
+      const own = this.nextSequence + frames.length;
+      const json: string | undefined = JSON.stringify(edit(blobSequences, own));
+      if (json === undefined) {
+        throw new Error('StudyFile.append: edit gave nothing, must give what JSON can say');
+      }
+      const body = Buffer.from(json, 'utf8');
+      if (body.length > MOST_EDIT_BYTES) return failure('too large', this.path);
+      edits.push(add('edit', body));
+    }
+    return success({ frames, edits });
+  }
+
+  /** Whether the file is still the one that we know, at its name and at its end. */
+  #changedUnderneath(handle: Handle): StudyFileFailure | null {
+    const changed = (how: NonNullable<StudyFileFailure['how']>) =>
+      failure('changed underneath', this.path, { how });
+    if (this.#lock?.held() === false) return changed('lock');
+    try {
+      const ours = this.#storage.stat(handle);
+      if (!sameFile(ours, this.#storage.statPath(this.path))) return changed('replaced');
+      if (ours.size !== this.#size) return changed('size');
+      return sameBytes(this.#readTail(), this.#tail) ? null : changed('content');
+    } catch (error) {
+      const why = failureOf(error, this.path, 'cannot read');
+      return why.code === 'not found' ? changed('missing') : why;
+    }
+  }
+
+  #isOurs(other: string, handle: Handle): boolean {
+    try {
+      return sameFile(this.#storage.statPath(other), this.#storage.stat(handle));
+    } catch {
+      return false;
+    }
+  }
+
+  #readTail(): Uint8Array {
+    const handle = this.#openHandle('readTail');
+    const start = this.#records[this.#records.length - 1]?.offset ?? 0;
+    const bytes = new Uint8Array(Math.min(TAIL_BYTES, this.#size - start));
+    const read = readWhole(this.#storage, handle, bytes, this.#size - bytes.length);
+    return bytes.subarray(0, read);
+  }
+
+  #takeBack(handle: Handle, why: StudyFileFailure): StudyFileFailure {
+    try {
+      this.#storage.truncate(handle, this.#size);
+      // Else a loss of power could bring back whole edits that were reported as failed.
+      this.#storage.sync(handle);
+    } catch {
+      this.#readOnlyBecause = 'not undone';
+    }
+    return why;
+  }
+
+  #body(record: StudyRecord, window?: FileWindow): Uint8Array<ArrayBuffer> {
+    const view = window ?? new FileWindow(this.#storage, this.#openHandle('read'), this.#size);
+    let body: Uint8Array<ArrayBuffer>;
+    let head: FrameHead;
+    try {
+      head = this.#headAt(record, view.bytes(record.offset, HEAD_BYTES));
+      body = view.copy(record.offset + HEAD_BYTES, record.length);
+    } catch (error) {
+      if (error instanceof StudyFileFault) throw error;
+      throw new StudyFileFault(failureOf(error, this.path, 'cannot read'));
+    }
+    const found = headFor(head.kind, head.sequence, head.salt, body, new Uint8Array(0)).commitment;
+    if (!record.removed && !sameBytes(found, head.commitment))
+      throw this.#rotten(record, 'content');
+    return body;
+  }
+
+  #headAt(record: StudyRecord, bytes: Uint8Array): FrameHead {
+    const head = decodeHead(bytes);
+    if (head?.sequence !== record.sequence || head.length !== record.length) {
+      throw this.#rotten(record, 'head');
+    }
+    return head;
+  }
+
+  #parse(record: StudyRecord, body: Uint8Array<ArrayBuffer>): unknown {
+    try {
+      return JSON.parse(new TextDecoder('utf-8', { fatal: true }).decode(body));
+    } catch {
+      throw this.#rotten(record, 'content');
+    }
+  }
+
+  #rotten(record: StudyRecord, reason: 'head' | 'content'): StudyFileFault {
+    const { offset, sequence } = record;
+    return new StudyFileFault(failure('damaged', this.path, { offset, sequence, reason }));
+  }
+
+  #record(asker: string, sequence: number, kind: Kind): StudyRecord {
+    const record = this.#records[sequence - 1];
+    if (record?.kind !== kind || record.removed) {
+      throw new Error(`StudyFile.${asker}: sequence is ${sequence}, must be of a kept ${kind}`);
+    }
+    return record;
+  }
+
+  #openHandle(asker: string): Handle {
+    if (this.#handle === null) throw new Error(`StudyFile.${asker}: the study is closed`);
+    return this.#handle;
+  }
+}
