@@ -22,5 +22,5 @@ export {
 } from './settings.ts';
 export { searchForm, stemmerFor } from './stemming.ts';
 export { participantOf, roleOf, speakerKey, type TranscriptText } from './transcript.ts';
-export { turnsFromText, type TurnsOfText } from './turns.ts';
+export { labelledLines, turnsFromText, type LabelledLine, type TurnsOfText } from './turns.ts';
 export { createWordScanner, formOf, wordsOf, type Word, type WordScanner } from './words.ts';

@@ -313,9 +313,16 @@ function withoutAnchors(
   const all = named.flatMap((group) => group.lines).sort((a, b) => a.line - b.line);
   if (all.length === 0) return [];
   const first = all[0]!.line;
-  if (named.length > 1 && all.length * 10 >= (lines.length - first) * 6) return all;
   const opensTalk = first === 0 || (lines[first]!.blankBefore && first < 8);
+  if (named.length > 1) {
+    const paragraphs = lines.filter((line, index) => index >= first && line.blankBefore).length;
+    const starts = all.filter((candidate) => lines[candidate.line]!.blankBefore).length;
+    const most = (part: number, whole: number): boolean => part * 10 >= whole * 6;
+    return opensTalk || most(all.length, lines.length - first) || most(starts, paragraphs)
+      ? all
+      : [];
+  }
   const line = lines[first]!;
   const long = line.end - all[0]!.speech > 60 || lines.length > first + 1;
-  return named.length === 1 && opensTalk && long && named[0]!.shape !== 'name' ? all : [];
+  return opensTalk && long && named[0]!.shape !== 'name' ? all : [];
 }

@@ -46,6 +46,39 @@ export function turnsFromText(text: string): TurnsOfText {
   return { details: lines.slice(0, first).flatMap((line) => detailOf(text, line)), turns };
 }
 
+/** A line that a label begins. */
+export interface LabelledLine {
+  readonly label: string;
+  /** Where the words behind the label begin; the end of the line where none follow. */
+  readonly speech: number;
+}
+
+/**
+ * Which of the lines begin with a speaker's label, decided over all of them by the same rules; null
+ * for the others. Empty lines separate captions or paragraphs; there are no details among them.
+ */
+export function labelledLines(lines: readonly string[]): (LabelledLine | null)[] {
+  const text = lines.join('\n');
+  const found = linesOf(text);
+  const labels = new Map(
+    chooseLabels(text, found, findCandidates(text, found)).map((candidate) => [
+      found[candidate.line]!.start,
+      candidate,
+    ]),
+  );
+  let start = 0;
+  return lines.map((line) => {
+    const at = start;
+    start += line.length + 1;
+    const candidate = labels.get(trimmed(text, at, at + line.length).start);
+    if (candidate === undefined) return null;
+    return {
+      label: candidate.label,
+      speech: speechSpan(text, candidate.speech, at + line.length).start - at,
+    };
+  });
+}
+
 /** The lines that hold anything but white space. */
 function linesOf(text: string): Line[] {
   const lines: Line[] = [];

@@ -1,0 +1,2 @@
+export { readTranscript } from './read-transcript.ts';
+export type { Format, ReadFile, ReadRefusal, ReadResult } from './read-file.ts';

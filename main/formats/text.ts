@@ -1,0 +1,32 @@
+/**
+ * What a readable text is when it is no transcript, by its beginning or, where that says nothing, by
+ * the ending of its name; null for a transcript.
+ */
+export function otherTextFormat(text: string, fileName: string): string | null {
+  const beginning = text.slice(0, 400).trimStart().toLowerCase();
+  if (beginning.startsWith('<!doctype html') || beginning.startsWith('<html')) return 'html';
+  if (beginning.startsWith('<?xml')) return 'xml';
+  const ending = /\.([^./\\]+)$/.exec(fileName)?.[1]?.toLowerCase() ?? '';
+  return endings.has(ending) ? ending : null;
+}
+
+const endings: ReadonlySet<string> = new Set([
+  'csv',
+  'tsv',
+  'json',
+  'xml',
+  'html',
+  'htm',
+  'css',
+  'js',
+  'ts',
+  'py',
+  'r',
+  'yaml',
+  'yml',
+  'toml',
+  'ini',
+  'tex',
+  'bib',
+  'svg',
+]);
