@@ -1,0 +1,885 @@
+import { describe, expect, it } from 'vitest';
+import {
+  editKinds,
+  emptyDefinition,
+  emptyStudy,
+  spansLost,
+  type Coding,
+  type EditKind,
+  type EditOf,
+  type Study,
+  type TextState,
+  type Theme,
+} from '../../../engine/study/index.ts';
+import { holdsLaw, type Expectation } from './law.ts';
+import {
+  ada,
+  after,
+  candidate,
+  coding,
+  firstFit,
+  fit,
+  harbour,
+  having,
+  island,
+  maren,
+  memo,
+  mill,
+  none,
+  sea,
+  silence,
+  span,
+  started,
+  theme,
+  tove,
+  work,
+} from './scene.ts';
+
+interface Case<Kind extends EditKind> {
+  /** Completes "<kind> …". */
+  readonly does: string;
+  readonly before?: Study;
+  readonly edit: EditOf<Kind>;
+  readonly expected: Expectation;
+}
+
+const lars = { id: 'lars', name: 'Lars', attributes: { village: 'Nes' } };
+const quay = { ...harbour, id: 'quay', name: 'West/Quay' };
+
+function changing(id: string, changes: Partial<Theme>, study = island): Expectation {
+  return { themes: having(study.themes, id, { ...study.themes.get(id)!, ...changes }) };
+}
+
+function codings(transcript: string, id: string, value?: Coding, study = island): Expectation {
+  const inner = having(study.codings.get(transcript) ?? new Map<string, Coding>(), id, value);
+  return { codings: having(study.codings, transcript, inner.size === 0 ? undefined : inner) };
+}
+
+const lonely = theme('lonely', { name: 'Lonely' });
+const withLonely = after(island, { kind: 'themeAdded', theme: lonely });
+const mergedIntoSea = after(island, { kind: 'themesMerged', into: 'sea', from: ['work'] });
+const workAside = after(island, { kind: 'themeSetAside', theme: 'work' });
+const seaAside = after(island, { kind: 'themeSetAside', theme: 'sea' });
+const secondFit = fit('second-fit', {
+  themes: ['sea', 'work', 'late'],
+  start: { kind: 'warm', seed: 2, from: 'first-fit' },
+});
+const late = theme('late', { name: null, origin: 'fitted' });
+const secondFitting = {
+  kind: 'modelFitted',
+  fit: secondFit,
+  found: [late],
+  before: 'first-fit',
+} as const;
+const fittedTwice = after(island, secondFitting);
+
+const wordedOnce: TextState = {
+  text: harbour.text,
+  length: harbour.length,
+  turns: harbour.turns,
+};
+
+/** Harbour with 8 of its units (25 to 33, across a change of speaker) replaced by 4. */
+const stretchReplaced: EditOf<'textRevised'> = {
+  kind: 'textRevised',
+  transcript: 'harbour',
+  from: wordedOnce,
+  to: {
+    text: { sequence: 40, bytes: 60 },
+    length: 56,
+    turns: [
+      { ...harbour.turns[0]! },
+      { ...harbour.turns[1]!, end: 29 },
+      { ...harbour.turns[2]!, start: 29, end: 36 },
+      { ...harbour.turns[3]!, start: 37, end: 56 },
+    ],
+  },
+  replacements: [{ start: 25, end: 33, inserted: 4 }],
+  placed: [],
+  // Its end lay inside what was replaced, so mapping back would bring it to 33.
+  lost: [{ id: 'on-harbour', span: span(11, 30) }],
+};
+
+function harbourMoved(
+  { to }: EditOf<'textRevised'>,
+  places: { coding: [number, number]; none: [number, number]; memo: [number, number] },
+): Expectation {
+  const marked = none('none-on-harbour', { span: span(...places.none) });
+  return {
+    transcripts: having(island.transcripts, 'harbour', { ...harbour, ...to }),
+    ...codings('harbour', 'on-harbour', coding('on-harbour', { span: span(...places.coding) })),
+    nones: new Map([['harbour', new Map([['none-on-harbour', marked]])]]),
+    memos: having(
+      island.memos,
+      'on-passage',
+      memo('on-passage', {
+        kind: 'passage',
+        transcript: 'harbour',
+        span: span(...places.memo),
+      }),
+    ),
+  };
+}
+
+const allRemoved: EditOf<'textRevised'> = {
+  ...stretchReplaced,
+  to: {
+    text: { sequence: 40, bytes: 10 },
+    length: 10,
+    turns: [harbour.turns[0]!],
+  },
+  replacements: [{ start: 10, end: 60, inserted: 0 }],
+  lost: [
+    { id: 'on-harbour', span: span(11, 30) },
+    { id: 'none-on-harbour', span: span(41, 60) },
+    { id: 'on-passage', span: span(20, 36) },
+  ],
+};
+const emptied = after(island, allRemoved);
+const emptyCoding = emptied.codings.get('harbour')!.get('on-harbour')!;
+
+const cases: { readonly [Kind in EditKind]: readonly Case<Kind>[] } = {
+  studyStarted: [
+    {
+      does: 'gives the study its id and its name',
+      before: emptyStudy,
+      edit: { kind: 'studyStarted', study: 'island', name: 'The island' },
+      expected: { id: 'island', name: 'The island' },
+    },
+  ],
+  studyRenamed: [
+    {
+      does: 'changes the name',
+      edit: { kind: 'studyRenamed', from: 'The island', to: 'Skarvoy' },
+      expected: { name: 'Skarvoy' },
+    },
+  ],
+  settingsChanged: [
+    {
+      does: 'sets, changes and unsets',
+      before: after(island, {
+        kind: 'settingsChanged',
+        changes: [{ key: 'model.themes', from: null, to: 12 }],
+      }),
+      edit: {
+        kind: 'settingsChanged',
+        changes: [
+          { key: 'text.stemming', from: true, to: null },
+          { key: 'model.themes', from: 12, to: 0.5 },
+          { key: 'text.fillers', from: null, to: ['mm', 'you know'] },
+        ],
+      },
+      expected: { settings: { 'model.themes': 0.5, 'text.fillers': ['mm', 'you know'] } },
+    },
+    {
+      does: 'may change one setting twice',
+      edit: {
+        kind: 'settingsChanged',
+        changes: [
+          { key: 'text.stemming', from: true, to: false },
+          { key: 'text.stemming', from: false, to: 'later' },
+        ],
+      },
+      expected: { settings: { 'text.stemming': 'later' } },
+    },
+    {
+      does: 'takes a key that every object has for a setting like any other',
+      edit: { kind: 'settingsChanged', changes: [{ key: 'constructor', from: null, to: 1 }] },
+      expected: { settings: { 'text.stemming': true, constructor: 1 } as never },
+    },
+  ],
+  readerAdded: [
+    {
+      does: 'adds a reader',
+      edit: { kind: 'readerAdded', reader: { id: 'reader-bo', name: 'Bo' } },
+      expected: { readers: having(island.readers, 'reader-bo', { id: 'reader-bo', name: 'Bo' }) },
+    },
+  ],
+  readerRemoved: [
+    {
+      does: 'removes one who decided nothing',
+      before: after(started, { kind: 'readerAdded', reader: ada }),
+      edit: { kind: 'readerRemoved', reader: ada },
+      expected: { readers: new Map() },
+    },
+  ],
+  transcriptGathered: [
+    {
+      does: 'adds a transcript',
+      edit: { kind: 'transcriptGathered', transcript: quay },
+      expected: { transcripts: having(island.transcripts, 'quay', quay) },
+    },
+  ],
+  transcriptRemoved: [
+    {
+      does: 'removes one without decisions',
+      before: after(island, { kind: 'transcriptGathered', transcript: quay }),
+      edit: { kind: 'transcriptRemoved', transcript: quay },
+      expected: { transcripts: island.transcripts },
+    },
+    {
+      does: 'removes one whose only coding was removed',
+      before: after(island, {
+        kind: 'codingRemoved',
+        coding: island.codings.get('mill')!.get('on-mill')!,
+      }),
+      edit: { kind: 'transcriptRemoved', transcript: mill },
+      expected: { transcripts: having(island.transcripts, 'mill', undefined) },
+    },
+  ],
+  transcriptRenamed: [
+    {
+      does: 'changes its name',
+      edit: { kind: 'transcriptRenamed', transcript: 'mill', from: 'Mill', to: 'Old mill' },
+      expected: { transcripts: having(island.transcripts, 'mill', { ...mill, name: 'Old mill' }) },
+    },
+  ],
+  speakersAssigned: [
+    {
+      does: 'says whose each label is',
+      edit: {
+        kind: 'speakersAssigned',
+        transcript: 'harbour',
+        from: harbour.speakers,
+        to: [
+          { label: 'INT', role: 'other', participant: null },
+          { label: 'MAREN', role: 'participant', participant: 'tove' },
+        ],
+      },
+      expected: {
+        transcripts: having(island.transcripts, 'harbour', {
+          ...harbour,
+          speakers: [
+            { label: 'INT', role: 'other', participant: null },
+            { label: 'MAREN', role: 'participant', participant: 'tove' },
+          ],
+        }),
+      },
+    },
+  ],
+  textRevised: [
+    {
+      does: 'maps every span, those cut by the replacement included',
+      edit: stretchReplaced,
+      expected: harbourMoved(stretchReplaced, { coding: [11, 29], none: [37, 56], memo: [20, 32] }),
+    },
+    {
+      does: 'leaves words put in at the edges of a coding outside',
+      edit: {
+        ...stretchReplaced,
+        to: {
+          text: { sequence: 40, bytes: 70 },
+          length: 66,
+          turns: [
+            { ...harbour.turns[0]! },
+            { ...harbour.turns[1]!, start: 13, end: 36 },
+            { ...harbour.turns[2]!, start: 37, end: 46 },
+            { ...harbour.turns[3]!, start: 47, end: 66 },
+          ],
+        },
+        replacements: [
+          { start: 11, end: 11, inserted: 2 },
+          { start: 30, end: 30, inserted: 4 },
+        ],
+        lost: [],
+      },
+      expected: harbourMoved(
+        {
+          ...stretchReplaced,
+          to: {
+            text: { sequence: 40, bytes: 70 },
+            length: 66,
+            turns: [
+              { ...harbour.turns[0]! },
+              { ...harbour.turns[1]!, start: 13, end: 36 },
+              { ...harbour.turns[2]!, start: 37, end: 46 },
+              { ...harbour.turns[3]!, start: 47, end: 66 },
+            ],
+          },
+        },
+        { coding: [13, 32], none: [47, 66], memo: [22, 42] },
+      ),
+    },
+    {
+      does: 'puts a span where a person placed it',
+      edit: {
+        ...stretchReplaced,
+        placed: [
+          { id: 'on-harbour', span: span(12, 20) },
+          { id: 'on-passage', span: span(0, 3) },
+        ],
+        lost: [
+          { id: 'on-harbour', span: span(11, 30) },
+          { id: 'on-passage', span: span(20, 36) },
+        ],
+      },
+      expected: harbourMoved(stretchReplaced, { coding: [12, 20], none: [37, 56], memo: [0, 3] }),
+    },
+    {
+      does: 'empties the spans whose words it removes',
+      edit: allRemoved,
+      expected: harbourMoved(allRemoved, { coding: [10, 10], none: [10, 10], memo: [10, 10] }),
+    },
+    {
+      does: 'changes a transcript without decisions',
+      before: after(started, {
+        kind: 'transcriptGathered',
+        transcript: { ...mill, speakers: [{ label: null, role: 'other', participant: null }] },
+      }),
+      edit: {
+        kind: 'textRevised',
+        transcript: 'mill',
+        from: { text: mill.text, length: 40, turns: mill.turns },
+        to: {
+          text: { sequence: 9, bytes: 41 },
+          length: 41,
+          turns: [{ ...mill.turns[0]!, end: 41 }],
+        },
+        replacements: [{ start: 3, end: 4, inserted: 2 }],
+        placed: [],
+        lost: [],
+      },
+      expected: {
+        transcripts: new Map([
+          [
+            'mill',
+            {
+              ...mill,
+              speakers: [{ label: null, role: 'other', participant: null }],
+              text: { sequence: 9, bytes: 41 },
+              length: 41,
+              turns: [{ ...mill.turns[0]!, end: 41 }],
+            },
+          ],
+        ]),
+      },
+    },
+  ],
+  participantAdded: [
+    {
+      does: 'adds a participant',
+      edit: { kind: 'participantAdded', participant: lars },
+      expected: { participants: having(island.participants, 'lars', lars) },
+    },
+  ],
+  participantRemoved: [
+    {
+      does: 'removes one who speaks nowhere',
+      edit: { kind: 'participantRemoved', participant: tove },
+      expected: { participants: having(island.participants, 'tove', undefined) },
+    },
+  ],
+  participantDescribed: [
+    {
+      does: 'changes name and attributes',
+      edit: {
+        kind: 'participantDescribed',
+        participant: 'maren',
+        from: { name: 'Maren', attributes: maren.attributes },
+        to: { name: 'P01', attributes: { village: 'Nes' } },
+      },
+      expected: {
+        participants: having(island.participants, 'maren', {
+          id: 'maren',
+          name: 'P01',
+          attributes: { village: 'Nes' },
+        }),
+      },
+    },
+  ],
+  themeAdded: [
+    {
+      does: 'puts a theme at the end of the codebook',
+      edit: { kind: 'themeAdded', theme: lonely },
+      expected: { themes: having(island.themes, 'lonely', lonely) },
+    },
+    {
+      does: 'puts a theme where it is told',
+      edit: { kind: 'themeAdded', theme: lonely, place: 1 },
+      expected: {
+        themes: new Map(
+          [sea, lonely, silence, work, candidate].map((each) => [each.id, each] as const),
+        ),
+      },
+    },
+    {
+      does: 'lets a theme take the name of one that was merged away',
+      before: mergedIntoSea,
+      edit: { kind: 'themeAdded', theme: theme('new-work', { name: 'Work' }) },
+      expected: {
+        themes: having(mergedIntoSea.themes, 'new-work', theme('new-work', { name: 'Work' })),
+      },
+    },
+  ],
+  themeRemoved: [
+    {
+      does: 'takes the last theme out',
+      before: withLonely,
+      edit: { kind: 'themeRemoved', theme: lonely, place: null },
+      expected: { themes: island.themes },
+    },
+    {
+      does: 'takes a theme out of the middle, to which an undo brings it back',
+      edit: { kind: 'themeRemoved', theme: silence, place: 1 },
+      expected: { themes: having(island.themes, 'silence', undefined) },
+    },
+    {
+      does: 'takes out a theme that was merged away, pointer and all',
+      before: after(
+        withLonely,
+        { kind: 'themesMerged', into: 'sea', from: ['lonely'] },
+        { kind: 'themeSetAside', theme: 'sea' },
+      ),
+      edit: { kind: 'themeRemoved', theme: { ...lonely, mergedInto: 'sea' }, place: null },
+      expected: { themes: seaAside.themes },
+    },
+  ],
+  themeRenamed: [
+    {
+      does: 'names a candidate',
+      edit: { kind: 'themeRenamed', theme: 'candidate', from: null, to: 'Weather' },
+      expected: changing('candidate', { name: 'Weather' }),
+    },
+    {
+      does: 'may change nothing but the case',
+      edit: { kind: 'themeRenamed', theme: 'sea', from: 'sea', to: 'Sea' },
+      expected: changing('sea', { name: 'Sea' }),
+    },
+  ],
+  themeDefined: [
+    {
+      does: 'rewords the codebook entry and counts the wording',
+      edit: {
+        kind: 'themeDefined',
+        theme: 'sea',
+        from: { version: 1, definition: emptyDefinition },
+        to: { version: 2, definition: { ...emptyDefinition, brief: 'Living by and off the sea' } },
+      },
+      expected: changing('sea', {
+        version: 2,
+        definition: { ...emptyDefinition, brief: 'Living by and off the sea' },
+      }),
+    },
+  ],
+  themePinned: [
+    {
+      does: 'pins a theme',
+      edit: { kind: 'themePinned', theme: 'sea' },
+      expected: changing('sea', { pinned: true }),
+    },
+  ],
+  themeUnpinned: [
+    {
+      does: 'unpins a theme',
+      before: after(island, { kind: 'themePinned', theme: 'sea' }),
+      edit: { kind: 'themeUnpinned', theme: 'sea' },
+      expected: changing('sea', { pinned: false }),
+    },
+    {
+      does: 'unpins a theme that was set aside since',
+      before: after(
+        island,
+        { kind: 'themePinned', theme: 'sea' },
+        { kind: 'themeSetAside', theme: 'sea' },
+      ),
+      edit: { kind: 'themeUnpinned', theme: 'sea' },
+      expected: changing('sea', { setAside: true }),
+    },
+  ],
+  themeSetAside: [
+    {
+      does: 'takes a theme out of the model and keeps it',
+      edit: { kind: 'themeSetAside', theme: 'work' },
+      expected: changing('work', { setAside: true }),
+    },
+  ],
+  themeBroughtBack: [
+    {
+      does: 'brings a theme back',
+      before: workAside,
+      edit: { kind: 'themeBroughtBack', theme: 'work' },
+      expected: { themes: island.themes },
+    },
+  ],
+  themesMerged: [
+    {
+      does: 'leaves pointers, and codings and seeds where they are',
+      edit: { kind: 'themesMerged', into: 'work', from: ['sea', 'candidate'] },
+      expected: {
+        themes: having(having(island.themes, 'sea', { ...sea, mergedInto: 'work' }), 'candidate', {
+          ...candidate,
+          mergedInto: 'work',
+        }),
+      },
+    },
+    {
+      does: 'lets a theme by hand join one with words',
+      edit: { kind: 'themesMerged', into: 'sea', from: ['silence'] },
+      expected: changing('silence', { mergedInto: 'sea' }),
+    },
+    {
+      does: 'may follow upon an earlier merge',
+      before: mergedIntoSea,
+      edit: { kind: 'themesMerged', into: 'candidate', from: ['sea'] },
+      expected: changing('sea', { mergedInto: 'candidate' }, mergedIntoSea),
+    },
+  ],
+  themesUnmerged: [
+    {
+      does: 'takes the pointers away',
+      before: mergedIntoSea,
+      edit: { kind: 'themesUnmerged', into: 'sea', from: ['work'] },
+      expected: { themes: island.themes },
+    },
+    {
+      does: 'does so even where the other theme was set aside since',
+      before: after(mergedIntoSea, { kind: 'themeSetAside', theme: 'sea' }),
+      edit: { kind: 'themesUnmerged', into: 'sea', from: ['work'] },
+      expected: { themes: seaAside.themes },
+    },
+    {
+      does: 'does so even where the other theme was itself merged since',
+      before: after(mergedIntoSea, { kind: 'themesMerged', into: 'candidate', from: ['sea'] }),
+      edit: { kind: 'themesUnmerged', into: 'sea', from: ['work'] },
+      expected: changing('sea', { mergedInto: 'candidate' }),
+    },
+  ],
+  themesOrdered: [
+    {
+      does: 'puts the codebook in another order',
+      edit: {
+        kind: 'themesOrdered',
+        from: ['sea', 'silence', 'work', 'candidate'],
+        to: ['candidate', 'sea', 'silence', 'work'],
+      },
+      expected: {
+        themes: new Map([candidate, sea, silence, work].map((each) => [each.id, each] as const)),
+      },
+    },
+  ],
+  wordSeeded: [
+    {
+      does: 'puts a word among the seeds, in code-unit order',
+      edit: { kind: 'wordSeeded', theme: 'sea', word: 'net' },
+      expected: changing('sea', { seeds: ['boat', 'net', 'tide'] }),
+    },
+  ],
+  wordUnseeded: [
+    {
+      does: 'takes a seed away',
+      edit: { kind: 'wordUnseeded', theme: 'sea', word: 'boat' },
+      expected: changing('sea', { seeds: ['tide'] }),
+    },
+    {
+      does: 'takes a seed away from a theme that is set aside',
+      before: seaAside,
+      edit: { kind: 'wordUnseeded', theme: 'sea', word: 'boat' },
+      expected: changing('sea', { seeds: ['tide'] }, seaAside),
+    },
+  ],
+  wordShutOut: [
+    {
+      does: 'shuts a word out, in code-unit order',
+      edit: { kind: 'wordShutOut', theme: 'sea', word: 'Zion' },
+      expected: changing('sea', { shutOut: ['Zion', 'flour'] }),
+    },
+    {
+      does: 'shuts a word out of the only theme there is before the first fit',
+      before: after(started, { kind: 'themeAdded', theme: work }),
+      edit: { kind: 'wordShutOut', theme: 'work', word: 'boat' },
+      expected: { themes: new Map([['work', { ...work, shutOut: ['boat'] }]]) },
+    },
+  ],
+  wordLetIn: [
+    {
+      does: 'lets a word in again',
+      edit: { kind: 'wordLetIn', theme: 'sea', word: 'flour' },
+      expected: changing('sea', { shutOut: [] }),
+    },
+    {
+      does: 'lets a word in that no theme was left for',
+      before: after(
+        island,
+        { kind: 'themeSetAside', theme: 'work' },
+        { kind: 'themeSetAside', theme: 'candidate' },
+      ),
+      edit: { kind: 'wordLetIn', theme: 'sea', word: 'flour' },
+      expected: {
+        themes: new Map(
+          [
+            { ...sea, shutOut: [] },
+            silence,
+            { ...work, setAside: true },
+            { ...candidate, setAside: true },
+          ].map((each) => [each.id, each] as const),
+        ),
+      },
+    },
+  ],
+  codingMade: [
+    {
+      does: 'adds a coding beside others',
+      edit: { kind: 'codingMade', coding: coding('second', { span: span(0, 60) }) },
+      expected: codings('harbour', 'second', coding('second', { span: span(0, 60) })),
+    },
+    {
+      does: 'makes the first of a transcript, before any fit',
+      before: after(
+        started,
+        { kind: 'readerAdded', reader: ada },
+        { kind: 'participantAdded', participant: maren },
+        { kind: 'transcriptGathered', transcript: harbour },
+        { kind: 'themeAdded', theme: silence },
+      ),
+      edit: {
+        kind: 'codingMade',
+        coding: coding('cold', {
+          theme: 'silence',
+          standing: 'by hand',
+          strength: null,
+          under: { ...coding('cold').under, fit: null, seenSuggestion: false },
+        }),
+      },
+      expected: {
+        codings: new Map([
+          [
+            'harbour',
+            new Map([
+              [
+                'cold',
+                coding('cold', {
+                  theme: 'silence',
+                  standing: 'by hand',
+                  strength: null,
+                  under: { ...coding('cold').under, fit: null, seenSuggestion: false },
+                }),
+              ],
+            ]),
+          ],
+        ]),
+      },
+    },
+  ],
+  codingRemoved: [
+    {
+      does: 'leaves nothing of the last one of a transcript',
+      edit: { kind: 'codingRemoved', coding: coding('on-harbour') },
+      expected: codings('harbour', 'on-harbour'),
+    },
+    {
+      does: 'removes a coding whose theme was merged away',
+      before: mergedIntoSea,
+      edit: { kind: 'codingRemoved', coding: mergedIntoSea.codings.get('mill')!.get('on-mill')! },
+      expected: codings('mill', 'on-mill'),
+    },
+    {
+      does: 'removes a coding whose words are gone',
+      before: emptied,
+      edit: { kind: 'codingRemoved', coding: emptyCoding },
+      expected: codings('harbour', 'on-harbour', undefined, emptied),
+    },
+  ],
+  codingRevised: [
+    {
+      does: 'changes theme, standing, span and memo, and not what was known then',
+      edit: {
+        kind: 'codingRevised',
+        transcript: 'harbour',
+        coding: 'on-harbour',
+        from: { theme: 'sea', standing: 'confirmed', span: span(11, 30), memo: '' },
+        to: { theme: 'silence', standing: 'by hand', span: span(12, 13), memo: 'A pause.' },
+      },
+      expected: codings(
+        'harbour',
+        'on-harbour',
+        coding('on-harbour', {
+          theme: 'silence',
+          standing: 'by hand',
+          span: span(12, 13),
+          memo: 'A pause.',
+        }),
+      ),
+    },
+    {
+      does: 'moves a coding away from a theme that was merged',
+      before: mergedIntoSea,
+      edit: {
+        kind: 'codingRevised',
+        transcript: 'mill',
+        coding: 'on-mill',
+        from: { theme: 'work', standing: 'confirmed', span: span(0, 12), memo: '' },
+        to: { theme: 'silence', standing: 'confirmed', span: span(0, 12), memo: '' },
+      },
+      expected: codings(
+        'mill',
+        'on-mill',
+        coding('on-mill', { transcript: 'mill', span: span(0, 12), theme: 'silence' }),
+      ),
+    },
+    {
+      does: 'gives a coding whose words are gone another span',
+      before: emptied,
+      edit: {
+        kind: 'codingRevised',
+        transcript: 'harbour',
+        coding: 'on-harbour',
+        from: { theme: 'sea', standing: 'confirmed', span: span(10, 10), memo: '' },
+        to: { theme: 'sea', standing: 'confirmed', span: span(2, 8), memo: '' },
+      },
+      expected: codings('harbour', 'on-harbour', { ...emptyCoding, span: span(2, 8) }, emptied),
+    },
+  ],
+  noneMarked: [
+    {
+      does: 'marks a passage to which no theme applies',
+      edit: { kind: 'noneMarked', none: none('quiet', { transcript: 'mill', span: span(3, 9) }) },
+      expected: {
+        nones: having(
+          island.nones,
+          'mill',
+          new Map([['quiet', none('quiet', { transcript: 'mill', span: span(3, 9) })]]),
+        ),
+      },
+    },
+  ],
+  noneCleared: [
+    {
+      does: 'leaves nothing of the last one of a transcript',
+      edit: { kind: 'noneCleared', none: none('none-on-harbour', { span: span(41, 60) }) },
+      expected: { nones: new Map() },
+    },
+  ],
+  memoWritten: [
+    {
+      does: 'writes one about a theme',
+      edit: { kind: 'memoWritten', memo: memo('about', { kind: 'theme', theme: 'sea' }) },
+      expected: {
+        memos: having(island.memos, 'about', memo('about', { kind: 'theme', theme: 'sea' })),
+      },
+    },
+    {
+      does: 'writes one about a transcript',
+      edit: {
+        kind: 'memoWritten',
+        memo: memo('about', { kind: 'transcript', transcript: 'mill' }),
+      },
+      expected: {
+        memos: having(
+          island.memos,
+          'about',
+          memo('about', { kind: 'transcript', transcript: 'mill' }),
+        ),
+      },
+    },
+  ],
+  memoErased: [
+    {
+      does: 'erases one',
+      edit: { kind: 'memoErased', memo: memo('on-study') },
+      expected: { memos: having(island.memos, 'on-study', undefined) },
+    },
+    {
+      does: 'erases one about words that are gone',
+      before: emptied,
+      edit: { kind: 'memoErased', memo: emptied.memos.get('on-passage')! },
+      expected: { memos: having(emptied.memos, 'on-passage', undefined) },
+    },
+  ],
+  memoRevised: [
+    {
+      does: 'rewords one',
+      edit: { kind: 'memoRevised', memo: 'on-study', from: 'why', to: 'Why not?\n' },
+      expected: {
+        memos: having(island.memos, 'on-study', { ...memo('on-study'), text: 'Why not?\n' }),
+      },
+    },
+  ],
+  modelFitted: [
+    {
+      does: 'brings a fit on screen and its candidates into the codebook',
+      edit: secondFitting,
+      expected: {
+        fits: having(island.fits, 'second-fit', secondFit),
+        fit: 'second-fit',
+        themes: having(island.themes, 'late', late),
+      },
+    },
+    {
+      does: 'is taken back whole, so that the themes asked for before it can be as well',
+      before: after(
+        started,
+        { kind: 'themeAdded', theme: sea },
+        { kind: 'themeAdded', theme: work },
+      ),
+      edit: { kind: 'modelFitted', fit: firstFit, found: [candidate], before: null },
+      expected: {
+        fits: new Map([['first-fit', firstFit]]),
+        fit: 'first-fit',
+        themes: new Map([sea, work, candidate].map((each) => [each.id, each] as const)),
+      },
+    },
+  ],
+  fitRemoved: [
+    {
+      does: 'takes the fit and its candidates away and shows the one before',
+      before: fittedTwice,
+      edit: { kind: 'fitRemoved', fit: secondFit, found: [late], before: 'first-fit' },
+      expected: { fits: island.fits, fit: 'first-fit', themes: island.themes },
+    },
+  ],
+  fitChosen: [
+    {
+      does: 'shows another fit',
+      before: fittedTwice,
+      edit: { kind: 'fitChosen', from: 'second-fit', to: 'first-fit' },
+      expected: { fit: 'first-fit' },
+    },
+    {
+      does: 'may show none',
+      edit: { kind: 'fitChosen', from: 'first-fit', to: null },
+      expected: { fit: null },
+    },
+  ],
+  fitRenamed: [
+    {
+      does: 'names a fit',
+      edit: { kind: 'fitRenamed', fit: 'first-fit', from: null, to: 'Pilot' },
+      expected: { fits: having(island.fits, 'first-fit', { ...firstFit, name: 'Pilot' }) },
+    },
+  ],
+};
+
+describe('the table of edits', () => {
+  it('has a case for every kind, and for no other', () => {
+    expect(Object.keys(cases).sort()).toEqual([...editKinds].sort());
+    expect(editKinds.filter((kind) => cases[kind].length === 0)).toEqual([]);
+  });
+});
+
+for (const kind of Object.keys(cases) as EditKind[]) {
+  describe(kind, () => {
+    for (const { does, before = island, edit, expected } of cases[kind] as Case<EditKind>[]) {
+      it(does, () => {
+        holdsLaw(before, edit, expected);
+      });
+    }
+  });
+}
+
+describe('spans that mapping back would not restore', () => {
+  it('are those that end inside a replaced stretch or lost all their words', () => {
+    expect(spansLost(island, stretchReplaced)).toEqual(stretchReplaced.lost);
+    expect(spansLost(island, allRemoved)).toEqual(allRemoved.lost);
+  });
+
+  it('are those that a person placed elsewhere', () => {
+    const placed = [{ id: 'none-on-harbour', span: span(1, 2) }];
+    expect(spansLost(island, { transcript: 'harbour', replacements: [], placed })).toEqual([
+      { id: 'none-on-harbour', span: span(41, 60) },
+    ]);
+  });
+
+  it('are none on another transcript', () => {
+    expect(spansLost(island, { ...allRemoved, transcript: 'quay' })).toEqual([]);
+  });
+});

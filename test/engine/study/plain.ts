@@ -1,0 +1,46 @@
+import type { Study } from '../../../engine/study/index.ts';
+
+/** A study as plain JSON values, to be compared and printed. Only themes keep their order. */
+export function plain(study: Study) {
+  const { themes, readers, transcripts, participants, memos, fits, codings, nones } = study;
+  return {
+    id: study.id,
+    name: study.name,
+    settings: study.settings,
+    readers: sorted(readers),
+    transcripts: sorted(transcripts),
+    participants: sorted(participants),
+    themes: [...themes],
+    codings: sorted(codings).map(([id, inner]) => [id, sorted(inner)] as const),
+    nones: sorted(nones).map(([id, inner]) => [id, sorted(inner)] as const),
+    memos: sorted(memos),
+    fits: sorted(fits),
+    fit: study.fit,
+  };
+}
+
+/** With what undo and redo reach, and with every order. */
+export function plainToTheLast(study: Study) {
+  return JSON.parse(
+    JSON.stringify(study, (_key, value: unknown) => (value instanceof Map ? [...value] : value)),
+  ) as unknown;
+}
+
+function sorted<Value>(map: ReadonlyMap<string, Value>): (readonly [string, Value])[] {
+  return [...map].sort(([a], [b]) => (a < b ? -1 : a > b ? 1 : 0));
+}
+
+/** Makes every change to a value throw, in maps and everything inside as well. */
+export function frozen<Value>(value: Value): Value {
+  if (typeof value !== 'object' || value === null || Object.isFrozen(value)) return value;
+  if (value instanceof Map) {
+    const refuse = () => {
+      throw new Error('a map of a study was changed in place');
+    };
+    Object.assign(value, { set: refuse, delete: refuse, clear: refuse });
+    for (const inner of value.values()) frozen(inner);
+  }
+  Object.freeze(value);
+  for (const inner of Object.values(value)) frozen(inner);
+  return value;
+}
