@@ -75,7 +75,7 @@ const speechOpeners = words(`
   og men så nei eksempel jeg han hun vi hvis när där och jag hon exempel
 `);
 
-const numbered = String.raw`(?:[\s_.#-]*(?:\d{1,4}|\p{Lu}))?`;
+const numbered = String.raw`(?:[\s_.#-]*\d{1,4}|[\s_.#-]+\p{Lu})?`;
 const bracketed = String.raw`(?:\s*[([][^()[\]]*[)\]])?`;
 const afterWord = new RegExp(`^([\\p{L}\\p{M}-]+?)${numbered}${bracketed}$`, 'u');
 
