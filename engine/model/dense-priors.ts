@@ -11,6 +11,8 @@ export interface DensePriors {
   readonly pinned: readonly (Float32Array | null)[];
   /** Themes that a decision raises somewhere, in a word or in a passage, above their base. */
   readonly raised: readonly boolean[];
+  /** Words that a decision raises in a theme above the base. */
+  readonly seeds: readonly { readonly theme: number; readonly word: number }[];
 }
 
 /**
@@ -40,17 +42,22 @@ export function densePriors(caller: string, counts: Counts, priors: Priors): Den
   const eta = new Float64Array(themes * words).fill(priors.eta);
   for (const { theme, word, value } of priors.wordPriors) eta[theme * words + word] = value;
 
+  const seeds = priors.wordPriors.filter(
+    ({ theme, word }) => eta[theme * words + word] > priors.eta,
+  );
+  const raised = new Array<boolean>(themes).fill(false);
+  for (const { theme } of seeds) raised[theme] = true;
+  for (const { theme, value } of priors.passagePriors) {
+    if (value > base[theme]) raised[theme] = true;
+  }
+
   const pinned = new Array<Float32Array | null>(themes).fill(null);
   for (const { theme, phi } of priors.frozen) {
     const row = eta.subarray(theme * words, (theme + 1) * words);
     pinned[theme] = withoutShutOut(phi, row);
     row.fill(0);
   }
-  const raised = new Array<boolean>(themes).fill(false);
-  for (const { theme, value } of priors.wordPriors) if (value > priors.eta) raised[theme] = true;
-  for (const { theme, value } of priors.passagePriors)
-    if (value > base[theme]) raised[theme] = true;
-  return { themes, alpha, eta, pinned, raised };
+  return { themes, alpha, eta, pinned, raised, seeds };
 }
 
 function withoutShutOut(phi: Float32Array, eta: Float64Array): Float32Array {

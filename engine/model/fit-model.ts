@@ -7,6 +7,7 @@ import { themeSizes } from './collapsed/state.ts';
 import { passageLengths } from './check-counts.ts';
 import { consensus } from './consensus.ts';
 import { foldIn, proportions } from './fold-in.ts';
+import { liftSeeds } from './lift-seeds.ts';
 import type { FitSettings } from './settings.ts';
 import type { Counts, ModelFit, Priors, Start, StopReason, TracePoint, Watcher } from './types.ts';
 import { unexplained } from './unexplained.ts';
@@ -65,6 +66,7 @@ function finishFit(
   stopReason: StopReason,
 ): ModelFit {
   const { counts, priors, kernel, state, countedWords } = prepared;
+  liftSeeds(phi, counts, priors);
   foldIn(kernel, state, priors, phi, settings.foldPasses);
   const theta = proportions(state, priors);
   const terms = collapsedBound(prepared);
