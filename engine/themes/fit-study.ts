@@ -1,0 +1,175 @@
+import {
+  fitModel,
+  methodNumber,
+  type Counts,
+  type FitSettings,
+  type ModelFit,
+  type Start,
+  type Watcher,
+} from '../model/index.ts';
+import { sha256 } from '../numbers/index.ts';
+import {
+  prepare,
+  countedForm,
+  preparationMethod,
+  tallyLeftOut,
+  type Prepared,
+  type TextSettings,
+  type TranscriptText,
+  type WordLists,
+} from '../text/index.ts';
+import type { Decided } from './decided.ts';
+import type { ModelledTheme } from './modelled-theme.ts';
+import { priorsOf } from './priors.ts';
+import { packResult, packWords } from './stored.ts';
+import { warmStart } from './warm-start.ts';
+
+/** All that a fit is a function of. Plain data and typed arrays: it travels to a worker. */
+export interface FitJob {
+  readonly transcripts: readonly TranscriptText[];
+  readonly text: TextSettings;
+  readonly lists: WordLists;
+  readonly model: FitSettings;
+  /** Base values of the priors. */
+  readonly alpha: number;
+  readonly eta: number;
+  readonly seed: number;
+  /** Rows of the model, in order; at least one. */
+  readonly themes: readonly ModelledTheme[];
+  readonly decisions: readonly Decided[];
+  /** The fit to start from, as stored; null for a fit from scratch. */
+  readonly previous: PreviousFit | null;
+  /** Pinned themes keep the words of this fit, also from scratch; null where there is none. */
+  readonly pinnedFrom: PreviousFit | null;
+}
+
+export interface PreviousFit {
+  readonly themes: readonly string[];
+  readonly words: Prepared;
+  readonly theta: Float32Array;
+  readonly phi: Float32Array;
+}
+
+export interface FitDone {
+  readonly ok: true;
+  /** Packed words and result, as they go into the study file. */
+  readonly words: Uint8Array;
+  readonly result: Uint8Array;
+  readonly hashes: {
+    readonly words: string;
+    readonly priors: string;
+    readonly result: string;
+  };
+  readonly method: number;
+  readonly preparation: number;
+  readonly passages: number;
+  readonly vocabulary: number;
+  readonly countedWords: number;
+  readonly leftOut: ReturnType<typeof tallyLeftOut>;
+  readonly sweeps: number;
+  readonly stopReason: ModelFit['stopReason'];
+  readonly bound: number;
+  readonly boundTerms: ModelFit['boundTerms'];
+  readonly trace: ModelFit['trace'];
+  /** Seeds that no participant says: they could not be taken into account. */
+  readonly unheardSeeds: readonly { readonly theme: string; readonly word: string }[];
+}
+
+export interface FitRefused {
+  readonly ok: false;
+  readonly code: 'no words left' | 'more themes than passages' | 'no themes';
+  readonly themes: number;
+  readonly passages: number;
+}
+
+/** From transcripts and decisions to a fit: counts words, sets priors, fits, packs the result. */
+export function fitStudy(job: FitJob, watcher?: Watcher): FitDone | FitRefused {
+  const seeds = job.themes.flatMap((theme) => theme.seeds);
+  const words = prepare(job.transcripts, job.text, job.lists, seeds);
+  const passages = countedPassages(words.counts);
+  const size = { themes: job.themes.length, passages };
+  if (job.themes.length === 0) return { ok: false, code: 'no themes', ...size };
+  if (words.vocabulary.length === 0) return { ok: false, code: 'no words left', ...size };
+  if (job.themes.length > passages) {
+    return { ok: false, code: 'more themes than passages', ...size };
+  }
+
+  const places = placesOf(words, job.text);
+  const priors = priorsOf(job, words, places);
+  const start = startOf(job, words, places);
+  const fit = fitModel(words.counts, priors, start, job.model, watcher);
+  const packedWords = packWords(words);
+  const packedResult = packResult(fit);
+  return {
+    ok: true,
+    words: packedWords,
+    result: packedResult,
+    hashes: {
+      words: sha256(packedWords),
+      priors: sha256(
+        new TextEncoder().encode(JSON.stringify({ priors: hashed(priors), ...base(job) })),
+      ),
+      result: sha256(packedResult),
+    },
+    method: methodNumber,
+    preparation: preparationMethod,
+    passages: words.passages.length,
+    vocabulary: words.vocabulary.length,
+    countedWords: sum(words.counts.counts),
+    leftOut: tallyLeftOut(words.leftOut),
+    sweeps: fit.sweeps,
+    stopReason: fit.stopReason,
+    bound: fit.boundTerms.words + fit.boundTerms.proportions + fit.boundTerms.distributions,
+    boundTerms: fit.boundTerms,
+    trace: fit.trace,
+    unheardSeeds: job.themes.flatMap(({ id, seeds: own }) =>
+      own.filter((word) => places(word) === undefined).map((word) => ({ theme: id, word })),
+    ),
+  };
+}
+
+/** The vocabulary index of a word as a person typed it, or undefined where it is not counted. */
+export type WordPlaces = (word: string) => number | undefined;
+
+function placesOf(words: Prepared, settings: TextSettings): WordPlaces {
+  const places = new Map(words.vocabulary.map((form, index) => [form, index]));
+  return (word) => {
+    const form = countedForm(word, settings);
+    return form === null ? undefined : places.get(form);
+  };
+}
+
+function startOf(job: FitJob, words: Prepared, places: WordPlaces): Start {
+  const leanings = job.themes.flatMap(({ seeds }, theme) =>
+    seeds.flatMap((form) => {
+      const word = places(form);
+      return word === undefined ? [] : [{ theme, word }];
+    }),
+  );
+  return job.previous === null
+    ? { kind: 'fresh', seed: job.seed, leanings }
+    : warmStart(job.themes, words, job.previous, leanings);
+}
+
+function countedPassages(counts: Counts): number {
+  let counted = 0;
+  for (let d = 0; d < counts.passages; d++) {
+    if (counts.offsets[d + 1] > counts.offsets[d]) counted++;
+  }
+  return counted;
+}
+
+function sum(numbers: Float32Array): number {
+  let all = 0;
+  for (const value of numbers) all += value;
+  return all;
+}
+
+function base({ alpha, eta, seed, model, previous }: FitJob): Record<string, unknown> {
+  return { alpha, eta, seed, model, start: previous === null ? 'fresh' : 'warm' };
+}
+
+/** Typed arrays have no JSON of their own that other readers would agree on. */
+function hashed(priors: ReturnType<typeof priorsOf>): unknown {
+  return { ...priors, frozen: priors.frozen.map(({ theme, phi }) => ({ theme, phi: [...phi] })) };
+}

@@ -1,0 +1,30 @@
+export { decisions, type Decided } from './decided.ts';
+export {
+  fitStudy,
+  type FitDone,
+  type FitJob,
+  type FitRefused,
+  type PreviousFit,
+} from './fit-study.ts';
+export { leadingRow, rowOf, shareOf, strengthOf, type Fitted } from './fitted.ts';
+export { modelledThemes, type ModelledTheme } from './modelled-theme.ts';
+export {
+  movedLimits,
+  whatMoved,
+  type Moved,
+  type MovedLimits,
+  type MovedPassage,
+  type MovedWords,
+} from './moved.ts';
+export {
+  defaultSettings,
+  recordedSettings,
+  settingFault,
+  settingsOf,
+  type SettingFault,
+  type SettingKey,
+  type StudySettings,
+} from './settings.ts';
+export { packResult, packWords, unpackFitted, unpackWords } from './stored.ts';
+export { passagesLed, suggestions, type Suggestion, type SuggestionLimits } from './suggestions.ts';
+export { candidateWords, topWords, type ThemeWord } from './top-words.ts';

@@ -1,0 +1,46 @@
+import type { FitDone } from '../../engine/themes/index.ts';
+import type { Desk } from '../desk.ts';
+import { fit, type FitKind } from '../fitting.ts';
+import { sentenceFor, sentenceForFit } from '../sentences/sentences.ts';
+import { wordLists } from '../word-lists.ts';
+import { ProgressLine, Stop, type Terminal } from './terminal.ts';
+
+/** Fits with a line of progress; stops the command where it is refused. */
+export async function fitWithProgress(
+  desk: Desk,
+  kind: FitKind,
+  terminal: Terminal,
+): Promise<FitDone> {
+  const line = new ProgressLine(terminal);
+  let lastPercent = -1;
+  const made = await fit(desk, kind, wordLists, {
+    signal: terminal.signal,
+    onProgress: ({ bound }, fraction) => {
+      const percent = Math.floor(fraction * 100);
+      if (!terminal.rewrites && percent < lastPercent + 10) return;
+      lastPercent = percent;
+      line.show(
+        `Fitting: ${percent} %${bound === null ? '' : `, bound evaluated at this sweep ${bound.toFixed(1)}`}`,
+      );
+    },
+  });
+  line.end();
+  if (terminal.signal.aborted) throw new Stop('Stopped. Nothing was written.');
+  if (!made.ok) throw new Stop(isFitRefusal(made) ? sentenceForFit(made) : sentenceFor(made));
+  return made.value.done;
+}
+
+type Refused = Exclude<Awaited<ReturnType<typeof fit>>, { readonly ok: true }>;
+type FitRefusal = Extract<Refused, Parameters<typeof sentenceForFit>[0]>;
+
+const fitCodes: readonly FitRefusal['code'][] = [
+  'no words left',
+  'more themes than passages',
+  'no themes',
+  'no fit to start from',
+  'changed while fitting',
+];
+
+function isFitRefusal(refusal: Refused): refusal is FitRefusal {
+  return (fitCodes as readonly string[]).includes(refusal.code);
+}

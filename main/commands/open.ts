@@ -1,0 +1,51 @@
+import { resolve } from 'node:path';
+import { Desk } from '../desk.ts';
+import { derivedIds, hashOf, type MintId } from '../ids.ts';
+import { openStudyFile, type StudyFile } from '../project/index.ts';
+import { sentenceFor } from '../sentences/sentences.ts';
+import { BufferedStore } from '../store.ts';
+import { Stop, type Terminal } from './terminal.ts';
+
+export interface OpenStudy {
+  readonly desk: Desk;
+  readonly store: BufferedStore;
+  readonly file: StudyFile;
+}
+
+/**
+ * Opens a study for a command. What the command decides is kept in memory until it is flushed, so
+ * that a refusal half-way changes nothing. `call` is what the new ids follow from.
+ */
+export async function openStudy(
+  path: string,
+  terminal: Terminal,
+  { readOnly, call }: { readonly readOnly: boolean; readonly call: unknown },
+): Promise<OpenStudy> {
+  const opened = await openStudyFile(resolve(terminal.folder, path), { readOnly });
+  if (!opened.ok) throw new Stop(sentenceFor({ ...opened, path }));
+  const file = opened.value;
+  const store = new BufferedStore(file);
+  let mint: MintId | undefined;
+  const desk: Desk = new Desk(store, {
+    by: 'command line',
+    now: terminal.now,
+    // Ids may not follow from salts or times, or the same call would not give the same files.
+    mintId: (what) => (mint ??= derivedIds([call, contentHash(desk)]))(what),
+  });
+  try {
+    desk.load(file.edits());
+  } catch (error) {
+    file.close();
+    throw error;
+  }
+  return { desk, store, file };
+}
+
+function contentHash({ study }: Desk): string {
+  return hashOf([
+    study.id,
+    study.sequence,
+    [...study.themes.keys()],
+    [...study.fits.values()].map(({ hashes }) => hashes.result),
+  ]);
+}

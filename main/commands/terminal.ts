@@ -1,0 +1,54 @@
+/** Where a command reads its paths from and writes its lines to. */
+export interface Terminal {
+  /** Paths are meant from here. */
+  readonly folder: string;
+  readonly out: (text: string) => void;
+  readonly err: (text: string) => void;
+  /** Whether a line on `err` can be written over. */
+  readonly rewrites: boolean;
+  readonly now: () => string;
+  /** Aborted when a person asks the command to stop. */
+  readonly signal: AbortSignal;
+}
+
+/** 0 done, 1 could not be done, 2 the command was not understood. */
+export type ExitCode = 0 | 1 | 2;
+
+/** One line that says how far a long step is; written over where the terminal can. */
+export class ProgressLine {
+  readonly #terminal: Terminal;
+  #last = '';
+  #shown = 0;
+
+  constructor(terminal: Terminal) {
+    this.#terminal = terminal;
+  }
+
+  show(text: string): void {
+    if (text === this.#last) return;
+    this.#last = text;
+    if (this.#terminal.rewrites) {
+      this.#terminal.err(`\r${text.padEnd(this.#shown)}`);
+      this.#shown = text.length;
+    } else {
+      this.#terminal.err(`${text}\n`);
+    }
+  }
+
+  /** Ends the line, so that what follows stands on its own. */
+  end(): void {
+    if (this.#shown > 0) this.#terminal.err('\n');
+    this.#shown = 0;
+    this.#last = '';
+  }
+}
+
+/** A refusal that ends a command: one sentence and its exit code. */
+export class Stop extends Error {
+  readonly exitCode: ExitCode;
+  constructor(sentence: string, exitCode: ExitCode = 1) {
+    super(sentence);
+    this.name = 'Stop';
+    this.exitCode = exitCode;
+  }
+}

@@ -1,0 +1,75 @@
+import { exportExcerpts, exportUsage } from '../commands/export.ts';
+import { moved, movedUsage } from '../commands/moved.ts';
+import { refit, refitUsage } from '../commands/refit.ts';
+import { Stop, type ExitCode, type Terminal } from '../commands/terminal.ts';
+import { theme, themeUsage } from '../commands/theme.ts';
+
+type Command = (words: readonly string[], terminal: Terminal) => Promise<ExitCode>;
+
+const commands: Record<string, Command> = {
+  theme,
+  refit,
+  export: exportExcerpts,
+  moved,
+};
+
+const help = `Understory: theme and code interview transcripts on this machine alone.
+
+  ${themeUsage}
+      reads transcripts, fits themes and writes excerpts.csv, themes.csv, passages.csv, fit.json,
+      methods.md and transcripts/ into DIR
+  ${refitUsage}
+      applies further decisions to a study and fits again around them
+  ${exportUsage}
+      writes coded excerpts into one file
+  ${movedUsage}
+      prints what the last re-fit moved
+
+Run it as: npm run -s understory -- theme resources/demo --themes 12 --seed 1 --out demo-themes
+`;
+
+/** Runs one command; the exit code. `folder` is where its paths are meant from. */
+export async function run(words: readonly string[], folder: string): Promise<ExitCode> {
+  const stop = new AbortController();
+  const onInterrupt = (): void => stop.abort();
+  process.once('SIGINT', onInterrupt);
+  try {
+    return await runIn(words, {
+      folder,
+      out: (text) => process.stdout.write(text),
+      err: (text) => process.stderr.write(text),
+      rewrites: process.stderr.isTTY === true,
+      now: clockTime,
+      signal: stop.signal,
+    });
+  } finally {
+    process.removeListener('SIGINT', onInterrupt);
+  }
+}
+
+/** The same with everything that touches the terminal given from outside. */
+export async function runIn(words: readonly string[], terminal: Terminal): Promise<ExitCode> {
+  const [name, ...rest] = words;
+  if (name === undefined || name === 'help' || name === '--help' || name === '-h') {
+    terminal.out(help);
+    return name === undefined ? 2 : 0;
+  }
+  if (!Object.hasOwn(commands, name)) {
+    terminal.err(`There is no command “${name}”. ${Object.keys(commands).join(', ')} are known.\n`);
+    return 2;
+  }
+  try {
+    return await commands[name](rest, terminal);
+  } catch (error) {
+    if (!(error instanceof Stop)) throw error;
+    terminal.err(`${error.message}\n`);
+    return error.exitCode;
+  }
+}
+
+/** SOURCE_DATE_EPOCH (reproducible-builds.org) fixes the time for runs that must repeat exactly. */
+function clockTime(): string {
+  const fixed = process.env['SOURCE_DATE_EPOCH'];
+  const at = fixed !== undefined && /^\d+$/u.test(fixed) ? Number(fixed) * 1000 : Date.now();
+  return new Date(at).toISOString();
+}
