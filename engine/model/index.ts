@@ -16,3 +16,10 @@ export {
   type FitSettings,
   type Stage,
 } from './settings.ts';
+export {
+  defaultMeanFieldSettings,
+  fitMeanField,
+  foldInMeanField,
+  type MeanFieldFit,
+  type MeanFieldSettings,
+} from './mean-field/fit.ts';
