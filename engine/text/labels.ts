@@ -37,10 +37,10 @@ const opening = new RegExp(
   'u',
 );
 const beforeColon = new RegExp(
-  String.raw`^(${labelText})(?:[\s,–-]*${clock})?(${bold}?)\s?[:：](${bold}?)`,
+  String.raw`^(${labelText})${bold}?(?:[\s,–-]*${clock})?(${bold}?)\s?[:：](${bold}?)`,
   'u',
 );
-const beforeClock = new RegExp(String.raw`^(${labelText})[\s,–-]+${clock}${bold}?$`, 'u');
+const beforeClock = new RegExp(String.raw`^(${labelText})${bold}?[\s,–-]+${clock}${bold}?$`, 'u');
 const alone = new RegExp(String.raw`^(${labelText})${bold}?$`, 'u');
 const beforeTab = new RegExp(String.raw`^(${labelText})\t+(?=\S)`, 'u');
 const clockBehind = new RegExp(String.raw`^\s*[\[({]${clock}[\])}]?`, 'u');
@@ -275,7 +275,7 @@ function habitOf(anchors: readonly Group[], lines: readonly Line[]): Habit {
     timed,
     capitals,
     blank: share((candidate) => lines[candidate.line]!.blankBefore),
-    distinct: isBold || timed || capitals,
+    distinct: isBold || timed || capitals || all[0]!.layout === 'clock',
   };
 }
 

@@ -32,11 +32,11 @@ interface Unit {
   readonly cut: number;
 }
 
-/** One participant's turns up to the next longer turn by somebody else. */
+/** One participant's turns, as units, up to the next longer turn by somebody else. */
 interface Stretch {
   readonly speaker: string | null;
   readonly question: Span | null;
-  readonly turns: Turn[];
+  readonly units: Unit[];
 }
 
 // Against a squared distance from the aim, in words: a turn's end is the best place, a sentence's
@@ -60,7 +60,7 @@ export function passagesOf(
 ): Passage[] {
   const drafts: Omit<Passage, 'number'>[] = [];
   for (const stretch of stretchesOf(transcript, settings, scan)) {
-    for (const units of divide(unitsOf(transcript.text, stretch, settings, scan), settings)) {
+    for (const units of divide(stretch.units, settings)) {
       const segments = segmentsOf(units);
       drafts.push({
         start: segments[0]!.start,
@@ -69,7 +69,7 @@ export function passagesOf(
         segments,
         questionBefore: stretch.question,
         startTime: units[0]!.turn.startTime,
-        words: units.reduce((total, unit) => total + unit.words, 0),
+        words: wordsIn(units),
       });
     }
   }
@@ -88,7 +88,8 @@ function stretchesOf(
   for (const turn of transcript.turns) {
     const role = roleOf(transcript, turn.speaker);
     const key = speakerKey(turn.speaker);
-    const long = countWords(transcript.text, turn, scan) > settings.shortTurnWords;
+    const units = unitsOf(transcript.text, turn, settings, scan);
+    const long = wordsIn(units) > settings.shortTurnWords;
     if (long) {
       for (const other of [...open.keys()]) {
         if (other !== key || role !== 'participant') open.delete(other);
@@ -98,11 +99,11 @@ function stretchesOf(
     if (role !== 'participant') continue;
     let stretch = open.get(key);
     if (stretch === undefined) {
-      stretch = { speaker: turn.speaker, question, turns: [] };
+      stretch = { speaker: turn.speaker, question, units: [] };
       open.set(key, stretch);
       stretches.push(stretch);
     }
-    stretch.turns.push(turn);
+    stretch.units.push(...units);
   }
   return stretches;
 }
@@ -113,26 +114,19 @@ function countWords(text: string, span: Span, scan: WordScanner): number {
   return count;
 }
 
-function unitsOf(
-  text: string,
-  stretch: Stretch,
-  settings: TextSettings,
-  scan: WordScanner,
-): Unit[] {
-  const units: Unit[] = [];
-  for (const turn of stretch.turns) {
-    const sentences = sentencesOf(text, turn);
-    sentences.forEach((sentence, index) => {
-      const words = countWords(text, sentence, scan);
-      const cut = index + 1 === sentences.length ? cutAtTurn : cutAtSentence;
-      if (words > settings.passageMaximumWords) {
-        units.push(...piecesOf(text, sentence, turn, cut, scan));
-      } else {
-        units.push({ ...sentence, words, turn, cut });
-      }
-    });
-  }
-  return units;
+function wordsIn(units: readonly { readonly words: number }[]): number {
+  return units.reduce((total, unit) => total + unit.words, 0);
+}
+
+function unitsOf(text: string, turn: Turn, settings: TextSettings, scan: WordScanner): Unit[] {
+  const sentences = sentencesOf(text, turn);
+  return sentences.flatMap((sentence, index) => {
+    const words = countWords(text, sentence, scan);
+    const cut = index + 1 === sentences.length ? cutAtTurn : cutAtSentence;
+    return words > settings.passageMaximumWords
+      ? piecesOf(text, sentence, turn, cut, scan)
+      : [{ ...sentence, words, turn, cut }];
+  });
 }
 
 const clauseEnd = /^[,;:–—-]|^\s[–—-]/;
@@ -181,7 +175,7 @@ function endOfWord(text: string, wordEnd: number, nextStart: number): number {
 /** Units grouped into passages by dynamic programming over where each passage ends. */
 function divide(units: readonly Unit[], settings: TextSettings): Unit[][] {
   const joined = withoutWordless(units);
-  const total = joined.reduce((sum, group) => sum + group.words, 0);
+  const total = wordsIn(joined);
   if (joined.length === 0) return [];
   if (total <= settings.passageMaximumWords) return [[...units]];
   const cost = [0];
