@@ -157,6 +157,12 @@ function applyCoding(desk: Desk, planned: PlannedCoding): Applied {
   if (transcript === undefined) {
     return { ok: false, code: 'plan names no transcript', subject: planned.transcript };
   }
+  // On the command line nobody is signed in: the program codes under its own name.
+  if (!study.readers.has(context.by)) {
+    const reader = { id: context.by, name: context.by };
+    const added = desk.make([{ edit: { kind: 'readerAdded', reader } }]);
+    if (!added.ok) return added;
+  }
   const under = {
     reader: context.by,
     at: context.now(),
