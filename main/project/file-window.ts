@@ -9,7 +9,7 @@ export class FileWindow {
   readonly size: number;
   readonly #storage: Storage;
   readonly #handle: Handle;
-  readonly #buffer = Buffer.allocUnsafe(WINDOW_BYTES);
+  readonly #buffer: Buffer;
   #start = 0;
   #filled = 0;
 
@@ -17,6 +17,7 @@ export class FileWindow {
     this.#storage = storage;
     this.#handle = handle;
     this.size = size;
+    this.#buffer = Buffer.allocUnsafe(Math.min(WINDOW_BYTES, size));
   }
 
   /**

@@ -13,6 +13,7 @@ function stateOf(stats: fs.BigIntStats): FileState {
 
 /** Node's own file operations. */
 export const nodeStorage: Storage = {
+  mustCloseToReplace: process.platform === 'win32',
   open(path, how, mode = 0o600) {
     if (how === 'read') return fs.openSync(path, 'r');
     if (how === 'write') return fs.openSync(path, 'r+');

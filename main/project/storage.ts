@@ -23,6 +23,8 @@ export type Handle = number;
  * is the whole point, and short because an edit is a few hundred bytes.
  */
 export interface Storage {
+  /** Whether a file must be closed before another can take its name, as on Windows. */
+  readonly mustCloseToReplace: boolean;
   /**
    * 'read' and 'write' want an existing file; 'create' refuses an existing one and opens the new one
    * for reading and writing, with the given permission bits (0o600 unless told).

@@ -1,15 +1,16 @@
-import { hex, SALT_BYTES, sameBytes } from './chain.ts';
+import { commitmentOf, hex, SALT_BYTES, sameBytes } from './chain.ts';
 import { causeOf, failure, failureOf, StudyFileFault, success } from './failure.ts';
 import type { Result, StudyFileFailure } from './failure.ts';
 import { FileWindow } from './file-window.ts';
-import { decodeHead, HEAD_BYTES, headFor, removedHead } from './frame.ts';
+import { decodeHead, encodeHead, HEAD_BYTES, headFor, removedHead } from './frame.ts';
 import { MOST_EDIT_BYTES, MOST_PAYLOAD_BYTES, type FrameHead, type Kind } from './frame.ts';
 import { FrameWriter } from './frame-writer.ts';
 import { encodeHeader, type Header } from './header.ts';
+import { nameBeside } from './name-beside.ts';
 import type { OwnerNote } from './owner-note.ts';
-import { scan, type StudyRecord } from './scan.ts';
+import { scan, type Scan, type StudyRecord } from './scan.ts';
 import { closeQuietly, readWhole, removeQuietly, sameFile } from './storage.ts';
-import type { Handle, Storage } from './storage.ts';
+import type { FileState, Handle, Storage } from './storage.ts';
 import { place, putInPlace, writeBeside } from './write-beside.ts';
 import { takeWritersLock, type LockPlace, type WritersLock } from './writers-lock.ts';
 
@@ -209,7 +210,7 @@ export class StudyFile {
     const last = frames[frames.length - 1];
     if (last !== undefined) {
       this.#link = last.head.link;
-      this.#tail = this.#readTail();
+      this.#tail = lastBytes(encodeHead(last.head), last.body);
     }
     return success(edits);
   }
@@ -267,6 +268,13 @@ export class StudyFile {
     }
   }
 
+  /**
+   * After `close`; and where `compact` had to close the file to replace it and could not open it again.
+   */
+  get closed(): boolean {
+    return this.#handle === null;
+  }
+
   /** Gives up the lock and takes the owner note away. Closing twice does nothing. */
   close(): void {
     const handle = this.#handle;
@@ -283,64 +291,80 @@ export class StudyFile {
     gone: ReadonlySet<number>,
   ): Promise<Result<{ before: number; after: number }>> {
     const before = this.#size;
-    const mode = this.#storage.stat(handle).mode;
-    const written = writeBeside(
-      this.#storage,
-      this.path,
-      true,
-      (target) => this.#writeWithout(gone, handle, target),
-      mode,
-    );
-    if (!written.ok) return written;
-    const beside = written.value;
-    const giveUp = (why: StudyFileFailure, lock?: WritersLock): StudyFileFailure => {
-      lock?.release();
-      removeQuietly(this.#storage, beside);
+    const storage = this.#storage;
+    let beside: string;
+    let next: Handle;
+    let identity: FileState;
+    try {
+      const { mode } = storage.stat(handle);
+      const fill = (target: FrameWriter) => this.#writeWithout(gone, handle, target);
+      const written = writeBeside(storage, this.path, true, fill, mode);
+      if (!written.ok) return written;
+      beside = written.value;
+      next = storage.open(beside, 'write');
+    } catch (error) {
+      removeQuietly(storage, nameBeside(this.path, 'new'));
+      return failureOf(error, this.path, 'cannot write');
+    }
+    const giveUp = (why: StudyFileFailure): StudyFileFailure => {
+      closeQuietly(storage, next);
+      removeQuietly(storage, beside);
       return why;
     };
 
-    let identity;
-    let fresh;
+    // Read back before it takes the place of the only other one.
+    let fresh: Scan;
     try {
-      const check = this.#storage.open(beside, 'read');
-      try {
-        identity = this.#storage.stat(check);
-        fresh = await scan(new FileWindow(this.#storage, check, identity.size), this.#header);
-      } finally {
-        this.#storage.close(check);
-      }
+      identity = storage.stat(next);
+      fresh = await scan(new FileWindow(storage, next, identity.size), this.#header);
     } catch (error) {
       return giveUp(failureOf(error, this.path, 'cannot write'));
     }
-    // Read back before it takes the place of the only other one.
-    const asWritten = fresh.damage === null && fresh.end === identity.size;
-    if (!asWritten || !sameBytes(fresh.head, this.#link)) {
+    const whole = fresh.damage === null && fresh.end === identity.size;
+    if (!whole || !sameBytes(fresh.head, this.#link)) {
       return giveUp(failure('cannot write', this.path));
     }
     // The lock goes by the file's identity, so the new file needs its own before it can be found.
     const taken = await takeWritersLock(identity, this.#onKnock, this.#lockPlace);
     if (!taken.ok) return giveUp(failure('cannot lock', this.path));
 
-    // Windows replaces no open file.
-    closeQuietly(this.#storage, handle);
-    this.#handle = null;
+    const closeFirst = storage.mustCloseToReplace;
+    if (closeFirst) {
+      closeQuietly(storage, next);
+      closeQuietly(storage, handle);
+      this.#handle = null;
+    }
     let unsynced: unknown;
     try {
-      unsynced = await putInPlace(this.#storage, beside, this.path);
+      unsynced = await putInPlace(storage, beside, this.path);
     } catch (error) {
-      const why = giveUp(failureOf(error, this.path, 'cannot write'), taken.lock);
-      this.#reopen();
-      return why;
+      taken.lock.release();
+      removeQuietly(storage, beside);
+      if (closeFirst) this.#reopen();
+      else closeQuietly(storage, next);
+      return failureOf(error, this.path, 'cannot write');
     }
     this.#lock?.release();
     this.#lock = taken.lock;
     this.#records = fresh.records;
     this.#size = fresh.end;
-    const reopened = this.#reopen();
-    if (reopened !== null) return reopened;
+    if (closeFirst) {
+      const notOpen = this.#reopen();
+      if (notOpen !== null) return notOpen;
+    } else {
+      closeQuietly(storage, handle);
+      this.#handle = next;
+    }
     if (unsynced !== null) {
       this.#readOnlyBecause = 'not certain';
       return failure('not certain', this.path, causeOf(unsynced, this.path));
+    }
+    // The last frame may be another only in what was removed of it.
+    try {
+      this.#tail = this.#readTail();
+    } catch (error) {
+      this.#readOnlyBecause = 'not certain';
+      return failure('not certain', this.path, causeOf(error, this.path));
     }
     return success({ before, after: this.#size });
   }
@@ -358,15 +382,12 @@ export class StudyFile {
     }
   }
 
+  /** On failure the study is closed: the file is whole, but not in our hands. */
   #reopen(): StudyFileFailure | null {
     try {
       this.#handle = this.#storage.open(this.path, 'write');
-      this.#tail = this.#readTail();
       return null;
     } catch (error) {
-      // Closed for good: the file is whole, but not in our hands.
-      if (this.#handle !== null) closeQuietly(this.#storage, this.#handle);
-      this.#handle = null;
       this.#note?.remove();
       this.#lock?.release();
       return failureOf(error, this.path, 'cannot write');
@@ -453,20 +474,24 @@ export class StudyFile {
   }
 
   #body(record: StudyRecord, window?: FileWindow): Uint8Array<ArrayBuffer> {
-    const view = window ?? new FileWindow(this.#storage, this.#openHandle('read'), this.#size);
-    let body: Uint8Array<ArrayBuffer>;
-    let head: FrameHead;
     try {
-      head = this.#headAt(record, view.bytes(record.offset, HEAD_BYTES));
-      body = view.copy(record.offset + HEAD_BYTES, record.length);
+      const frame = window?.copy(record.offset, HEAD_BYTES + record.length) ?? this.#frame(record);
+      const head = this.#headAt(record, frame);
+      const body = frame.subarray(HEAD_BYTES);
+      if (!record.removed && !sameBytes(commitmentOf(head.salt, body), head.commitment)) {
+        throw this.#rotten(record, 'content');
+      }
+      return body;
     } catch (error) {
       if (error instanceof StudyFileFault) throw error;
       throw new StudyFileFault(failureOf(error, this.path, 'cannot read'));
     }
-    const found = headFor(head.kind, head.sequence, head.salt, body, new Uint8Array(0)).commitment;
-    if (!record.removed && !sameBytes(found, head.commitment))
-      throw this.#rotten(record, 'content');
-    return body;
+  }
+
+  #frame(record: StudyRecord): Uint8Array<ArrayBuffer> {
+    const frame = new Uint8Array(HEAD_BYTES + record.length);
+    const read = readWhole(this.#storage, this.#openHandle('read'), frame, record.offset);
+    return frame.subarray(0, read);
   }
 
   #headAt(record: StudyRecord, bytes: Uint8Array): FrameHead {
@@ -502,4 +527,10 @@ export class StudyFile {
     if (this.#handle === null) throw new Error(`StudyFile.${asker}: the study is closed`);
     return this.#handle;
   }
+}
+
+/** The end of a frame, as `StudyFile` compares it before each append; a copy. */
+function lastBytes(head: Uint8Array, body: Uint8Array): Uint8Array {
+  const end = body.subarray(Math.max(0, body.length - TAIL_BYTES));
+  return Uint8Array.from(Buffer.concat([head, end]).subarray(-TAIL_BYTES));
 }
