@@ -23,3 +23,4 @@ export {
   type MeanFieldFit,
   type MeanFieldSettings,
 } from './mean-field/fit.ts';
+export * from './scores/index.ts';

@@ -2,7 +2,7 @@ import { sum } from '../../numbers/index.ts';
 import { checkCounts } from '../check-counts.ts';
 import { densePriors, type DensePriors } from '../dense-priors.ts';
 import type { Kernel } from '../kernel/kernel.ts';
-import { plainKernel } from '../kernel/sweep.ts';
+import { defaultKernel } from '../kernel/index.ts';
 import type { SweepState } from '../kernel/state.ts';
 import type { Counts, Priors } from '../types.ts';
 import { createState } from './state.ts';
@@ -24,7 +24,7 @@ export function prepare(
   caller: string,
   counts: Counts,
   priors: Priors,
-  kernel: Kernel = plainKernel,
+  kernel: Kernel = defaultKernel,
 ): Prepared {
   checkCounts(caller, counts);
   const dense = densePriors(caller, counts, priors);
