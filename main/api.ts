@@ -1,0 +1,658 @@
+/**
+ * The contract between a window and the desk: every method a window may call, once, typed. Types
+ * only. The preload, the server half (main/link) and the client (renderer/link.ts) are derived from
+ * `methods` and `Api`; a window never chooses a channel.
+ *
+ * Everything that travels is plain data (JSON values, Uint8Array, Float32Array, Int32Array). A method
+ * answers with its result or with a `Refused`, which holds a sentence for a person. Offsets are UTF-16
+ * code units in a transcript's text, end exclusive; times are milliseconds from the start of a
+ * recording; strengths and shares run from 0 to 1.
+ */
+
+/** A refusal that a person can read: what happened, where, what to do next. */
+export interface Refused {
+  readonly refused: string;
+  readonly code: string;
+}
+
+export type Answer<Value> = { readonly value: Value } | Refused;
+
+export interface Span {
+  readonly start: number;
+  readonly end: number;
+}
+
+/** A passage as derived from the settings of now: named by its place. */
+export interface PassagePlace extends Span {
+  readonly transcript: string;
+}
+
+export interface About {
+  readonly version: string;
+  readonly shell: 'electron' | 'browser';
+  /** Whether the system's own file dialogs can be shown. */
+  readonly dialogs: boolean;
+  /** Where studies are kept unless a person says otherwise. */
+  readonly studiesFolder: string;
+  readonly platform: string;
+  /** BCP 47, for the formats of numbers and dates. */
+  readonly locale: string;
+}
+
+export interface RecentStudy {
+  readonly path: string;
+  /** The file's name without its ending. */
+  readonly name: string;
+  /** The folder, as a person would say it. */
+  readonly folder: string;
+  readonly missing: boolean;
+}
+
+/** What the frame shows on every place. */
+export interface Overview {
+  readonly study: { readonly id: string; readonly name: string; readonly path: string | null };
+  readonly readOnly: boolean;
+  /** ISO 8601 in UTC: when the last decision reached the drive. */
+  readonly savedAt: string | null;
+  /** Goes up with every decision: a view with another number is out of date. */
+  readonly revision: number;
+  readonly transcripts: number;
+  readonly words: number;
+  readonly themes: number;
+  readonly passages: number;
+  /** Passages that nobody has decided on yet. */
+  readonly unread: number;
+  /** Transcripts in which every passage was read before the first fit. */
+  readonly transcriptsRead: number;
+  readonly fitted: boolean;
+  /** True where texts, people or settings changed since the fit on screen. */
+  readonly stale: boolean;
+  /** Decisions that the next fit will take up, in words ("2 words seeded"). */
+  readonly waiting: readonly string[];
+  /** What undo and redo would take back, in words; null where there is nothing. */
+  readonly undo: string | null;
+  readonly redo: string | null;
+  readonly reader: { readonly id: string; readonly name: string };
+}
+
+export type Role = 'interviewer' | 'participant' | 'other';
+
+export interface SpeakerView {
+  /** Null for turns without a label. */
+  readonly label: string | null;
+  readonly role: Role;
+  readonly participant: { readonly id: string; readonly name: string } | null;
+  readonly turns: number;
+  readonly words: number;
+}
+
+export interface TranscriptRow {
+  readonly id: string;
+  readonly name: string;
+  readonly fileName: string;
+  readonly format: string;
+  readonly words: number;
+  readonly passages: number;
+  readonly speakers: readonly SpeakerView[];
+  /** What a person should look at ("No interviewer was recognised"); empty where all is well. */
+  readonly needsLook: readonly string[];
+  readonly codings: number;
+}
+
+export interface ParticipantRow {
+  readonly id: string;
+  readonly name: string;
+  readonly attributes: Readonly<Record<string, string>>;
+  readonly transcripts: readonly string[];
+  readonly words: number;
+}
+
+export interface GatherView {
+  readonly transcripts: readonly TranscriptRow[];
+  readonly participants: readonly ParticipantRow[];
+  readonly attributes: readonly string[];
+  readonly settings: {
+    readonly themes: number;
+    readonly language: string;
+    readonly languages: readonly { readonly code: string; readonly name: string }[];
+    readonly stemming: boolean;
+    readonly passageMinimumWords: number;
+    readonly passageMaximumWords: number;
+    readonly extraStopWords: readonly string[];
+  };
+  /** What the model would see with the settings of now; null while nothing is gathered. */
+  readonly counted: {
+    readonly passages: number;
+    readonly words: number;
+    readonly forms: number;
+    readonly tooShort: number;
+  } | null;
+}
+
+export interface GatherOutcome {
+  readonly gathered: readonly string[];
+  readonly skipped: readonly { readonly file: string; readonly sentence: string }[];
+}
+
+export interface AttributesOutcome {
+  readonly described: number;
+  readonly unmatched: readonly string[];
+}
+
+export interface TurnView extends Span {
+  readonly speaker: string | null;
+  readonly role: Role;
+  readonly time: number | null;
+}
+
+export type Standing = 'confirmed' | 'rejected' | 'by hand';
+
+export interface CodingView {
+  readonly id: string;
+  readonly span: Span;
+  readonly theme: string;
+  readonly themeName: string;
+  readonly standing: Standing;
+  readonly memo: string;
+  readonly reader: string;
+  readonly at: string;
+  readonly strengthAtDecision: number | null;
+}
+
+export interface SuggestionView {
+  readonly theme: string;
+  readonly themeName: string;
+  readonly strength: number;
+  /** Where the words stand that carry the theme here, strongest first. */
+  readonly carriedBy: readonly Span[];
+}
+
+export interface PassageView extends Span {
+  /** From 1 in its transcript. */
+  readonly number: number;
+  readonly speaker: string | null;
+  readonly participant: string;
+  readonly time: number | null;
+  readonly segments: readonly Span[];
+  readonly question: Span | null;
+  readonly words: number;
+  readonly countedWords: number;
+  /** Themes from the threshold on that nobody decided on here, strongest first. */
+  readonly suggestions: readonly SuggestionView[];
+  /** The strongest themes whatever their strength, for "another theme"; at most five. */
+  readonly strongest: readonly SuggestionView[];
+  readonly codings: readonly CodingView[];
+  /** Set where it was read and no theme applies. */
+  readonly none: { readonly id: string; readonly reader: string; readonly at: string } | null;
+  readonly memos: readonly MemoView[];
+}
+
+export interface MemoView {
+  readonly id: string;
+  readonly text: string;
+  readonly reader: string;
+  readonly at: string;
+}
+
+export interface TranscriptView {
+  readonly id: string;
+  readonly name: string;
+  readonly text: string;
+  readonly details: readonly { readonly name: string; readonly value: string }[];
+  readonly turns: readonly TurnView[];
+  readonly passages: readonly PassageView[];
+  readonly words: number;
+  readonly memos: readonly MemoView[];
+}
+
+export type ReadingListKind =
+  'in order' | 'strongest first' | 'nearest the edge' | 'unexplained' | 'random draw' | 'one theme';
+
+export interface ReadingListRequest {
+  readonly kind: ReadingListKind;
+  /** For 'one theme' and, where set, to narrow the others. */
+  readonly theme: string | null;
+  /** For 'in order': one transcript, or null for all. */
+  readonly transcript: string | null;
+  readonly unreadOnly: boolean;
+  /** For a random draw: how many. */
+  readonly count: number;
+  /** For a random draw: its seed, recorded with each decision. */
+  readonly seed: number;
+}
+
+export interface ReadingList {
+  /** As it is recorded with each decision ("random draw of 60, seed 7"). */
+  readonly name: string;
+  readonly places: readonly PassagePlace[];
+  /** How many of them carry a decision. */
+  readonly decided: number;
+}
+
+export interface ThemeRowView {
+  readonly id: string;
+  /** Null for a candidate. */
+  readonly name: string | null;
+  /** What it is called on screen. */
+  readonly label: string;
+  readonly origin: 'fitted' | 'asked for' | 'by hand';
+  readonly pinned: boolean;
+  readonly setAside: boolean;
+  /** Whether the fit on screen has words for it. */
+  readonly modelled: boolean;
+  readonly share: number | null;
+  /** First words by probability. */
+  readonly words: readonly string[];
+  readonly confirmedPeople: number;
+  readonly suggestedPeople: number;
+  readonly codings: number;
+  readonly suggestions: number;
+}
+
+export interface ShapeView {
+  /** In codebook order; what is set aside comes last. */
+  readonly themes: readonly ThemeRowView[];
+  readonly people: number;
+  readonly fit: FitView | null;
+  readonly fits: readonly { readonly id: string; readonly label: string; readonly at: string }[];
+  readonly before: string | null;
+}
+
+export interface FitView {
+  readonly id: string;
+  readonly kind: 'from scratch' | 're-fit';
+  readonly themes: number;
+  readonly passages: number;
+  readonly countedWords: number;
+  readonly bound: number;
+  readonly sweeps: number;
+  readonly stopReason: string;
+  readonly seed: number;
+  readonly trace: readonly FitProgress[];
+}
+
+/**
+ * The layered bands: everything to draw them once. Band `b` is transcript `bands[b]`; its passages are
+ * the rows from `from` on, in reading order.
+ */
+export interface Strata {
+  readonly bands: readonly {
+    readonly transcript: string;
+    readonly name: string;
+    readonly participant: string;
+    readonly from: number;
+    readonly passages: number;
+  }[];
+  /** Ids of the layers, K values. */
+  readonly themes: readonly string[];
+  /** Spoken words of each passage: the width of its place in the band. */
+  readonly words: Int32Array;
+  /** 1 where an interviewer's turn stands before the passage. */
+  readonly gaps: Int32Array;
+  /** Start and end of each passage in its transcript, pairs. */
+  readonly places: Int32Array;
+  /** Proportions by rows, passages x K; zeros where nothing was counted. */
+  readonly shares: Float32Array;
+  /** Confirmed codings and codings by hand: pairs (passage row, index in `themes`, or -1). */
+  readonly ticks: Int32Array;
+}
+
+export interface ThemeWordView {
+  readonly form: string;
+  readonly surface: string;
+  readonly probability: number;
+  /** Other ways it is written, where it joins several. */
+  readonly joins: readonly string[];
+  readonly seeded: boolean;
+}
+
+export interface ThemeView {
+  readonly row: ThemeRowView;
+  readonly definition: {
+    readonly brief: string;
+    readonly full: string;
+    readonly whenToUse: string;
+    readonly whenNotToUse: string;
+    readonly examples: string;
+  };
+  readonly version: number;
+  readonly words: readonly ThemeWordView[];
+  readonly seeds: readonly string[];
+  readonly shutOut: readonly string[];
+  /** People whose passages it leads, and how much of it comes from one of them or one question. */
+  readonly people: number;
+  readonly ofPeople: number;
+  readonly mostFromOnePerson: { readonly name: string; readonly share: number } | null;
+  readonly mostAfterOneQuestion: { readonly question: string; readonly share: number } | null;
+  /** Strongest passages, one a participant before a second from anyone. */
+  readonly passages: readonly (PassagePlace & {
+    readonly transcriptName: string;
+    readonly participant: string;
+    readonly time: number | null;
+    readonly text: string;
+    readonly carriedBy: readonly Span[];
+    readonly strength: number;
+    readonly countedWords: number;
+    readonly standing: Standing | 'suggested' | 'none';
+    readonly coding: string | null;
+  })[];
+  readonly memos: readonly MemoView[];
+}
+
+/** Where a word is said, and by which themes it is used. */
+export interface WordView {
+  readonly form: string;
+  readonly forms: readonly { readonly form: string; readonly occurrences: number }[];
+  readonly occurrences: number;
+  readonly passages: number;
+  readonly people: number;
+  /** Themes by their part of the word's occurrences, largest first. */
+  readonly themes: readonly {
+    readonly id: string;
+    readonly label: string;
+    readonly share: number;
+  }[];
+  readonly lines: readonly (PassagePlace & {
+    readonly transcriptName: string;
+    readonly before: string;
+    readonly word: string;
+    readonly after: string;
+  })[];
+}
+
+export interface FitProgress {
+  readonly sweep: number;
+  /** Nats; null where it was not evaluated at this sweep. */
+  readonly bound: number | null;
+  readonly change: number;
+  readonly fraction: number;
+}
+
+export interface FitRequest {
+  readonly kind: 'from scratch' | 're-fit';
+  /** For a fit from scratch: how many themes; null for the study's setting. */
+  readonly themes: number | null;
+}
+
+export interface MovedView {
+  readonly compared: number;
+  readonly ofThemes: number;
+  readonly passages: readonly (PassagePlace & {
+    readonly transcriptName: string;
+    readonly number: number;
+    readonly text: string;
+    readonly from: { readonly id: string; readonly label: string };
+    readonly to: { readonly id: string; readonly label: string };
+    readonly strengths: {
+      readonly fromBefore: number;
+      readonly fromAfter: number;
+      readonly toBefore: number;
+      readonly toAfter: number;
+    };
+  })[];
+  readonly themes: readonly {
+    readonly id: string;
+    readonly label: string;
+    readonly gained: readonly string[];
+    readonly lost: readonly string[];
+  }[];
+  readonly appeared: readonly string[];
+  readonly gone: readonly string[];
+}
+
+export type ReportStanding = 'confirmed' | 'by hand' | 'suggested' | 'rejected';
+export type ReportFormat = 'csv' | 'json' | 'html' | 'docx' | 'themes csv' | 'methods';
+
+export interface ReportRequest {
+  readonly standings: readonly ReportStanding[];
+  /** Themes to include; null for all. */
+  readonly themes: readonly string[] | null;
+  /** Whether cells that a spreadsheet would run are guarded. */
+  readonly guard: boolean;
+}
+
+export interface ReportPreview {
+  readonly count: number;
+  readonly people: number;
+  readonly filter: string;
+  readonly themes: readonly {
+    readonly id: string;
+    readonly label: string;
+    readonly count: number;
+    readonly people: number;
+  }[];
+  /** The first excerpts, as they will stand. */
+  readonly excerpts: readonly {
+    readonly theme: string;
+    readonly question: string;
+    readonly text: string;
+    readonly attribution: string;
+    readonly standing: string;
+  }[];
+  readonly cautions: readonly string[];
+}
+
+export interface NamedFile {
+  readonly fileName: string;
+  readonly bytes: Uint8Array;
+}
+
+export interface Found {
+  readonly themes: readonly { readonly id: string; readonly label: string }[];
+  readonly words: readonly { readonly form: string; readonly occurrences: number }[];
+  readonly transcripts: readonly { readonly id: string; readonly name: string }[];
+  readonly passages: readonly (PassagePlace & {
+    readonly transcriptName: string;
+    readonly before: string;
+    readonly match: string;
+    readonly after: string;
+  })[];
+}
+
+/** How a decision about a passage came about: stored with it. */
+export interface UnderView {
+  /** The reading list's name. */
+  readonly drawnBy: string;
+  readonly seenSuggestion: boolean;
+}
+
+export interface CodeRequest extends UnderView {
+  readonly place: PassagePlace;
+  readonly theme: string;
+  readonly memo: string;
+}
+
+/** Every method: what it takes and what it answers with. `null` takes or answers nothing. */
+export interface Api {
+  about: { takes: null; gives: About };
+  recentStudies: { takes: null; gives: readonly RecentStudy[] };
+  overview: { takes: null; gives: Overview | null };
+
+  openDemo: { takes: null; gives: Overview };
+  /** `path` null: ask with the system's dialog, or use the studies folder. Null where cancelled. */
+  startStudy: { takes: { name: string; path: string | null }; gives: Overview | null };
+  openStudy: { takes: { path: string | null; readOnly: boolean }; gives: Overview | null };
+  closeStudy: { takes: null; gives: null };
+  renameStudy: { takes: { name: string }; gives: Overview };
+  nameReader: { takes: { name: string }; gives: Overview };
+  undo: { takes: null; gives: { did: string | null; overview: Overview } };
+  redo: { takes: null; gives: { did: string | null; overview: Overview } };
+
+  /** Shows the system's dialog; null where there is none or it was cancelled. */
+  chooseTranscripts: { takes: null; gives: GatherOutcome | null };
+  addTranscripts: {
+    takes: { files: readonly { name: string; bytes: Uint8Array }[] };
+    gives: GatherOutcome;
+  };
+  addAttributes: { takes: { name: string; bytes: Uint8Array }; gives: AttributesOutcome };
+  gatherView: { takes: null; gives: GatherView };
+  transcriptView: { takes: { transcript: string }; gives: TranscriptView };
+  renameTranscript: { takes: { transcript: string; name: string }; gives: Overview };
+  removeTranscript: { takes: { transcript: string }; gives: Overview };
+  assignSpeaker: {
+    takes: {
+      transcript: string;
+      label: string | null;
+      role: Role;
+      /** A name: the participant of that name, made where there is none. Null for other roles. */
+      participant: string | null;
+      /** The same for every transcript with this label. */
+      everywhere: boolean;
+    };
+    gives: Overview;
+  };
+  describeParticipant: {
+    takes: { participant: string; name: string; attributes: Record<string, string> };
+    gives: Overview;
+  };
+  changeSettings: {
+    takes: { settings: Record<string, string | number | boolean | readonly string[]> };
+    gives: Overview;
+  };
+
+  /** Reports progress; cancelling stops it and leaves the study as it was. */
+  fit: { takes: FitRequest; gives: { overview: Overview; moved: MovedView | null } };
+  moved: { takes: null; gives: MovedView | null };
+  chooseFit: { takes: { fit: string }; gives: Overview };
+
+  shapeView: { takes: null; gives: ShapeView };
+  strata: { takes: null; gives: Strata };
+  themeView: { takes: { theme: string }; gives: ThemeView };
+  wordView: { takes: { form: string }; gives: WordView };
+  nameTheme: { takes: { theme: string; name: string }; gives: Overview };
+  defineTheme: {
+    takes: {
+      theme: string;
+      brief: string;
+      full: string;
+      whenToUse: string;
+      whenNotToUse: string;
+      examples: string;
+    };
+    gives: Overview;
+  };
+  addTheme: {
+    takes: { name: string; byHand: boolean; seeds: readonly string[] };
+    gives: { overview: Overview; theme: string };
+  };
+  pinTheme: { takes: { theme: string; pinned: boolean }; gives: Overview };
+  setThemeAside: { takes: { theme: string; aside: boolean }; gives: Overview };
+  mergeThemes: { takes: { into: string; from: readonly string[] }; gives: Overview };
+  orderThemes: { takes: { themes: readonly string[] }; gives: Overview };
+  seedWord: { takes: { theme: string; word: string; seeded: boolean }; gives: Overview };
+  shutOutWord: { takes: { theme: string; word: string; shutOut: boolean }; gives: Overview };
+
+  readingList: { takes: ReadingListRequest; gives: ReadingList };
+  passageView: { takes: { place: PassagePlace }; gives: PassageView };
+  /** Confirms where the theme was suggested here, codes by hand otherwise. */
+  confirm: { takes: CodeRequest; gives: Overview };
+  reject: { takes: CodeRequest; gives: Overview };
+  codeByHand: { takes: CodeRequest; gives: Overview };
+  removeCoding: { takes: { transcript: string; coding: string }; gives: Overview };
+  markNone: { takes: UnderView & { place: PassagePlace }; gives: Overview };
+  clearNone: { takes: { transcript: string; none: string }; gives: Overview };
+  writeMemo: {
+    takes: {
+      on:
+        | { kind: 'study' }
+        | { kind: 'transcript'; transcript: string }
+        | { kind: 'passage'; place: PassagePlace }
+        | { kind: 'theme'; theme: string }
+        | { kind: 'coding'; transcript: string; coding: string };
+      text: string;
+    };
+    gives: Overview;
+  };
+  reviseMemo: { takes: { memo: string; text: string }; gives: Overview };
+
+  find: { takes: { text: string }; gives: Found };
+  reportPreview: { takes: ReportRequest; gives: ReportPreview };
+  report: { takes: ReportRequest & { format: ReportFormat }; gives: NamedFile };
+  /** Shows the system's dialog and writes the file; the path, or null where cancelled. */
+  saveFile: { takes: NamedFile; gives: string | null };
+}
+
+export type Method = keyof Api;
+
+/** What the server half tells a window without being asked. */
+export interface Events {
+  /** A decision was made, here or in another window. */
+  changed: Overview;
+  closed: null;
+  /** A menu item was chosen; the window carries it out. */
+  command:
+    'undo' | 'redo' | 'find' | 'start study' | 'open study' | 'add transcripts' | 'close study';
+}
+
+/** One line of what can travel, so that the three parts that are derived from it agree. */
+export const methods = [
+  'about',
+  'recentStudies',
+  'overview',
+  'openDemo',
+  'startStudy',
+  'openStudy',
+  'closeStudy',
+  'renameStudy',
+  'nameReader',
+  'undo',
+  'redo',
+  'chooseTranscripts',
+  'addTranscripts',
+  'addAttributes',
+  'gatherView',
+  'transcriptView',
+  'renameTranscript',
+  'removeTranscript',
+  'assignSpeaker',
+  'describeParticipant',
+  'changeSettings',
+  'fit',
+  'moved',
+  'chooseFit',
+  'shapeView',
+  'strata',
+  'themeView',
+  'wordView',
+  'nameTheme',
+  'defineTheme',
+  'addTheme',
+  'pinTheme',
+  'setThemeAside',
+  'mergeThemes',
+  'orderThemes',
+  'seedWord',
+  'shutOutWord',
+  'readingList',
+  'passageView',
+  'confirm',
+  'reject',
+  'codeByHand',
+  'removeCoding',
+  'markNone',
+  'clearNone',
+  'writeMemo',
+  'reviseMemo',
+  'find',
+  'reportPreview',
+  'report',
+  'saveFile',
+] as const satisfies readonly Method[];
+
+/** Fails to compile where a method is missing from the list above. */
+export type EveryMethodIsListed =
+  Exclude<Method, (typeof methods)[number]> extends never ? true : never;
+export const everyMethodIsListed: EveryMethodIsListed = true;
+
+/** The client's side of the contract, as a window uses it. */
+export interface Link {
+  call<Name extends Method>(
+    method: Name,
+    takes: Api[Name]['takes'],
+    options?: {
+      readonly onProgress?: (progress: FitProgress) => void;
+      readonly signal?: AbortSignal;
+    },
+  ): Promise<Answer<Api[Name]['gives']>>;
+  on<Name extends keyof Events>(event: Name, listener: (detail: Events[Name]) => void): () => void;
+}

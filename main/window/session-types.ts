@@ -1,0 +1,54 @@
+import type { About, Answer, Api, Events, FitProgress, Method } from '../api.ts';
+
+/** What a call brings along besides its payload. */
+export interface CallContext {
+  readonly onProgress: (progress: FitProgress) => void;
+  readonly signal: AbortSignal;
+}
+
+/** One function for each method of the api. Payloads were checked before they come here. */
+export type Handlers = {
+  readonly [Name in Method]: (
+    takes: Api[Name]['takes'],
+    context: CallContext,
+  ) => Promise<Answer<Api[Name]['gives']>>;
+};
+
+/** What a shell can do for a session: the system's own dialogs. Paths, or null where cancelled. */
+export interface SystemDialogs {
+  readonly chooseStudy: () => Promise<string | null>;
+  readonly placeStudy: (name: string) => Promise<string | null>;
+  readonly chooseTranscripts: () => Promise<readonly string[] | null>;
+  readonly placeFile: (fileName: string) => Promise<string | null>;
+}
+
+/** Paths of studies opened lately; nothing else of them is kept. Newest first. */
+export interface RecentPaths {
+  readonly list: () => Promise<readonly string[]>;
+  readonly add: (path: string) => Promise<void>;
+  readonly remove: (path: string) => Promise<void>;
+}
+
+/** Where a session stands: given by the shell, so that tests can say. */
+export interface Surroundings {
+  readonly about: About;
+  readonly dialogs: SystemDialogs | null;
+  readonly recent: RecentPaths;
+  /** The folder of the demo's transcripts and of its attributes. */
+  readonly demoFolder: string;
+  readonly now: () => string;
+  /** The name that a reader gets until one is typed. */
+  readonly readerName: string;
+}
+
+export interface Session {
+  readonly handlers: Handlers;
+  readonly on: <Name extends keyof Events>(
+    event: Name,
+    listener: (detail: Events[Name]) => void,
+  ) => () => void;
+  /** Opens a study that the system handed over (a double-clicked file). */
+  readonly openPath: (path: string) => Promise<void>;
+  /** Closes the open study; safe to call twice. */
+  readonly close: () => Promise<void>;
+}
