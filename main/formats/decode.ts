@@ -22,8 +22,13 @@ function decodeBytes(bytes: Uint8Array): Decoded {
   if (a === 0xff && b === 0xfe && !(c === 0 && d === 0)) return utf16(bytes, 'utf-16le');
   if (a === 0xfe && b === 0xff) return utf16(bytes, 'utf-16be');
   const zeros = zeroShares(bytes);
-  if (zeros.odd > 0.02 && zeros.even * 20 < zeros.odd) return utf16(bytes, 'utf-16le');
-  if (zeros.even > 0.02 && zeros.odd * 20 < zeros.even) return utf16(bytes, 'utf-16be');
+  const unmarked =
+    zeros.odd > leastZeros && zeros.even * 20 < zeros.odd
+      ? utf16(bytes, 'utf-16le')
+      : zeros.even > leastZeros && zeros.odd * 20 < zeros.even
+        ? utf16(bytes, 'utf-16be')
+        : null;
+  if (unmarked?.ok === true && hasSpaces(unmarked.text)) return unmarked;
   const utf8 = strictly(bytes, 'utf-8');
   if (utf8 !== null) {
     return isWriting(utf8) ? { ok: true, text: utf8 } : { ok: false, code: 'not text' };
@@ -43,6 +48,14 @@ function utf16(bytes: Uint8Array, encoding: 'utf-16le' | 'utf-16be'): Decoded {
   const even = bytes.length % 2 === 0;
   const text = even ? strictly(bytes, encoding) : null;
   return text !== null && isWriting(text) ? { ok: true, text } : { ok: false, code: 'not text' };
+}
+
+// In any alphabet a space, a line end or a full stop has a zero in UTF-16; where nearly no unit is a
+// space, the zeros had another cause.
+const leastZeros = 0.02;
+
+function hasSpaces(text: string): boolean {
+  return (text.match(/[ \n]/g)?.length ?? 0) * 25 >= text.length;
 }
 
 /** The shares of zeros among the bytes at even and at odd places. */
