@@ -92,7 +92,7 @@ function stretchesOf(
     const long = wordsIn(units) > settings.shortTurnWords;
     if (long) {
       for (const other of [...open.keys()]) {
-        if (other !== key || role !== 'participant') open.delete(other);
+        if (other !== key) open.delete(other);
       }
     }
     if (role === 'interviewer' && long) question = { start: turn.start, end: turn.end };

@@ -119,6 +119,9 @@ describe('a long answer', () => {
   test('is divided between turns rather than inside one', () => {
     const text = `P07: ${talk(40, 40)}\nINT: Mm.\nP07: ${talk(25, 50)}`;
     expect(lengths(passages(text))).toEqual([80, 75]);
+    // 76 and 84 words are as good as 84 and 76; the first ends with a turn.
+    const even = `P07: ${talk(40, 36)}\nINT: Mm.\nP07: ${talk(8, 76)}`;
+    expect(lengths(passages(even))).toEqual([76, 84]);
   });
 
   test('without sentence ends is divided at commas, or else between words', () => {

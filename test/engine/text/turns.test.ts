@@ -153,6 +153,7 @@ describe('no turn begins at', () => {
     'https://example.org: that was it',
     'Monday: nothing. Tuesday: nothing.',
     'Boat: that is what I said, the boat.',
+    'Norrey: the village, I mean.',
   ])('%j inside speech', (line) => {
     const text = `INT: How was it?\nP07: It was a long day on the boat,\n${line}\nand then it was over.\nINT: And then?\nP07: Home.`;
     expect(turns(text).map(([speaker]) => speaker)).toEqual(['INT', 'P07', 'INT', 'P07']);
@@ -168,6 +169,17 @@ describe('no turn begins at', () => {
       expect(turns(text)).toHaveLength(4);
     },
   );
+
+  test('a word that the text also writes small', () => {
+    const text = 'INT: So?\nAnna: No boat came.\nBoat: none.\nINT: And?\nAnna: No.';
+    expect(turns(text)).toHaveLength(4);
+  });
+
+  test('a paragraph of a turn that has several', () => {
+    const text =
+      'INT: How?\n\nP07: Long.\n\nNorrey: the village, I mean.\n\nAnd home.\n\nINT: So?\n\nP07: Mm.';
+    expect(turns(text)).toHaveLength(4);
+  });
 
   test('a colon where every turn has its time', () => {
     const text =
@@ -214,6 +226,7 @@ describe('lines before the first turn', () => {
 
   test.each([
     'Date: 3 May\nInterviewer: Jane Doe\nInterviewer: How?\nP07: Well.',
+    'Place: the pier\nInterviewer: Jane Doe\nInterviewer: How?\nP07: Well.',
     'Transcript: P07\nInterviewer: Jane Doe\n\nInterviewer: How?\n\nP07: Well.',
     'Interviewer: Jane Doe\nDate: 3 May 2026, 10:30\n\nInterviewer: How?\nP07: Well.',
     '# Interview\n\n**Date:** 3 May\n**Interviewer:** Jane Doe\n\n**Interviewer:** How?\n\n**P07:** Well.',
@@ -230,6 +243,11 @@ describe('lines before the first turn', () => {
       'Interviewer: Jane\nParticipant: Ruth\n\nJane: How?\nRuth: Well.\nJane: So?\nRuth: Mm.';
     expect(read(text).details).toEqual(['Interviewer=Jane', 'Participant=Ruth']);
     expect(turns(text)).toHaveLength(4);
+  });
+
+  test('may give a single name', () => {
+    const text = 'Date: 3 May\nInterviewer: Jane\nInterviewer: How?\nP07: Well.';
+    expect(read(text).details).toEqual(['Date=3 May', 'Interviewer=Jane']);
   });
 
   test('a first turn that is one word is speech', () => {
