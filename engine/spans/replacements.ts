@@ -40,7 +40,7 @@ export function mapOffset(
 export function mapSpan<S extends Span>(span: S, replacements: readonly Replacement[]): S {
   const start = mapStart(span.start, replacements);
   const end = span.start === span.end ? start : mapEnd(span.end, replacements);
-  return { ...span, start, end: Math.max(start, end) };
+  return { ...span, start, end };
 }
 
 function mapStart(offset: number, replacements: readonly Replacement[]): number {
