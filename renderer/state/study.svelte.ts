@@ -1,0 +1,188 @@
+import type { Api, FitProgress, Link, Method, Overview } from '../../main/api.ts';
+
+export type PlaceName = 'gather' | 'read' | 'shape' | 'report';
+
+/** What a person is told in the line under the header. */
+export interface Message {
+  readonly kind: 'refused' | 'done' | 'caution';
+  readonly text: string;
+}
+
+/**
+ * The study as the window knows it: the overview, which place is shown, the fit that runs, the last
+ * message. Everything that is decided goes through `ask` or `decide`.
+ */
+export class StudyState {
+  readonly link: Link;
+  #overview = $state.raw<Overview | null>(null);
+  #message = $state.raw<Message | null>(null);
+  #progress = $state.raw<readonly FitProgress[] | null>(null);
+  #fitting: AbortController | null = null;
+  #busy = $state(0);
+  place = $state<PlaceName>('gather');
+  /** The theme that Shape and Read have in hand. */
+  theme = $state<string | null>(null);
+  /** Where Read should go next: set by other places, taken by Read. */
+  goal = $state.raw<{ transcript: string; start: number; end: number } | null>(null);
+  finding = $state(false);
+
+  constructor(link: Link) {
+    this.link = link;
+  }
+
+  /** Begins to listen; gives back what ends it. */
+  start(): () => void {
+    const ends = [
+      this.link.on('changed', (overview) => this.#take(overview)),
+      this.link.on('closed', () => this.#leave()),
+    ];
+    void this.ask('overview', null).then((overview) => {
+      if (overview !== undefined) this.#overview = overview;
+    });
+    return () => ends.forEach((end) => end());
+  }
+
+  get overview(): Overview | null {
+    return this.#overview;
+  }
+
+  get revision(): number {
+    return this.#overview?.revision ?? -1;
+  }
+
+  get message(): Message | null {
+    return this.#message;
+  }
+
+  /** The points of the running fit, or null where none runs. */
+  get progress(): readonly FitProgress[] | null {
+    return this.#progress;
+  }
+
+  get busy(): boolean {
+    return this.#busy > 0;
+  }
+
+  say(kind: Message['kind'], text: string): void {
+    this.#message = { kind, text };
+  }
+
+  hush(): void {
+    this.#message = null;
+  }
+
+  /** Calls a method; what it gives, or undefined where it was refused (the sentence is shown). */
+  async ask<Name extends Method>(
+    method: Name,
+    takes: Api[Name]['takes'],
+    options?: Parameters<Link['call']>[2],
+  ): Promise<Api[Name]['gives'] | undefined> {
+    this.#busy++;
+    try {
+      const answer = await this.link.call(method, takes, options);
+      if ('value' in answer) return answer.value;
+      this.say('refused', answer.refused);
+      return undefined;
+    } finally {
+      this.#busy--;
+    }
+  }
+
+  /** A decision: its answer is the overview after it. True where it was made. */
+  async decide<Name extends MethodGiving<Overview>>(
+    method: Name,
+    takes: Api[Name]['takes'],
+  ): Promise<boolean> {
+    this.hush();
+    const overview = await this.ask(method, takes);
+    if (overview === undefined) return false;
+    this.#take(overview as Overview);
+    return true;
+  }
+
+  async undo(): Promise<void> {
+    await this.#back('undo');
+  }
+
+  async redo(): Promise<void> {
+    await this.#back('redo');
+  }
+
+  /** Opens, starts or shows a study; true where one is open afterwards. */
+  async enter<Name extends 'openDemo' | 'openStudy' | 'startStudy'>(
+    method: Name,
+    takes: Api[Name]['takes'],
+  ): Promise<boolean> {
+    this.hush();
+    this.#progress = method === 'openDemo' ? [] : null;
+    const overview = await this.ask(method, takes, { onProgress: (point) => this.#trace(point) });
+    this.#progress = null;
+    if (overview === undefined || overview === null) return false;
+    this.#overview = overview;
+    this.theme = null;
+    this.goal = null;
+    this.place = overview.fitted ? 'shape' : 'gather';
+    return true;
+  }
+
+  async close(): Promise<void> {
+    if ((await this.ask('closeStudy', null)) !== undefined) this.#leave();
+  }
+
+  /** Fits and shows how it goes; a stopped fit changes nothing. */
+  async fit(kind: 'from scratch' | 're-fit', themes: number | null = null): Promise<boolean> {
+    if (this.#fitting !== null) return false;
+    this.hush();
+    this.#fitting = new AbortController();
+    this.#progress = [];
+    const { signal } = this.#fitting;
+    const result = await this.ask(
+      'fit',
+      { kind, themes },
+      { signal, onProgress: (point) => this.#trace(point) },
+    );
+    this.#fitting = null;
+    this.#progress = null;
+    if (result === undefined) return false;
+    this.#take(result.overview);
+    return true;
+  }
+
+  stopFit(): void {
+    this.#fitting?.abort();
+  }
+
+  async #back(method: 'undo' | 'redo'): Promise<void> {
+    this.hush();
+    const result = await this.ask(method, null);
+    if (result === undefined) return;
+    this.#take(result.overview);
+    const verb = method === 'undo' ? 'Taken back' : 'Done again';
+    if (result.did !== null) this.say('done', `${verb}: ${result.did}.`);
+  }
+
+  #trace(point: FitProgress): void {
+    this.#progress = [...(this.#progress ?? []), point];
+  }
+
+  #take(overview: Overview): void {
+    const current = this.#overview;
+    if (current !== null && current.study.id === overview.study.id) {
+      if (overview.revision < current.revision) return;
+    }
+    this.#overview = overview;
+  }
+
+  #leave(): void {
+    this.#overview = null;
+    this.#message = null;
+    this.theme = null;
+    this.goal = null;
+    this.place = 'gather';
+  }
+}
+
+/** Methods whose answer is of one kind. */
+export type MethodGiving<Value> = {
+  [Name in Method]: Api[Name]['gives'] extends Value ? Name : never;
+}[Method];
