@@ -33,11 +33,11 @@ const clock = String.raw`[\[({<]?\s?(${clockPattern})(?:\s?(?:-->|[-–—])\s?(
 const labelText = String.raw`\p{L}[\p{L}\p{M}\p{N} \u00a0.'’\-_/&#,]{0,47}?(?:\s?\([^()\n:]{1,30}\))?`;
 
 const opening = new RegExp(
-  String.raw`^(?:[-–—•>]\s+)?(${bold}?)(?:${clock}\s*[-–—:]?\s*)?(${bold}?)`,
+  String.raw`^(?:[-–—•>]\s+|\d{1,4}(?:[.)]\s+|\t+))?(${bold}?)(?:${clock}\s*[-–—:]?\s*)?(${bold}?)`,
   'u',
 );
 const beforeColon = new RegExp(
-  String.raw`^(${labelText})${bold}?(?:[\s,–-]*${clock})?(${bold}?)\s?[:：](${bold}?)`,
+  String.raw`^[\[<]?(${labelText})[\]>]?${bold}?(?:[\s,–-]*${clock})?(${bold}?)\s?[:：](${bold}?)`,
   'u',
 );
 const beforeClock = new RegExp(String.raw`^(${labelText})${bold}?[\s,–-]+${clock}${bold}?$`, 'u');
@@ -183,15 +183,18 @@ export function chooseLabels(
     (line, index) =>
       index > first && !candidateLines.has(index) && line.blankBefore && !isTime(text, line),
   );
+  const isAnchor = new Set(anchors);
+  const small = smallWords(text);
   const chosen = groups.filter((group) => {
-    if (anchors.includes(group)) return true;
+    if (isAnchor.has(group)) return true;
     const fitting = group.lines.filter((candidate) => fits(candidate, habit, lines)).length;
     const rare = group.lines.length < 3;
     if (rare ? fitting < group.lines.length : fitting < group.lines.length * 0.8) return false;
-    if (group.shape === 'small')
-      return !rare && anchors.every((anchor) => anchor.shape === 'small');
+    if (group.shape === 'small') {
+      return group.lines.length > 1 && anchors.every((anchor) => anchor.shape === 'small');
+    }
     if (group.shape === 'name' && rare) {
-      if (writtenSmall(text, group.key)) return false;
+      if (small.has(group.key)) return false;
       if (habit.distinct) return true;
       return habit.blank ? !paragraphed : !continued;
     }
@@ -292,12 +295,9 @@ function fits(candidate: Candidate, habit: Habit, lines: readonly Line[]): boole
   );
 }
 
-/** A name is never written small: a word that is stands for a thing. */
-function writtenSmall(text: string, key: string): boolean {
-  const word = key.replace(/[^\p{L}\p{M}]+/gu, '');
-  return (
-    word.length > 1 && new RegExp(`(?<![\\p{L}\\p{M}])${word}(?![\\p{L}\\p{M}])`, 'u').test(text)
-  );
+/** The words that a text writes small somewhere. A name is never written so; a thing is. */
+function smallWords(text: string): ReadonlySet<string> {
+  return new Set(text.match(/(?<![\p{L}\p{M}\p{N}])\p{Ll}[\p{Ll}\p{M}]+(?![\p{L}\p{M}\p{N}])/gu));
 }
 
 /** No label recurs or names a role: names speak where they stand before most of the lines. */
@@ -306,9 +306,9 @@ function withoutAnchors(
   lines: readonly Line[],
   groups: readonly Group[],
 ): Candidate[] {
+  const small = smallWords(text);
   const named = groups.filter(
-    (group) =>
-      group.shape !== 'small' && (group.shape !== 'name' || !writtenSmall(text, group.key)),
+    (group) => group.shape !== 'small' && (group.shape !== 'name' || !small.has(group.key)),
   );
   const all = named.flatMap((group) => group.lines).sort((a, b) => a.line - b.line);
   if (all.length === 0) return [];

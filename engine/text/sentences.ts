@@ -14,7 +14,7 @@ const shortened = new Set(
 const opening = /^[\s"'“‘«‹„([{¿¡–—-]*/u;
 const closing = String.raw`["'”’»›)\]}]*`;
 const ending = new RegExp(
-  String.raw`(?:([.!?…]+)${closing}(?=\s|$))|(?:[。！？]+${closing})|(?:\n[^\S\n]*\n)`,
+  String.raw`(?:(?<![.!?…])([.!?…]+)${closing}(?=\s|$))|(?:[。！？]+${closing})|(?:\n[^\S\n]*\n)`,
   'gu',
 );
 

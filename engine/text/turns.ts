@@ -130,6 +130,8 @@ function isNameLike(value: string): boolean {
   );
 }
 
+const mostRolesInBlock = 12;
+
 /**
  * How many of the first chosen lines are headings after all ("Interviewer: Jane Doe" above the
  * talk): a role with a name behind it, among other headings or with more than one such line.
@@ -142,15 +144,27 @@ function headerLength(text: string, lines: readonly Line[], chosen: readonly Can
     candidate.startTime === null &&
     (isRoleWord(candidate.label) || isRoleCode(candidate.label));
 
+  // In one block with it, behind nothing but a few lines of its own kind.
+  const headingFollows = (index: number): boolean => {
+    for (let at = index; at < index + mostRolesInBlock; at++) {
+      const next = chosen[at]!.line + 1;
+      if (lines[next] === undefined || lines[next].blankBefore) return false;
+      const following = chosen[at + 1];
+      if (following?.line !== next) return headsBetween(text, lines, next, next + 1);
+      if (!mayHead(following) || !isShort(valueOf(following))) return false;
+    }
+    return false;
+  };
+
   let length = 0;
   let last = -1;
   while (length < chosen.length) {
     const candidate = chosen[length]!;
     const value = valueOf(candidate);
-    const among = candidate.line > 0 && headsBetween(text, lines, last + 1, candidate.line);
-    const short = value !== '' && !/[.?!…]["”']?$/u.test(value) && value.split(/\s+/u).length <= 10;
+    const among = headsBetween(text, lines, last + 1, candidate.line);
     const closed = lines[candidate.line + 1]?.blankBefore ?? true;
-    const headed = isNameLike(value) || (among && short && closed && !greeting.test(value));
+    const headed =
+      isNameLike(value) || (isShort(value) && ((among && closed) || headingFollows(length)));
     if (!mayHead(candidate) || !headed) break;
     last = candidate.line;
     length++;
@@ -174,6 +188,11 @@ function headerLength(text: string, lines: readonly Line[], chosen: readonly Can
   return afterwards.length > 0 && heads.every(says) ? length : 0;
 }
 
+function isShort(value: string): boolean {
+  const sentence = /[.?!…]["”']?$/u.test(value);
+  return value !== '' && !sentence && !greeting.test(value) && value.split(/\s+/u).length <= 10;
+}
+
 function headsBetween(text: string, lines: readonly Line[], from: number, to: number): boolean {
   return lines.slice(from, to).some((line) => {
     const colon = /^([^:\n]{1,48})[:：]\s/u.exec(text.slice(line.start, line.end));
@@ -187,16 +206,17 @@ function isMostlyBefore(text: string, lines: readonly Line[], talk: readonly Can
   return talk.length < 4 && start > text.length / 2 && start > 600;
 }
 
-const headingLine = /^[#>*\-\s]*\**([^:\n]{1,48}?)\**\s?[:：]\**(?:\s+|$)(.*)$/su;
+const headingLine = /^[#>*\-\s]{0,12}([^:\n*]{1,48}?)\**\s?[:：]\**(?:\s+|$)/u;
 
 function detailOf(text: string, line: Line): Detail[] {
   const whole = text.slice(line.start, line.end);
   if (!/[\p{L}\p{N}]/u.test(whole)) return [];
   const match = headingLine.exec(whole);
   if (match !== null && match[1]!.trim().split(/\s+/u).length <= 6 && !isSpeechOpener(match[1]!)) {
-    return [{ name: match[1]!.trim(), value: match[2]!.replace(/\*+$/, '').trim() }];
+    const value = whole.slice(match[0].length).replace(/\*{1,3}$/, '');
+    return [{ name: match[1]!.trim(), value: value.trim() }];
   }
-  return [{ name: '', value: whole.replace(/^#+\s*/, '') }];
+  return [{ name: '', value: whole.replace(/^#{1,6}\s*/, '') }];
 }
 
 /** No labels: headings, then a turn a paragraph, with the time in front of it where there is one. */
@@ -220,7 +240,10 @@ function isHeadingLine(text: string, lines: readonly Line[], index: number): boo
   if (/^#{1,6}\s/.test(whole) || !/[\p{L}\p{N}]/u.test(whole)) return true;
   const match = headingLine.exec(whole);
   if (match === null) return false;
-  return isHeading(match[1]!) || (isRoleWord(match[1]!) && isNameLike(match[2]!.trim()));
+  return (
+    isHeading(match[1]!) ||
+    (isRoleWord(match[1]!) && isNameLike(whole.slice(match[0].length).trim()))
+  );
 }
 
 /**

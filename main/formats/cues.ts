@@ -30,6 +30,7 @@ interface Piece {
 
 const pauseMilliseconds = 3_000;
 const longParagraph = 600;
+const longestParagraph = 2_400;
 
 /**
  * The canonical text of captions: a paragraph a turn, "Name: words" where the speaker is known, else
@@ -75,6 +76,7 @@ function goesOn(turn: readonly Piece[], last: Piece, next: Piece): boolean {
   if (next.speaker !== null) return true;
   if (next.startTime - last.endTime >= pauseMilliseconds) return false;
   const length = turn.reduce((total, piece) => total + piece.text.length, 0);
+  if (length > longestParagraph) return false;
   return length < longParagraph || !/[.?!…]["”’)\]]*$/u.test(last.text);
 }
 

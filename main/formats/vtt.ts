@@ -80,7 +80,7 @@ function milliseconds(time: string): number {
   return seconds * 1000 + Number(fraction);
 }
 
-const tag = /<(\/?)([^\s<>/]*)([^<>]*)>/g;
+const tag = /<(\/?)([^\s<>/]{0,40})([^<>]{0,400})>/g;
 
 /** The lines of a cue, split where the voice changes. */
 function cueLines(payload: string): CueLine[] {
@@ -109,7 +109,8 @@ function cueLines(payload: string): CueLine[] {
     speaker = voice === '' ? null : voice;
   }
   // A tag that never closes takes the rest of the cue with it.
-  add(payload.slice(from).replace(/<[^>]*$/, ''));
+  const open = payload.indexOf('<', Math.max(from, payload.lastIndexOf('>') + 1));
+  add(payload.slice(from, open < 0 ? payload.length : open));
   close();
   return lines;
 }

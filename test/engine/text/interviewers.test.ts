@@ -2,7 +2,8 @@ import { describe, expect, test } from 'vitest';
 import { guessInterviewers, turnsFromText } from '../../../engine/text/index.ts';
 
 function guess(text: string): string[] {
-  return guessInterviewers(text, turnsFromText(text).turns);
+  const { turns, details } = turnsFromText(text);
+  return guessInterviewers(text, turns, details);
 }
 
 describe('the interviewer', () => {
@@ -29,6 +30,11 @@ describe('the interviewer', () => {
 
   test('may be several by their labels', () => {
     expect(guess('INT1: So?\nP07: Yes.\nINT2: And?\nP07: No.')).toEqual(['INT1', 'INT2']);
+  });
+
+  test.each(['Jane Doe', 'Jane', 'JD'])('is known as %s by a line above the talk', (label) => {
+    const text = `Date: 3 May\nInterviewer: Jane Doe\n\n${label}: Right.\nRuth: Why?\n${label}: Well.\nRuth: Oh?`;
+    expect(guess(text)).toEqual([label]);
   });
 
   test('is the one who asks most and speaks least', () => {

@@ -67,6 +67,8 @@ describe('a turn begins at', () => {
     'Maria:\u00a0first line\nsecond line\n\nTom:\tother',
     'Maria : first line\nsecond line\n\nTom : other',
     '- Maria: first line\nsecond line\n\n- Tom: other',
+    '1. Maria: first line\nsecond line\n\n2. Tom: other',
+    '[Maria]: first line\nsecond line\n\n[Tom]: other',
     '  Maria:   first line\nsecond line  \n\n   Tom: other  ',
   ])('a label in the shape of %j', (text) => {
     expect(turns(text)).toEqual([
@@ -104,6 +106,10 @@ describe('a turn begins at', () => {
       label,
       'Zoë',
     ]);
+  });
+
+  test('names written small, where all are', () => {
+    expect(turns('maria: hello\ntom: hi\nmaria: so\ntom: well\nmaria: mm')).toHaveLength(5);
   });
 
   test('a label with a tab, as a table gives it', () => {
@@ -229,6 +235,7 @@ describe('lines before the first turn', () => {
     'Place: the pier\nInterviewer: Jane Doe\nInterviewer: How?\nP07: Well.',
     'Transcript: P07\nInterviewer: Jane Doe\n\nInterviewer: How?\n\nP07: Well.',
     'Interviewer: Jane Doe\nDate: 3 May 2026, 10:30\n\nInterviewer: How?\nP07: Well.',
+    'Participant: P07 (female, 47)\nInterviewer: Jane Doe\nDate: 3 May\n\nInterviewer: How?\nP07: Well.',
     '# Interview\n\n**Date:** 3 May\n**Interviewer:** Jane Doe\n\n**Interviewer:** How?\n\n**P07:** Well.',
   ])('%j', (text) => {
     expect(turns(text)).toEqual([
