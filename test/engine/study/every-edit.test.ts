@@ -717,6 +717,23 @@ const cases: { readonly [Kind in EditKind]: readonly Case<Kind>[] } = {
       ),
     },
     {
+      does: 'rejects a coding whose words are gone, where it stands',
+      before: emptied,
+      edit: {
+        kind: 'codingRevised',
+        transcript: 'harbour',
+        coding: 'on-harbour',
+        from: { theme: 'sea', standing: 'confirmed', span: span(10, 10), memo: '' },
+        to: { theme: 'sea', standing: 'rejected', span: span(10, 10), memo: 'Gone.' },
+      },
+      expected: codings(
+        'harbour',
+        'on-harbour',
+        { ...emptyCoding, standing: 'rejected', memo: 'Gone.' },
+        emptied,
+      ),
+    },
+    {
       does: 'gives a coding whose words are gone another span',
       before: emptied,
       edit: {
