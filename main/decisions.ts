@@ -9,7 +9,7 @@ import {
   type Study,
   type Theme,
 } from '../engine/study/index.ts';
-import { settingFault } from '../engine/themes/index.ts';
+import { settingsFault } from '../engine/themes/index.ts';
 import type { Desk, DeskResult } from './desk.ts';
 import { interviewersAmong } from './gather/gather.ts';
 import { participantName } from './gather/participants.ts';
@@ -45,12 +45,12 @@ export function applyPlan(desk: Desk, plan: Plan): Applied {
 
 /** Changes settings to the given values; refuses unknown ones and values out of range. */
 export function applySettings(desk: Desk, settings: Record<string, SettingValue>): Applied {
-  const changes = [];
-  for (const [key, to] of Object.entries(settings)) {
-    const fault = settingFault(key, to);
-    if (fault !== null) return { ok: false, code: 'setting', subject: key, must: fault.must };
-    changes.push({ key, from: desk.study.settings[key] ?? null, to });
-  }
+  const before = desk.study.settings;
+  const fault = settingsFault({ ...before, ...settings });
+  if (fault !== null) return { ok: false, code: 'setting', subject: fault.key, must: fault.must };
+  const changes = Object.entries(settings)
+    .filter(([key, to]) => JSON.stringify(before[key]) !== JSON.stringify(to))
+    .map(([key, to]) => ({ key, from: before[key] ?? null, to }));
   return changes.length === 0
     ? { ok: true, value: null }
     : desk.make([{ edit: { kind: 'settingsChanged', changes } }]);

@@ -109,10 +109,10 @@ export class Desk {
       entries.push(entry);
     }
     const written = this.store.appendAll(
-      drafts.map(({ blobs = [] }, index) => {
-        const { sequence: _, ...stored } = entries[index];
-        return { blobs, edit: () => stored };
-      }),
+      drafts.map(({ blobs = [] }, index) => ({
+        blobs,
+        edit: () => withoutSequence(entries[index]),
+      })),
     );
     if (!written.ok) return written;
     this.#study = study;
@@ -194,6 +194,11 @@ export class Desk {
       { group: this.context.mintId('group'), undoes: steps.map(({ undoes }) => undoes) },
     );
   }
+}
+
+/** As it is stored: its record has the number. */
+function withoutSequence({ sequence: _sequence, ...stored }: Entry): Omit<Entry, 'sequence'> {
+  return stored;
 }
 
 /** Transcripts by name, in code-unit order: the order of every table and of every fit. */

@@ -63,14 +63,35 @@ export function parsePlan(text: string): ParsedPlan {
   } catch {
     return { ok: false, code: 'plan is not JSON', place: '', problem: '' };
   }
+  if (Array.isArray(json)) {
+    return { ok: false, code: 'plan value', place: '', problem: 'an object in braces is needed' };
+  }
   const parsed = v.safeParse(plan, json, { abortEarly: true });
   if (parsed.success) return { ok: true, value: parsed.output };
   const [issue] = parsed.issues;
   const place = placeOf(issue.path ?? []);
   return issue.type === 'strict_object' && issue.expected === 'never'
     ? { ok: false, code: 'unknown plan key', place, problem: '' }
-    : { ok: false, code: 'plan value', place, problem: issue.message };
+    : { ok: false, code: 'plan value', place, problem: problemOf(issue) };
 }
+
+/** What is needed, in a person's words; checks of our own bring theirs along. */
+function problemOf({ type, message, expected }: v.BaseIssue<unknown>): string {
+  if (type === 'picklist') return `one of ${expected?.replace(/[()]/gu, '')} is needed`;
+  return needed[type] ?? message;
+}
+
+const needed: Readonly<Record<string, string>> = {
+  string: 'a text in quotes is needed',
+  number: 'a number is needed',
+  integer: 'a whole number is needed',
+  min_value: 'a larger number is needed',
+  boolean: 'true or false is needed',
+  array: 'a list in square brackets is needed',
+  strict_object: 'an object in braces is needed',
+  record: 'an object in braces is needed',
+  union: 'a number, a text, true, false or a list of texts is needed',
+};
 
 function placeOf(path: readonly { readonly key?: unknown }[]): string {
   return path.reduce(

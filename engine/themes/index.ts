@@ -20,6 +20,7 @@ export {
   defaultSettings,
   recordedSettings,
   settingFault,
+  settingsFault,
   settingsOf,
   type SettingFault,
   type SettingKey,

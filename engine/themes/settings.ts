@@ -1,7 +1,7 @@
 import type { FitSettings } from '../model/index.ts';
 import { defaultFitSettings, quickFitSettings } from '../model/index.ts';
 import type { SettingValue, SettingValues } from '../study/index.ts';
-import { defaultTextSettings, isLanguage, type TextSettings } from '../text/index.ts';
+import { defaultTextSettings, isLanguage, languages, type TextSettings } from '../text/index.ts';
 
 /** Everything that can be set in a study, with its default. Keys are stored; do not rename them. */
 export const defaultSettings = {
@@ -108,7 +108,7 @@ const checks: Record<SettingKey, (value: SettingValue) => string | null> = {
   'text.language': (value) =>
     typeof value === 'string' && isLanguage(value)
       ? null
-      : 'must be a language code with a word list',
+      : `must be one of ${languages.join(', ')}`,
   'text.passageMinimumWords': whole(1, 1000),
   'text.passageMaximumWords': whole(2, 5000),
   'text.shortTurnWords': whole(0, 20),
@@ -122,7 +122,19 @@ const checks: Record<SettingKey, (value: SettingValue) => string | null> = {
   'text.maximumPassageShare': real(0.01, 1),
 };
 
-/** What is wrong with a setting, or null. */
+/** What is wrong with settings, each and together, or null; what is missing has its default. */
+export function settingsFault(values: SettingValues): SettingFault | null {
+  for (const [key, value] of Object.entries(values)) {
+    const fault = settingFault(key, value);
+    if (fault !== null) return fault;
+  }
+  const { passageMinimumWords: least, passageMaximumWords: most } = settingsOf(values).text;
+  return least < most
+    ? null
+    : { key: 'text.passageMinimumWords', must: `must be below text.passageMaximumWords (${most})` };
+}
+
+/** What is wrong with a setting by itself, or null. */
 export function settingFault(key: string, value: SettingValue): SettingFault | null {
   if (!Object.hasOwn(checks, key)) return { key, must: 'is not a setting' };
   const must = checks[key as SettingKey](value);

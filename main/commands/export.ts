@@ -32,18 +32,19 @@ export async function exportExcerpts(
   if (positionals.length !== 1) throw usageStop('Name one study.', exportUsage);
   if (values.out === undefined) throw usageStop('Say with --out where to write.', exportUsage);
   const format = formats.find((one) => one === values.as);
-  if (format === undefined) throw usageStop('--as takes csv, json, html or docx.', exportUsage);
+  if (format === undefined)
+    throw usageStop('Say with --as what to write: csv, json, html or docx.', exportUsage);
   const standings = readStandings(values.standing ?? 'confirmed,by-hand');
 
   const { desk, file } = await openStudy(positionals[0], terminal, { readOnly: true, call: null });
   try {
     const excerpts = codedExcerpts(desk, new Set(standings));
     const content = await contentOf(format, desk, excerpts, standings, values['no-guard'] !== true);
-    await writeOneFile(resolve(terminal.folder, values.out), content);
+    await writeOneFile(resolve(terminal.folder, values.out), content, [file.path]);
     terminal.err(
       excerpts.length === 0
-        ? `There are no excerpts that are ${standings.join(' or ')} yet; the file holds none. ` +
-            'Read and confirm some, or add --standing suggested to see what waits to be read.\n'
+        ? `There are no excerpts that are ${standings.join(' or ')} yet, so the file holds none; ` +
+            'read and confirm some, or add --standing suggested to see what waits to be read.\n'
         : `${excerpts.length} coded ${excerpts.length === 1 ? 'excerpt' : 'excerpts'} written to ${values.out}\n`,
     );
     return 0;
@@ -78,7 +79,7 @@ function readStandings(list: string): Reportable[] {
     const standing = reportable.find((one) => one === name);
     if (standing === undefined) {
       throw usageStop(
-        `--standing takes confirmed, by-hand, suggested and rejected, not “${word}”.`,
+        `There is no standing “${word}”; --standing takes confirmed, by-hand, suggested and rejected.`,
         exportUsage,
       );
     }

@@ -3,7 +3,7 @@ import type { Desk } from '../desk.ts';
 import { fit, type FitKind } from '../fitting.ts';
 import { sentenceFor, sentenceForFit } from '../sentences/sentences.ts';
 import { wordLists } from '../word-lists.ts';
-import { ProgressLine, Stop, type Terminal } from './terminal.ts';
+import { ProgressLine, Stop, stopIfAsked, type Terminal } from './terminal.ts';
 
 /** Fits with a line of progress; stops the command where it is refused. */
 export async function fitWithProgress(
@@ -12,20 +12,15 @@ export async function fitWithProgress(
   terminal: Terminal,
 ): Promise<FitDone> {
   const line = new ProgressLine(terminal);
-  let lastPercent = -1;
   const made = await fit(desk, kind, wordLists, {
     signal: terminal.signal,
     onProgress: ({ bound }, fraction) => {
-      const percent = Math.floor(fraction * 100);
-      if (!terminal.rewrites && percent < lastPercent + 10) return;
-      lastPercent = percent;
-      line.show(
-        `Fitting: ${percent} %${bound === null ? '' : `, bound evaluated at this sweep ${bound.toFixed(1)}`}`,
-      );
+      const evaluated = bound === null ? '' : `, bound evaluated at this sweep ${bound.toFixed(1)}`;
+      line.show(`Fitting: ${Math.floor(fraction * 100)} %${evaluated}`, fraction);
     },
   });
   line.end();
-  if (terminal.signal.aborted) throw new Stop('Stopped. Nothing was written.');
+  stopIfAsked(terminal);
   if (!made.ok) throw new Stop(isFitRefusal(made) ? sentenceForFit(made) : sentenceFor(made));
   return made.value.done;
 }

@@ -12,9 +12,23 @@ export function readOptions<Options extends OptionConfig>(
   try {
     return parseArgs({ args: [...words], options, allowPositionals: true, strict: true });
   } catch (error) {
-    const { message } = error as Error;
-    // The parser's first sentence names the option; what follows speaks to programmers.
-    throw usageStop(`${message.split(/\. |\n/u)[0].replace(/\.$/u, '')}.`, usage);
+    throw usageStop(sentenceOf(error as NodeJS.ErrnoException), usage);
+  }
+}
+
+/** Node's parser speaks to programmers; only the option that it names is kept. */
+function sentenceOf(error: NodeJS.ErrnoException): string {
+  const named = /'(-[^' ]*)/u.exec(error.message)?.[1];
+  if (named === undefined) throw error;
+  switch (error.code) {
+    case 'ERR_PARSE_ARGS_UNKNOWN_OPTION':
+      return `There is no option ${named} here; check its spelling.`;
+    case 'ERR_PARSE_ARGS_INVALID_OPTION_VALUE':
+      return error.message.includes('does not take')
+        ? `The option ${named} takes no value; leave it away.`
+        : `The option ${named} needs a value; write it after the option.`;
+    default:
+      throw error;
   }
 }
 
@@ -34,5 +48,5 @@ export function wholeNumber(
 }
 
 export function usageStop(sentence: string, usage: string): Stop {
-  return new Stop(`${sentence} Usage: ${usage}`, 2);
+  return new Stop(`${sentence}\nUsage: ${usage}`, 2);
 }

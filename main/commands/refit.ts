@@ -11,7 +11,7 @@ import { readPlan } from './plan-file.ts';
 import { refuse } from './refuse.ts';
 import { Stop, type ExitCode, type Terminal } from './terminal.ts';
 import { sayUnheard } from './theme.ts';
-import { stageFiles } from './write-files.ts';
+import { checkFolder, stageFiles } from './write-files.ts';
 
 export const refitUsage =
   'understory refit study.understory --out DIR [--plan more.json] [--from-scratch] [--themes N] [--no-guard]';
@@ -33,18 +33,19 @@ export async function refit(words: readonly string[], terminal: Terminal): Promi
   if (values.themes !== undefined && !scratch) {
     throw usageStop('--themes goes with --from-scratch: a re-fit keeps the themes.', refitUsage);
   }
+  const limits = { least: 1, most: 200, otherwise: 12 };
+  const themes = wholeNumber(values.themes, 'themes', limits, refitUsage);
   const plan = values.plan === undefined ? emptyPlan : await readPlan(values.plan, terminal.folder);
+  const out = resolve(terminal.folder, values.out);
+  await checkFolder(out);
   const { desk, store, file } = await openStudy(positionals[0], terminal, {
     readOnly: false,
     call: ['refit', plan, scratch, values.themes ?? null],
   });
   try {
-    if (values.themes !== undefined) {
-      const limits = { least: 1, most: 200, otherwise: 12 };
-      const themes = wholeNumber(values.themes, 'themes', limits, refitUsage);
-      refuse(applySettings(desk, { themes }));
-    }
-    refuse(applyPlan(desk, plan));
+    const asked = values.themes === undefined ? {} : { themes };
+    refuse(applySettings(desk, { ...plan.settings, ...asked }));
+    refuse(applyPlan(desk, { ...plan, settings: {} }));
     const done = await fitWithProgress(desk, scratch ? 'from scratch' : 're-fit', terminal);
     sayUnheard(desk, done.unheardSeeds, terminal);
     const outputs = outputFiles(desk, {
@@ -53,7 +54,11 @@ export async function refit(words: readonly string[], terminal: Terminal): Promi
       skipped: [],
       unmatched: [],
     });
-    const staged = await stageFiles(resolve(terminal.folder, values.out), outputs);
+    const keep = [
+      file.path,
+      ...(values.plan === undefined ? [] : [resolve(terminal.folder, values.plan)]),
+    ];
+    const staged = await stageFiles(out, outputs, keep);
     try {
       const written = store.flush(file);
       if (!written.ok) throw new Stop(sentenceFor(written));

@@ -19,13 +19,18 @@ export class ProgressLine {
   readonly #terminal: Terminal;
   #last = '';
   #shown = 0;
+  #lastPercent = -100;
 
   constructor(terminal: Terminal) {
     this.#terminal = terminal;
   }
 
-  show(text: string): void {
+  /** `fraction` of the step, 0 to 1. Where lines cannot be written over, one every 10 %. */
+  show(text: string, fraction: number): void {
     if (text === this.#last) return;
+    const percent = Math.floor(fraction * 100);
+    if (!this.#terminal.rewrites && percent < this.#lastPercent + 10) return;
+    this.#lastPercent = percent;
     this.#last = text;
     if (this.#terminal.rewrites) {
       this.#terminal.err(`\r${text.padEnd(this.#shown)}`);
@@ -40,7 +45,13 @@ export class ProgressLine {
     if (this.#shown > 0) this.#terminal.err('\n');
     this.#shown = 0;
     this.#last = '';
+    this.#lastPercent = -100;
   }
+}
+
+/** Ends the command where a person has asked for it. */
+export function stopIfAsked({ signal }: Terminal): void {
+  if (signal.aborted) throw new Stop('Stopped: nothing was written.');
 }
 
 /** A refusal that ends a command: one sentence and its exit code. */

@@ -1,13 +1,16 @@
 import { existsSync } from 'node:fs';
-import { readFile } from 'node:fs/promises';
-import { basename, resolve } from 'node:path';
+import { readFile, rm } from 'node:fs/promises';
+import { basename, dirname, resolve } from 'node:path';
+import { compareCodeUnits } from '../../engine/numbers/index.ts';
 import { applyPlan, applySettings } from '../decisions.ts';
 import { Desk } from '../desk.ts';
 import { attributeEdits, readAttributeTable } from '../gather/attributes.ts';
 import { findFiles, type FoundFile } from '../gather/find-files.ts';
-import { gather, type SkippedFile } from '../gather/gather.ts';
+import { gather, labelsNotFound, type SkippedFile } from '../gather/gather.ts';
+import { isInside } from '../is-inside.ts';
 import { derivedIds, hashOf } from '../ids.ts';
 import { emptyPlan } from '../plan.ts';
+import { decode } from '../formats/index.ts';
 import { createStudyFile } from '../project/index.ts';
 import { sentenceFor, sentenceForSkipped, type FileRefusal } from '../sentences/sentences.ts';
 import { BufferedStore } from '../store.ts';
@@ -16,8 +19,8 @@ import { fitWithProgress } from './fitting.ts';
 import { readOptions, usageStop, wholeNumber } from './options.ts';
 import { outputFiles } from './outputs.ts';
 import { readPlan } from './plan-file.ts';
-import { ProgressLine, Stop, type ExitCode, type Terminal } from './terminal.ts';
-import { stageFiles } from './write-files.ts';
+import { ProgressLine, Stop, stopIfAsked, type ExitCode, type Terminal } from './terminal.ts';
+import { checkFolder, stageFiles } from './write-files.ts';
 
 export const themeUsage =
   'understory theme FILES OR FOLDERS… --out DIR [--themes 12] [--seed 1] [--plan plan.json] ' +
@@ -55,10 +58,15 @@ export async function theme(words: readonly string[], terminal: Terminal): Promi
   const plan = values.plan === undefined ? emptyPlan : await readPlan(values.plan, terminal.folder);
   const interviewers = [...(values.interviewer ?? []), ...plan.interviewers];
 
-  if (values.save !== undefined && existsSync(resolve(terminal.folder, values.save))) {
-    throw new Stop(sentenceFor({ ok: false, code: 'already there', path: values.save }));
-  }
-  const { found, missed } = await findFiles(positionals, terminal.folder);
+  const out = resolve(terminal.folder, values.out);
+  await checkFolder(out);
+  const saveTo = values.save === undefined ? null : resolve(terminal.folder, values.save);
+  if (saveTo !== null) await checkSave(saveTo, out);
+  const given = [values.plan, values.save].flatMap((path) =>
+    path === undefined ? [] : [resolve(terminal.folder, path)],
+  );
+  // What an earlier run left in the folder to write to is no input of this one.
+  const { found, missed } = await findFiles(positionals, terminal.folder, [out, ...given]);
   const skipped: SkippedFile[] = missed.map(({ name, code }) => ({
     file: name,
     refusal: { code },
@@ -67,21 +75,28 @@ export async function theme(words: readonly string[], terminal: Terminal): Promi
   const files = found.filter((file) => !tables.used.has(file));
 
   const inputs = await Promise.all(files.map(async (file) => [file.name, await hashOfFile(file)]));
+  inputs.sort(([a, hashA], [b, hashB]) => compareCodeUnits(a, b) || compareCodeUnits(hashA, hashB));
   const store = new BufferedStore(null);
   const desk = new Desk(store, {
     by: 'command line',
     now: terminal.now,
     mintId: derivedIds(['theme', inputs, plan, interviewers, themes, seed]),
   });
-  const name = values.save === undefined ? 'Study' : studyName(values.save);
+  const name = saveTo === null ? 'Study' : studyName(saveTo);
   refuse(
     desk.make([{ edit: { kind: 'studyStarted', study: desk.context.mintId('study'), name } }]),
   );
-  refuse(applySettings(desk, { themes, seed }));
+  // What was asked for on the command line goes before what the plan says.
+  const asked = {
+    ...(values.themes === undefined ? {} : { themes }),
+    ...(values.seed === undefined ? {} : { seed }),
+  };
+  refuse(applySettings(desk, { ...plan.settings, ...asked }));
 
   const line = new ProgressLine(terminal);
   const gathered = await gather(desk, files, interviewers, (done) => {
-    line.show(`Reading: ${done + 1} of ${files.length} files`);
+    stopIfAsked(terminal);
+    line.show(`Reading: ${done + 1} of ${files.length} files`, (done + 1) / files.length);
   });
   line.end();
   if (!gathered.ok) throw new Stop(sentenceFor(gathered));
@@ -91,11 +106,16 @@ export async function theme(words: readonly string[], terminal: Terminal): Promi
   }
   if (gathered.value.transcripts.length === 0) {
     throw new Stop(
-      'No transcript could be read, so nothing was written. Give files in .txt, .md, .docx, .vtt or .srt.',
+      'No transcript could be read, so nothing was written; give files in .txt, .md, .docx, .vtt or .srt.',
+    );
+  }
+  for (const label of labelsNotFound(desk.study, interviewers)) {
+    terminal.err(
+      `No transcript has an interviewer “${label}”; check the label, or see fit.json for the speakers found.\n`,
     );
   }
   const unmatched = describeParticipants(desk, tables.texts, terminal);
-  refuse(applyPlan(desk, { ...plan, interviewers: [] }));
+  refuse(applyPlan(desk, { ...plan, settings: {}, interviewers: [] }));
 
   const done = await fitWithProgress(desk, 'from scratch', terminal);
   sayUnheard(desk, done.unheardSeeds, terminal);
@@ -105,10 +125,16 @@ export async function theme(words: readonly string[], terminal: Terminal): Promi
     skipped,
     unmatched,
   });
-  const staged = await stageFiles(resolve(terminal.folder, values.out), outputs);
+  const keep = [...found.map(({ path }) => path), ...given];
+  const staged = await stageFiles(out, outputs, keep);
   try {
-    if (values.save !== undefined) await save(desk, store, values.save, terminal);
-    await staged.commit();
+    if (saveTo !== null) await save(desk, store, saveTo);
+    try {
+      await staged.commit();
+    } catch (error) {
+      if (saveTo !== null) await rm(saveTo, { force: true });
+      throw error;
+    }
   } finally {
     await staged.discard();
   }
@@ -134,19 +160,24 @@ export function sayUnheard(
   }
 }
 
-async function save(
-  desk: Desk,
-  store: BufferedStore,
-  path: string,
-  terminal: Terminal,
-): Promise<void> {
-  const created = await createStudyFile(resolve(terminal.folder, path), {
-    studyId: desk.study.id,
-  });
+async function save(desk: Desk, store: BufferedStore, path: string): Promise<void> {
+  const created = await createStudyFile(path, { studyId: desk.study.id });
   if (!created.ok) throw new Stop(sentenceFor(created));
   const written = store.flush(created.value);
   created.value.close();
-  if (!written.ok) throw new Stop(sentenceFor(written));
+  if (written.ok) return;
+  await rm(path, { force: true });
+  throw new Stop(sentenceFor(written));
+}
+
+/** Stops before any work where a new study cannot come to stand at `path`. */
+async function checkSave(path: string, out: string): Promise<void> {
+  if (existsSync(path)) throw new Stop(sentenceFor({ ok: false, code: 'already there', path }));
+  const folder = dirname(path);
+  if (existsSync(folder)) return await checkFolder(folder);
+  if (!isInside(folder, out)) {
+    throw new Stop(`There is no folder “${folder}” to save the study in; make it first.`);
+  }
 }
 
 function studyName(path: string): string {
@@ -165,33 +196,38 @@ async function attributeTables(
   const texts = new Map<string, string>();
   const used = new Set<FoundFile>();
   for (const file of found) {
-    if (!/\.csv$/iu.test(file.name)) continue;
-    try {
-      const text = await readFile(file.path, 'utf8');
-      if (readAttributeTable(text) === null) continue;
-      texts.set(file.name, text);
-      used.add(file);
-    } catch {
-      // It stays among the files and is named there with the reason.
-    }
+    if (!/\.(csv|tsv)$/iu.test(file.name)) continue;
+    // What is no such table stays among the files and is named there with the reason.
+    const text = await tableText(file.path);
+    if (text === null || readAttributeTable(text) === null) continue;
+    texts.set(file.name, text);
+    used.add(file);
   }
   if (named !== undefined) {
     const path = resolve(terminal.folder, named);
-    let text: string;
-    try {
-      text = await readFile(path, 'utf8');
-    } catch {
-      throw new Stop(`The table “${named}” could not be read. Check its name and place.`, 2);
+    const text = await tableText(path);
+    if (text === null) {
+      throw new Stop(`The table “${named}” could not be read; check its name and place.`, 2);
     }
     if (readAttributeTable(text) === null) {
       throw new Stop(
-        `“${named}” is no table of attributes. Head its first column “participant” and each other column with an attribute.`,
+        `“${named}” is no table of attributes; head its first column “participant” and each other column with an attribute.`,
         2,
       );
     }
     if (![...used].some((file) => file.path === path)) texts.set(basename(named), text);
   }
   return { texts, used };
+}
+
+/** Null where it cannot be read or is no text. */
+async function tableText(path: string): Promise<string | null> {
+  try {
+    const decoded = decode(await readFile(path));
+    return decoded.ok ? decoded.text : null;
+  } catch {
+    return null;
+  }
 }
 
 function describeParticipants(

@@ -12,9 +12,18 @@ export interface AttributeTable {
  * Null where the text is no such table.
  */
 export function readAttributeTable(text: string): AttributeTable | null {
+  // Spreadsheets write semicolons where a comma is the decimal sign.
+  for (const delimiter of [',', ';', '\t']) {
+    const table = readWith(delimiter, text);
+    if (table !== null) return table;
+  }
+  return null;
+}
+
+function readWith(delimiter: string, text: string): AttributeTable | null {
   let rows: string[][];
   try {
-    rows = parse(text, { bom: true, relax_column_count: true, skip_empty_lines: true });
+    rows = parse(text, { bom: true, delimiter, relax_column_count: true, skip_empty_lines: true });
   } catch {
     return null;
   }

@@ -1,5 +1,6 @@
 import { readFile } from 'node:fs/promises';
-import type { BlobRef, Edit, Speaker, Transcript } from '../../engine/study/index.ts';
+import type { BlobRef, Edit, Speaker, Study, Transcript } from '../../engine/study/index.ts';
+import { compareCodeUnits } from '../../engine/numbers/index.ts';
 import { guessInterviewers } from '../../engine/text/index.ts';
 import type { Desk, DeskResult, Draft } from '../desk.ts';
 import { readTranscript, type ReadFile } from '../formats/index.ts';
@@ -19,22 +20,31 @@ export interface Gathered {
   readonly skipped: readonly SkippedFile[];
 }
 
+/** A file on the drive, or one whose bytes were handed over. */
+export type SourceFile = FoundFile | HandedFile;
+
+export interface HandedFile {
+  readonly name: string;
+  readonly bytes: Uint8Array;
+}
+
 interface Loaded {
-  readonly file: FoundFile;
+  readonly file: { readonly name: string };
   readonly hash: string;
   readonly read: ReadFile;
 }
 
 /**
  * Reads files and gathers them as transcripts, one group of edits each, so that one transcript can
- * be taken back. What cannot be read is skipped and named. `interviewers` are labels; where none of
- * them occurs in a transcript its interviewer is guessed.
+ * be taken back; or all under the `group` given. What cannot be read is skipped and named.
+ * `interviewers` are labels; where none of them occurs in a transcript its interviewer is guessed.
  */
 export async function gather(
   desk: Desk,
-  files: readonly FoundFile[],
+  files: readonly SourceFile[],
   interviewers: readonly string[],
   onProgress: (done: number, file: string) => void = () => {},
+  oneGroup?: string,
 ): Promise<DeskResult<Gathered>> {
   const skipped: SkippedFile[] = [];
   const known = new Set([...desk.study.transcripts.values()].map(({ source }) => source.hash));
@@ -51,6 +61,10 @@ export async function gather(
     }
   }
 
+  // Files of equal names in different folders: their order may not hang on where those lie.
+  loaded.sort(
+    (a, b) => compareCodeUnits(a.file.name, b.file.name) || compareCodeUnits(a.hash, b.hash),
+  );
   const taken = new Set([...desk.study.transcripts.values()].map(({ name }) => name));
   const names = transcriptNames(
     loaded.map(({ file, hash }) => ({ name: file.name, hash })),
@@ -58,7 +72,7 @@ export async function gather(
   );
   const gathered: string[] = [];
   for (const [index, { file, hash, read }] of loaded.entries()) {
-    const group = desk.context.mintId('group');
+    const group = oneGroup ?? desk.context.mintId('group');
     const made = desk.make(drafts(desk, names[index], file, hash, read, interviewers), { group });
     if (!made.ok) return made;
     gathered.push(names[index]);
@@ -67,11 +81,11 @@ export async function gather(
 }
 
 async function load(
-  file: FoundFile,
+  file: SourceFile,
 ): Promise<Loaded | { readonly refusal: { readonly code: string } | MissedFile }> {
   let bytes: Uint8Array;
   try {
-    bytes = await readFile(file.path);
+    bytes = 'bytes' in file ? file.bytes : await readFile(file.path);
   } catch (error) {
     return { refusal: { code: codeOf(error) } };
   }
@@ -82,7 +96,7 @@ async function load(
 function drafts(
   desk: Desk,
   name: string,
-  file: FoundFile,
+  file: { readonly name: string },
   hash: string,
   read: ReadFile,
   interviewers: readonly string[],
@@ -151,6 +165,17 @@ export function interviewersAmong(
   const wanted = new Set(interviewers.map(labelKey));
   const found = labels.filter((label) => label !== null && wanted.has(labelKey(label)));
   return found.length === 0 ? null : new Set(found as string[]);
+}
+
+/** Those of the labels that no interviewer of the study has. */
+export function labelsNotFound(study: Study, labels: readonly string[]): string[] {
+  const found = new Set<string>();
+  for (const { speakers } of study.transcripts.values()) {
+    for (const { label, role } of speakers) {
+      if (label !== null && role === 'interviewer') found.add(labelKey(label));
+    }
+  }
+  return [...new Set(labels)].filter((label) => !found.has(labelKey(label)));
 }
 
 function labelKey(label: string): string {

@@ -9,9 +9,10 @@ import {
   type Transcript,
 } from '../../engine/study/index.ts';
 import { passagesOf, type Passage } from '../../engine/text/index.ts';
-import { settingsOf, strengthOf, suggestions, type Fitted } from '../../engine/themes/index.ts';
+import { settingsOf, suggestions, type Fitted } from '../../engine/themes/index.ts';
 import { transcriptsInOrder, type Desk } from '../desk.ts';
 import { hashOf } from '../ids.ts';
+import { printedProportions, toSixDecimals } from './proportions.ts';
 import { themeName } from './theme-name.ts';
 import { themeShare } from './theme-table.ts';
 
@@ -72,7 +73,7 @@ export function codedExcerpts(desk: Desk, standings: ReadonlySet<Reportable>): C
     for (const passage of passages) {
       for (const offer of offered) {
         if (offer.passage === passage.index) {
-          excerpts.push(ofSuggestion(context, passage, offer.theme, offer.strength));
+          excerpts.push(ofSuggestion(context, passage, offer.theme));
         }
       }
     }
@@ -116,19 +117,14 @@ function ofCoding(context: Context, coding: Coding): CodedExcerpt {
   };
 }
 
-function ofSuggestion(
-  context: Context,
-  passage: PlacedPassage,
-  themeId: string,
-  strength: number,
-): CodedExcerpt {
+function ofSuggestion(context: Context, passage: PlacedPassage, themeId: string): CodedExcerpt {
   const span = { start: passage.start, end: passage.end };
   const theme = context.desk.study.themes.get(themeId) as Theme;
   return {
     ...placeOf(context, span, passage),
     ...themeOf(context, span, theme),
     standing: 'suggested',
-    strength,
+    strength: strengthIn(context, passage, theme),
     strengthAtDecision: null,
     seenSuggestion: null,
     drawnBy: '',
@@ -144,7 +140,7 @@ function placeOf({ desk, transcript }: Context, span: Span, passage: PlacedPassa
   const turn = transcript.turns.find((one) => one.start < span.end && span.start < one.end);
   const label = passage?.speaker ?? turn?.speaker ?? null;
   const id = transcript.speakers.find((speaker) => speaker.label === label)?.participant;
-  const participant = id == null ? undefined : desk.study.participants.get(id);
+  const participant = id ? desk.study.participants.get(id) : undefined;
   const question = passage?.questionBefore ?? null;
   return {
     transcript: transcript.name,
@@ -184,12 +180,11 @@ function strengthIn(
   theme: Theme,
 ): number | null {
   if (fitted === null || passage === null || passage.index === null) return null;
-  let strength: number | null = null;
-  for (const [row, id] of fitted.fit.themes.entries()) {
-    if (resolveTheme(desk.study, id)?.id !== theme.id) continue;
-    strength = (strength ?? 0) + strengthOf(fitted, passage.index, row);
-  }
-  return strength;
+  const proportions = printedProportions(fitted, passage.index);
+  const own = proportions.filter(
+    (_, row) => resolveTheme(desk.study, fitted.fit.themes[row])?.id === theme.id,
+  );
+  return own.length === 0 ? null : toSixDecimals(own.reduce((sum, value) => sum + value, 0));
 }
 
 function passagesIn(desk: Desk, transcript: Transcript, fitted: Fitted | null): PlacedPassage[] {

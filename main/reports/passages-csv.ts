@@ -1,7 +1,8 @@
-import { strengthOf, type Fitted } from '../../engine/themes/index.ts';
+import type { Fitted } from '../../engine/themes/index.ts';
 import type { Desk } from '../desk.ts';
 import { csv, type CsvOptions } from './csv.ts';
 import { decimals } from './format.ts';
+import { printedProportions } from './proportions.ts';
 
 /**
  * passages.csv: every passage of the fit with its proportions, a column a theme headed by its id.
@@ -32,7 +33,7 @@ export function passagesCsv(desk: Desk, fitted: Fitted, options: CsvOptions): st
     passage.words,
     passage.countedWords,
     passage.countedWords === 0 ? '' : decimals(fitted.unexplained[index]),
-    ...fitted.fit.themes.map((_, row) => decimals(strengthOf(fitted, index, row))),
+    ...printedProportions(fitted, index).map(decimals),
   ]);
   return csv([head, ...rows], options);
 }

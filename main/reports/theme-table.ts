@@ -11,6 +11,7 @@ import {
 import type { Desk } from '../desk.ts';
 import { csv, type CsvOptions } from './csv.ts';
 import { decimals, yesNo } from './format.ts';
+import { toSixDecimals } from './proportions.ts';
 import { themeName } from './theme-name.ts';
 
 /** How many words a theme is shown with. */
@@ -54,11 +55,16 @@ export function themeRows(desk: Desk): ThemeRow[] {
     .sort((a, b) => (b.share ?? -1) - (a.share ?? -1) || compareCodeUnits(a.id, b.id));
 }
 
-/** The share of a theme and of what was merged into it since the fit; null where it has no row. */
+/**
+ * The share of a theme and of what was merged into it since the fit, to six decimals; null where it
+ * has no row.
+ */
 export function themeShare(study: Study, fitted: Fitted | null, theme: string): number | null {
   if (fitted === null) return null;
   const rows = rowsOf(study, fitted, theme);
-  return rows.length === 0 ? null : rows.reduce((sum, row) => sum + shareOf(fitted, row), 0);
+  return rows.length === 0
+    ? null
+    : toSixDecimals(rows.reduce((sum, row) => sum + shareOf(fitted, row), 0));
 }
 
 function rowsOf(study: Study, fitted: Fitted | null, theme: string): number[] {

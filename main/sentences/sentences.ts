@@ -23,29 +23,29 @@ export type FileRefusal =
 export function sentenceForSkipped(refusal: FileRefusal): string {
   switch (refusal.code) {
     case 'empty file':
-      return 'The file is empty. Export the transcript again.';
+      return 'The file is empty; export the transcript again.';
     case 'not text':
-      return 'The file holds no readable text. Save the transcript as .txt, .docx, .vtt or .srt.';
+      return 'The file holds no readable text; save the transcript as .txt, .docx, .vtt or .srt.';
     case 'unknown encoding':
-      return 'The letters in the file are stored in a way that is not recognised. Save it again as UTF-8 text.';
+      return 'The letters in the file are stored in a way that is not recognised; save it again as UTF-8 text.';
     case 'unknown format':
-      return `Files of this kind (${refusal.format}) are not read. Save the transcript as .txt, .docx, .vtt or .srt.`;
+      return `Files of this kind (${refusal.format}) are not read; save the transcript as .txt, .docx, .vtt or .srt.`;
     case 'broken file':
-      return `The file says that it is ${formatNames[refusal.format]} and is damaged. Open it in the program that made it and save it again.`;
+      return `The file says that it is ${formatNames[refusal.format]} and is damaged; open it in the program that made it and save it again.`;
     case 'locked file':
-      return 'The file is locked with a password. Save it without one, then try again.';
+      return 'The file is locked with a password; save it without one, then try again.';
     case 'too large':
-      return `The file would unpack to about ${refusal.megabytes} MB, more than the ${refusal.limit} MB that can be read. Divide it.`;
+      return `The file would unpack to about ${refusal.megabytes} MB, more than the ${refusal.limit} MB that can be read; divide it.`;
     case 'no speech':
-      return 'There is no speech in the file, only headings. Check that it is the whole transcript.';
+      return 'There is no speech in the file, only headings; check that it is the whole transcript.';
     case 'duplicate':
-      return 'The same transcript is in the study already. One copy was kept.';
+      return 'The same transcript is in the study already, so one copy was kept; remove this one.';
     case 'not found':
-      return 'There is no such file or folder. Check the name.';
+      return 'There is no such file or folder; check the name.';
     case 'not allowed':
-      return 'This account is not allowed to read it. Change its permissions.';
+      return 'This account is not allowed to read it; change its permissions.';
     case 'cannot read':
-      return 'It could not be read. Check that the drive is connected.';
+      return 'It could not be read; check that the drive is connected.';
   }
 }
 
@@ -61,15 +61,15 @@ export function sentenceForFit(
 ): string {
   switch (refusal.code) {
     case 'no words left':
-      return 'No words are left to count: every word is on a list, too rare or too common. Add transcripts, or loosen the limits on words.';
+      return 'No words are left to count, since every word is on a list, too rare or too common; add transcripts, or loosen the limits on words.';
     case 'more themes than passages':
-      return `There are ${refusal.themes} themes and only ${refusal.passages} passages with counted words. Ask for fewer themes, or add transcripts.`;
+      return `There are ${refusal.themes} themes and only ${refusal.passages} passages with counted words; ask for fewer themes, or add transcripts.`;
     case 'no themes':
-      return 'There is no theme to fit. Ask for at least one.';
+      return 'There is no theme to fit; ask for at least one.';
     case 'no fit to start from':
-      return 'There is no fit to start from yet. Fit the study from scratch first.';
+      return 'There is no fit to start from yet; fit the study from scratch first.';
     case 'changed while fitting':
-      return 'The transcripts or the set of themes changed while the fit ran, so its result was let go. Fit again.';
+      return 'The transcripts or the set of themes changed while the fit ran, so its result was let go; fit again.';
   }
 }
 
@@ -78,17 +78,17 @@ export function sentenceForPlan(
 ): string {
   switch (refusal.code) {
     case 'plan is not JSON':
-      return 'The plan is not valid JSON. Check its commas, quotes and brackets.';
+      return 'The plan is not valid JSON; check its commas, quotes and brackets.';
     case 'unknown plan key':
-      return `The plan has a key that is not known: ${refusal.place}. Remove it or correct its spelling.`;
+      return `The plan has a key that is not known: ${refusal.place}; remove it or correct its spelling.`;
     case 'plan value':
-      return `The plan has a value that does not fit at ${refusal.place === '' ? 'its top' : refusal.place}: ${refusal.problem}. Correct it.`;
+      return `The plan has a value that does not fit at ${refusal.place === '' ? 'its top' : refusal.place}: ${refusal.problem}; correct it.`;
     case 'plan names no theme':
-      return `The plan speaks of a theme that is not in the study: “${refusal.subject}”. Use a theme’s name or id from themes.csv.`;
+      return `The plan speaks of a theme that is not in the study: “${refusal.subject}”; use a theme’s name or id from themes.csv.`;
     case 'plan names no transcript':
-      return `The plan speaks of a transcript that is not in the study: “${refusal.subject}”. Use a name from transcripts.`;
+      return `The plan speaks of a transcript that is not in the study: “${refusal.subject}”; use a name from transcripts.`;
     case 'plan names no speaker':
-      return `No transcript has a speaker “${refusal.subject}”. Use the label as it stands in the transcript.`;
+      return `No transcript has a speaker “${refusal.subject}”; use the label as it stands in the transcript.`;
     case 'setting':
       return sentenceForSetting({ key: refusal.subject, must: refusal.must });
   }
@@ -96,6 +96,6 @@ export function sentenceForPlan(
 
 export function sentenceForSetting({ key, must }: SettingFault): string {
   return must === 'is not a setting'
-    ? `There is no setting “${key}”. Check its spelling in README.md.`
-    : `The setting “${key}” ${must}. Correct it.`;
+    ? `There is no setting “${key}”; check its spelling in README.md.`
+    : `The setting “${key}” ${must}; correct it.`;
 }

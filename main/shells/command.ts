@@ -1,7 +1,8 @@
 import { exportExcerpts, exportUsage } from '../commands/export.ts';
+import { endingOf } from '../commands/fault.ts';
 import { moved, movedUsage } from '../commands/moved.ts';
 import { refit, refitUsage } from '../commands/refit.ts';
-import { Stop, type ExitCode, type Terminal } from '../commands/terminal.ts';
+import type { ExitCode, Terminal } from '../commands/terminal.ts';
 import { theme, themeUsage } from '../commands/theme.ts';
 
 type Command = (words: readonly string[], terminal: Terminal) => Promise<ExitCode>;
@@ -33,6 +34,8 @@ export async function run(words: readonly string[], folder: string): Promise<Exi
   const stop = new AbortController();
   const onInterrupt = (): void => stop.abort();
   process.once('SIGINT', onInterrupt);
+  // A reader such as `head` may go before everything is written; that is no error of ours.
+  for (const stream of [process.stdout, process.stderr]) stream.on('error', ignoreClosedPipe);
   try {
     return await runIn(words, {
       folder,
@@ -55,16 +58,21 @@ export async function runIn(words: readonly string[], terminal: Terminal): Promi
     return name === undefined ? 2 : 0;
   }
   if (!Object.hasOwn(commands, name)) {
-    terminal.err(`There is no command “${name}”. ${Object.keys(commands).join(', ')} are known.\n`);
+    const known = Object.keys(commands).join(', ');
+    terminal.err(`There is no command “${name}”; choose one of ${known}.\n`);
     return 2;
   }
   try {
     return await commands[name](rest, terminal);
   } catch (error) {
-    if (!(error instanceof Stop)) throw error;
-    terminal.err(`${error.message}\n`);
-    return error.exitCode;
+    const { sentence, exitCode } = endingOf(error);
+    terminal.err(`${sentence}\n`);
+    return exitCode;
   }
+}
+
+function ignoreClosedPipe(error: NodeJS.ErrnoException): void {
+  if (error.code !== 'EPIPE') throw error;
 }
 
 /** SOURCE_DATE_EPOCH (reproducible-builds.org) fixes the time for runs that must repeat exactly. */

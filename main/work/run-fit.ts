@@ -48,5 +48,10 @@ export function runFit(
       end();
       reject(error);
     });
+    // After a result this changes nothing: the promise is settled.
+    worker.on('exit', (code) => {
+      end();
+      reject(new Error(`runFit: the worker ended with code ${code} before it had a result`));
+    });
   });
 }
