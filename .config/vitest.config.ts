@@ -1,6 +1,8 @@
 import { defineConfig } from 'vitest/config';
+import { assemblyscript } from './assemblyscript.ts';
 
 export default defineConfig({
+  plugins: [assemblyscript()],
   test: {
     include: ['test/**/*.test.ts'],
     testTimeout: 60_000,

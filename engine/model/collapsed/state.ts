@@ -1,4 +1,5 @@
 import type { DensePriors } from '../dense-priors.ts';
+import { carve } from '../kernel/carve.ts';
 import type { Kernel } from '../kernel/kernel.ts';
 import type { SweepState } from '../kernel/state.ts';
 import type { Counts } from '../types.ts';
@@ -13,55 +14,31 @@ export function createState(kernel: Kernel, counts: Counts, priors: DensePriors)
   const stride = (themes + 3) & ~3;
   const entries = counts.indices.length;
 
-  const lengths = [
-    passages + 1,
-    entries,
-    entries,
-    entries * stride,
-    passages * stride,
-    words * stride,
-    stride,
-    passages * stride,
-    words * stride,
-    stride,
-    stride,
-    entries,
-    stride,
-  ];
-  const bytes = lengths.reduce((total, length) => total + aligned(4 * length), 0);
-  const { buffer, start } = kernel.allocate(bytes);
-  let next = start;
-  const take = (length: number): Float32Array => {
-    const array = new Float32Array(buffer, next, length);
-    next += aligned(4 * length);
-    return array;
-  };
-  const takeIntegers = (values: Int32Array): Int32Array => {
-    const array = new Int32Array(buffer, next, values.length);
-    next += aligned(4 * values.length);
-    array.set(values);
-    return array;
-  };
-
+  const { integers, singles } = carve(
+    kernel,
+    4 * (passages + 1 + 3 * entries + stride * (entries + 2 * passages + 2 * words + 4)),
+  );
   const state: SweepState = {
     passages,
     words,
     themes,
     stride,
-    offsets: takeIntegers(counts.offsets),
-    indices: takeIntegers(counts.indices),
-    counts: take(entries),
-    responsibilities: take(entries * stride),
-    passageThemes: take(passages * stride),
-    wordThemes: take(words * stride),
-    themeTotals: take(stride),
-    alpha: take(passages * stride),
-    eta: take(words * stride),
-    etaTotals: take(stride),
-    moving: take(stride),
-    normalisers: take(entries),
-    scratch: take(stride),
+    offsets: integers(passages + 1),
+    indices: integers(entries),
+    counts: singles(entries),
+    responsibilities: singles(entries * stride),
+    passageThemes: singles(passages * stride),
+    wordThemes: singles(words * stride),
+    themeTotals: singles(stride),
+    alpha: singles(passages * stride),
+    eta: singles(words * stride),
+    etaTotals: singles(stride),
+    moving: singles(stride),
+    normalisers: singles(entries),
+    scratch: singles(stride),
   };
+  state.offsets.set(counts.offsets);
+  state.indices.set(counts.indices);
   state.counts.set(counts.counts);
   layRows(state.alpha, priors.alpha, passages, themes, stride);
   setPriors(state, priors);
@@ -125,9 +102,4 @@ function layRows(
   for (let row = 0; row < rows; row++) {
     for (let k = 0; k < width; k++) target[row * stride + k] = source[row * width + k];
   }
-}
-
-/** Sixteen bytes are one SIMD load. */
-function aligned(bytes: number): number {
-  return (bytes + 15) & ~15;
 }

@@ -1,5 +1,6 @@
 import type { Kernel } from './kernel.ts';
-import { plainKernel } from './sweep.ts';
+import { plainKernel } from './plain.ts';
+import { webAssemblyKernel } from './webassembly.ts';
 
-/** The kernel that fits are made with. */
-export const defaultKernel: Kernel = plainKernel;
+/** The kernel that fits are made with: SIMD where there is any; the bits are the same. */
+export const defaultKernel: Kernel = webAssemblyKernel() ?? plainKernel;

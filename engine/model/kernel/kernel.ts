@@ -1,10 +1,11 @@
+import type { MeanFieldState } from './expectation.ts';
 import type { SweepState } from './state.ts';
 
 /** The exponents that can be had from square roots alone, whose bits are the same everywhere. */
 export type Exponent = 0.5 | 0.75 | 0.875 | 1;
 
 /**
- * The three hot loops of collapsed inference over one state. There are two of them with equal bits:
+ * The hot loops of both fits, each over its state, which `allocate` has made room for. There are two of them with equal bits:
  * plain TypeScript, which says what is computed, and WebAssembly, which is fast.
  */
 export interface Kernel {
@@ -19,4 +20,11 @@ export interface Kernel {
   readonly assign: (state: SweepState) => void;
   /** Adds the expected counts up afresh from the responsibilities; pinned lanes keep their phi. */
   readonly recount: (state: SweepState) => void;
+  /** The E-step of mean-field inference; returns the steps made over all passages. */
+  readonly expectation: (
+    state: MeanFieldState,
+    limit: number,
+    tolerance: number,
+    flat: boolean,
+  ) => number;
 }

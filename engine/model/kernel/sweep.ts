@@ -1,4 +1,4 @@
-import type { Exponent, Kernel } from './kernel.ts';
+import type { Exponent } from './kernel.ts';
 import type { SweepState } from './state.ts';
 
 const { fround, sqrt, abs } = Math;
@@ -109,10 +109,8 @@ export function recount(state: SweepState): void {
   const { stride, offsets, indices, counts, responsibilities, moving } = state;
   const { passageThemes, wordThemes, themeTotals } = state;
   passageThemes.fill(0);
-  for (let w = 0; w < state.words; w++) {
-    for (let k = 0; k < stride; k++) if (moving[k] === 1) wordThemes[w * stride + k] = 0;
-  }
-  for (let k = 0; k < stride; k++) if (moving[k] === 1) themeTotals[k] = 0;
+  for (let i = 0; i < wordThemes.length; i++) wordThemes[i] *= 1 - moving[i % stride];
+  for (let k = 0; k < stride; k++) themeTotals[k] *= 1 - moving[k];
   for (let d = 0; d < state.passages; d++) {
     const passage = d * stride;
     for (let j = offsets[d]; j < offsets[d + 1]; j++) {
@@ -131,11 +129,3 @@ export function recount(state: SweepState): void {
     for (let k = 0; k < stride; k++) themeTotals[k] += fround(wordThemes[word + k] * moving[k]);
   }
 }
-
-/** The reference: readable, and used where WebAssembly is missing. */
-export const plainKernel: Kernel = {
-  allocate: (bytes) => ({ buffer: new ArrayBuffer(bytes), start: 0 }),
-  sweep,
-  assign,
-  recount,
-};

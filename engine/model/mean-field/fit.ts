@@ -1,7 +1,10 @@
+import { carve } from '../kernel/carve.ts';
 import { boundOf, boundTerms, expectedDistributions } from '../bound.ts';
 import { checkCounts } from '../check-counts.ts';
 import { densePriors, type DensePriors } from '../dense-priors.ts';
-import { expectation, type MeanFieldState } from '../kernel/expectation.ts';
+import type { MeanFieldState } from '../kernel/expectation.ts';
+import { defaultKernel } from '../kernel/index.ts';
+import type { Kernel } from '../kernel/kernel.ts';
 import type { BoundTerms, Counts, Priors } from '../types.ts';
 
 export interface MeanFieldSettings {
@@ -52,6 +55,7 @@ export function fitMeanField(
   priors: Priors,
   lambda: Float64Array,
   settings: MeanFieldSettings,
+  kernel: Kernel = defaultKernel,
 ): MeanFieldFit {
   const caller = 'fitMeanField';
   checkCounts(caller, counts);
@@ -65,14 +69,14 @@ export function fitMeanField(
   const bad = current.findIndex((value, i) => dense.eta[i] > 0 && !(value > 0 && value < Infinity));
   if (bad >= 0) throw new Error(`${caller}: lambda[${bad}] is ${lambda[bad]}; must be above 0`);
 
-  const state = createMeanFieldState(counts, dense);
+  const state = createMeanFieldState(kernel, counts, dense);
   const bounds: number[] = [];
   let innerSteps = 0;
   let terms: BoundTerms = { words: 0, proportions: 0, distributions: 0 };
   for (let step = 0; step <= settings.steps; step++) {
     layWords(state.expected, expectedDistributions(dense, current, words), state);
     const flat = step < Math.max(1, settings.flatSteps);
-    innerSteps += expectation(state, settings.innerLimit, settings.innerTolerance, flat);
+    innerSteps += kernel.expectation(state, settings.innerLimit, settings.innerTolerance, flat);
     terms = boundTerms(counts, dense, gammaOf(state), current);
     bounds.push(boundOf(terms));
     if (step < settings.steps) current = nextLambda(dense, state);
@@ -118,28 +122,36 @@ function nextLambda(priors: DensePriors, state: MeanFieldState): Float64Array {
   return lambda;
 }
 
-function createMeanFieldState(counts: Counts, priors: DensePriors): MeanFieldState {
+function createMeanFieldState(kernel: Kernel, counts: Counts, priors: DensePriors): MeanFieldState {
   const { passages, words } = counts;
   const { themes } = priors;
   const stride = (themes + 1) & ~1;
-  const alpha = new Float64Array(passages * stride);
-  for (let d = 0; d < passages; d++) {
-    alpha.set(priors.alpha.subarray(d * themes, (d + 1) * themes), d * stride);
-  }
-  return {
+  const entries = counts.indices.length;
+  const { integers, doubles } = carve(
+    kernel,
+    4 * (passages + 1 + entries) + 8 * (entries + 2 * (passages + words) * stride + 2 * stride),
+  );
+  const state: MeanFieldState = {
     passages,
     words,
     themes,
     stride,
-    offsets: counts.offsets,
-    indices: counts.indices,
-    counts: Float64Array.from(counts.counts),
-    alpha,
-    gamma: new Float64Array(passages * stride),
-    expected: new Float64Array(words * stride),
-    statistics: new Float64Array(words * stride),
-    scratch: new Float64Array(2 * stride),
+    offsets: integers(passages + 1),
+    indices: integers(entries),
+    counts: doubles(entries),
+    alpha: doubles(passages * stride),
+    gamma: doubles(passages * stride),
+    expected: doubles(words * stride),
+    statistics: doubles(words * stride),
+    scratch: doubles(2 * stride),
   };
+  state.offsets.set(counts.offsets);
+  state.indices.set(counts.indices);
+  state.counts.set(counts.counts);
+  for (let d = 0; d < passages; d++) {
+    state.alpha.set(priors.alpha.subarray(d * themes, (d + 1) * themes), d * stride);
+  }
+  return state;
 }
 
 /** K x V into rows of words. */
