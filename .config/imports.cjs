@@ -22,7 +22,7 @@ const table = {
     'engine/spans',
     'engine/numbers',
   ],
-  main: ['engine'],
+  main: ['engine', 'resources'],
   renderer: ['engine', 'main/api.ts'],
 };
 
@@ -70,7 +70,7 @@ module.exports = {
     tsPreCompilationDeps: true,
     doNotFollow: { path: 'node_modules' },
     exclude: { path: '\\.as\\.ts$' },
-    tsConfig: { fileName: 'main/tsconfig.json' },
+    tsConfig: { fileName: 'tsconfig.base.json' },
     enhancedResolveOptions: { extensions: ['.ts', '.js', '.mjs', '.svelte', '.json'] },
   },
 };

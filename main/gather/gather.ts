@@ -129,12 +129,13 @@ function drafts(
 function castOf(
   desk: Desk,
   transcript: string,
-  { text, turns }: ReadFile,
+  { text, turns, details }: ReadFile,
   interviewers: readonly string[],
   mintId: MintId,
 ): { readonly speakers: Speaker[]; readonly added: Edit[] } {
   const labels = [...new Set(turns.map(({ speaker }) => speaker))];
-  const asking = interviewersAmong(labels, interviewers) ?? new Set(guessInterviewers(text, turns));
+  const asking =
+    interviewersAmong(labels, interviewers) ?? new Set(guessInterviewers(text, turns, details));
   const others = labels.filter((label) => label === null || !asking.has(label));
   const byName = new Map([...desk.study.participants.values()].map(({ id, name }) => [name, id]));
   const added: Edit[] = [];

@@ -1,0 +1,14 @@
+import type { ThemeRowView } from '../../../main/api.ts';
+
+/** How a theme stands with people, in the few words that a list has room for. */
+export function standingOf(theme: ThemeRowView, people: number): string {
+  if (theme.setAside) return 'set aside';
+  const met = `${theme.confirmedPeople} of ${people}`;
+  if (theme.origin === 'by hand') return `by hand · ${met}`;
+  if (theme.name === null && theme.confirmedPeople === 0) return 'candidate';
+  return theme.pinned ? `pinned · ${met}` : `${met} people`;
+}
+
+export function percent(share: number): string {
+  return `${Math.round(share * 100)} %`;
+}
