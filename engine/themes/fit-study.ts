@@ -2,7 +2,6 @@ import {
   fitModel,
   methodNumber,
   type Counts,
-  type FitSettings,
   type ModelFit,
   type Start,
   type Watcher,
@@ -15,40 +14,11 @@ import {
   tallyLeftOut,
   type Prepared,
   type TextSettings,
-  type TranscriptText,
-  type WordLists,
 } from '../text/index.ts';
-import type { Decided } from './decided.ts';
-import type { ModelledTheme } from './modelled-theme.ts';
+import type { FitJob, WordPlaces } from './fit-job.ts';
 import { priorsOf } from './priors.ts';
 import { packResult, packWords } from './stored.ts';
 import { warmStart } from './warm-start.ts';
-
-/** All that a fit is a function of. Plain data and typed arrays: it travels to a worker. */
-export interface FitJob {
-  readonly transcripts: readonly TranscriptText[];
-  readonly text: TextSettings;
-  readonly lists: WordLists;
-  readonly model: FitSettings;
-  /** Base values of the priors. */
-  readonly alpha: number;
-  readonly eta: number;
-  readonly seed: number;
-  /** Rows of the model, in order; at least one. */
-  readonly themes: readonly ModelledTheme[];
-  readonly decisions: readonly Decided[];
-  /** The fit to start from, as stored; null for a fit from scratch. */
-  readonly previous: PreviousFit | null;
-  /** Pinned themes keep the words of this fit, also from scratch; null where there is none. */
-  readonly pinnedFrom: PreviousFit | null;
-}
-
-export interface PreviousFit {
-  readonly themes: readonly string[];
-  readonly words: Prepared;
-  readonly theta: Float32Array;
-  readonly phi: Float32Array;
-}
 
 export interface FitDone {
   readonly ok: true;
@@ -77,9 +47,12 @@ export interface FitDone {
 
 export interface FitRefused {
   readonly ok: false;
-  readonly code: 'no words left' | 'more themes than passages' | 'no themes';
+  readonly code:
+    'no words left' | 'more themes than passages' | 'no themes' | 'word without a theme';
   readonly themes: number;
   readonly passages: number;
+  /** 'word without a theme': the word that every theme shuts out. */
+  readonly word?: string;
 }
 
 /** From transcripts and decisions to a fit: counts words, sets priors, fits, packs the result. */
@@ -95,6 +68,10 @@ export function fitStudy(job: FitJob, watcher?: Watcher): FitDone | FitRefused {
   }
 
   const places = placesOf(words, job.text);
+  const homeless = wordWithoutTheme(job, places);
+  if (homeless !== undefined) {
+    return { ok: false, code: 'word without a theme', ...size, word: homeless };
+  }
   const priors = priorsOf(job, words, places);
   const start = startOf(job, words, places);
   const fit = fitModel(words.counts, priors, start, job.model, watcher);
@@ -128,15 +105,20 @@ export function fitStudy(job: FitJob, watcher?: Watcher): FitDone | FitRefused {
   };
 }
 
-/** The vocabulary index of a word as a person typed it, or undefined where it is not counted. */
-export type WordPlaces = (word: string) => number | undefined;
-
 function placesOf(words: Prepared, settings: TextSettings): WordPlaces {
   const places = new Map(words.vocabulary.map((form, index) => [form, index]));
   return (word) => {
     const form = countedForm(word, settings);
     return form === null ? undefined : places.get(form);
   };
+}
+
+/** A counted word that every theme shuts out could belong nowhere. */
+function wordWithoutTheme({ themes }: FitJob, places: WordPlaces): string | undefined {
+  const shutOutEverywhere = (word: string): boolean =>
+    places(word) !== undefined &&
+    themes.every(({ shutOut }) => shutOut.some((other) => places(other) === places(word)));
+  return themes[0].shutOut.find(shutOutEverywhere);
 }
 
 function startOf(job: FitJob, words: Prepared, places: WordPlaces): Start {

@@ -1,11 +1,6 @@
 export { decisions, type Decided } from './decided.ts';
-export {
-  fitStudy,
-  type FitDone,
-  type FitJob,
-  type FitRefused,
-  type PreviousFit,
-} from './fit-study.ts';
+export type { FitJob, PreviousFit } from './fit-job.ts';
+export { fitStudy, type FitDone, type FitRefused } from './fit-study.ts';
 export { leadingRow, rowOf, shareOf, strengthOf, type Fitted } from './fitted.ts';
 export { modelledThemes, type ModelledTheme } from './modelled-theme.ts';
 export {

@@ -1,7 +1,7 @@
 import type { Priors } from '../model/index.ts';
 import { belongsTo } from '../spans/index.ts';
 import type { Prepared } from '../text/index.ts';
-import type { FitJob, WordPlaces } from './fit-study.ts';
+import type { FitJob, WordPlaces } from './fit-job.ts';
 import { phiInVocabulary } from './warm-start.ts';
 
 /**

@@ -1,6 +1,6 @@
 import type { Start } from '../model/index.ts';
 import type { Prepared } from '../text/index.ts';
-import type { PreviousFit } from './fit-study.ts';
+import type { PreviousFit } from './fit-job.ts';
 import type { ModelledTheme } from './modelled-theme.ts';
 
 /**

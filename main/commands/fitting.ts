@@ -32,8 +32,10 @@ const fitCodes: readonly FitRefusal['code'][] = [
   'no words left',
   'more themes than passages',
   'no themes',
+  'word without a theme',
   'no fit to start from',
   'changed while fitting',
+  'stopped',
 ];
 
 function isFitRefusal(refusal: Refused): refusal is FitRefusal {

@@ -57,19 +57,24 @@ const formatNames = {
 } as const;
 
 export function sentenceForFit(
-  refusal: FitRefused | { readonly code: 'no fit to start from' | 'changed while fitting' },
+  refusal:
+    FitRefused | { readonly code: 'no fit to start from' | 'changed while fitting' | 'stopped' },
 ): string {
   switch (refusal.code) {
     case 'no words left':
       return 'No words are left to count, since every word is on a list, too rare or too common; add transcripts, or loosen the limits on words.';
     case 'more themes than passages':
       return `There are ${refusal.themes} themes and only ${refusal.passages} passages with counted words; ask for fewer themes, or add transcripts.`;
+    case 'word without a theme':
+      return `“${refusal.word ?? ''}” is shut out of every theme that is fitted, so its occurrences would belong nowhere. Let it into one, or add it to the stop words.`;
     case 'no themes':
       return 'There is no theme to fit; ask for at least one.';
     case 'no fit to start from':
       return 'There is no fit to start from yet; fit the study from scratch first.';
     case 'changed while fitting':
       return 'The transcripts or the set of themes changed while the fit ran, so its result was let go; fit again.';
+    case 'stopped':
+      return 'The fit was stopped, so the study is as it was; fit again when you like.';
   }
 }
 

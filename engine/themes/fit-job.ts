@@ -1,0 +1,33 @@
+import type { FitSettings } from '../model/index.ts';
+import type { Prepared, TextSettings, TranscriptText, WordLists } from '../text/index.ts';
+import type { Decided } from './decided.ts';
+import type { ModelledTheme } from './modelled-theme.ts';
+
+/** All that a fit is a function of. Plain data and typed arrays: it travels to a worker. */
+export interface FitJob {
+  readonly transcripts: readonly TranscriptText[];
+  readonly text: TextSettings;
+  readonly lists: WordLists;
+  readonly model: FitSettings;
+  /** Base values of the priors. */
+  readonly alpha: number;
+  readonly eta: number;
+  readonly seed: number;
+  /** Rows of the model, in order; at least one. */
+  readonly themes: readonly ModelledTheme[];
+  readonly decisions: readonly Decided[];
+  /** The fit to start from, as stored; null for a fit from scratch. */
+  readonly previous: PreviousFit | null;
+  /** Pinned themes keep the words of this fit, also from scratch; null where there is none. */
+  readonly pinnedFrom: PreviousFit | null;
+}
+
+export interface PreviousFit {
+  readonly themes: readonly string[];
+  readonly words: Prepared;
+  readonly theta: Float32Array;
+  readonly phi: Float32Array;
+}
+
+/** The vocabulary index of a word as a person typed it, or undefined where it is not counted. */
+export type WordPlaces = (word: string) => number | undefined;
