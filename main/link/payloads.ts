@@ -1,0 +1,173 @@
+import * as v from 'valibot';
+import type { Api, Method } from '../api.ts';
+import { limits } from './limits.ts';
+
+const name = v.pipe(v.string(), v.maxLength(limits.name));
+const path = v.pipe(v.string(), v.minLength(1), v.maxLength(limits.path));
+const text = v.pipe(v.string(), v.maxLength(limits.text));
+const id = v.pipe(v.string(), v.minLength(1), v.maxLength(limits.name));
+const offset = v.pipe(v.number(), v.safeInteger(), v.minValue(0));
+const count = v.pipe(v.number(), v.safeInteger(), v.minValue(1), v.maxValue(1_000_000));
+const nothing = v.null();
+
+function listOf<Item extends v.GenericSchema>(item: Item) {
+  return v.pipe(v.array(item), v.maxLength(limits.list), v.readonly());
+}
+
+const ids = listOf(id);
+const words = listOf(name);
+const bytes = v.pipe(
+  v.instance(Uint8Array),
+  v.check((array) => array.byteLength <= limits.fileBytes, 'a file must not be larger'),
+);
+const file = v.strictObject({ name, bytes });
+
+const span = { start: offset, end: offset };
+const place = v.pipe(
+  v.strictObject({ transcript: id, ...span }),
+  v.check(({ start, end }) => start <= end, 'a span must not end before its start'),
+);
+
+const underView = { drawnBy: name, seenSuggestion: v.boolean() };
+const code = v.strictObject({ place, theme: id, memo: text, ...underView });
+
+function entries<Value extends v.GenericSchema>(value: Value) {
+  return v.pipe(
+    v.record(name, value),
+    v.check((record) => Object.keys(record).length <= limits.list, 'too many entries'),
+  );
+}
+
+const reportRequest = {
+  standings: v.pipe(
+    v.array(v.picklist(['confirmed', 'by hand', 'suggested', 'rejected'])),
+    v.maxLength(4),
+  ),
+  themes: v.nullable(ids),
+  guard: v.boolean(),
+};
+
+/** How the payload of each method is read from an unknown value. */
+export const payloads = {
+  about: nothing,
+  recentStudies: nothing,
+  overview: nothing,
+
+  openDemo: nothing,
+  startStudy: v.strictObject({ name, path: v.nullable(path) }),
+  openStudy: v.strictObject({ path: v.nullable(path), readOnly: v.boolean() }),
+  closeStudy: nothing,
+  renameStudy: v.strictObject({ name }),
+  nameReader: v.strictObject({ name }),
+  undo: nothing,
+  redo: nothing,
+
+  chooseTranscripts: nothing,
+  addTranscripts: v.strictObject({ files: v.pipe(v.array(file), v.maxLength(limits.files)) }),
+  addAttributes: v.strictObject({ name, bytes }),
+  gatherView: nothing,
+  transcriptView: v.strictObject({ transcript: id }),
+  renameTranscript: v.strictObject({ transcript: id, name }),
+  removeTranscript: v.strictObject({ transcript: id }),
+  assignSpeaker: v.strictObject({
+    transcript: id,
+    label: v.nullable(name),
+    role: v.picklist(['interviewer', 'participant', 'other']),
+    participant: v.nullable(name),
+    everywhere: v.boolean(),
+  }),
+  describeParticipant: v.strictObject({ participant: id, name, attributes: entries(text) }),
+  changeSettings: v.strictObject({
+    settings: entries(v.union([text, v.pipe(v.number(), v.finite()), v.boolean(), words])),
+  }),
+
+  fit: v.strictObject({
+    kind: v.picklist(['from scratch', 're-fit']),
+    themes: v.nullable(count),
+  }),
+  moved: nothing,
+  chooseFit: v.strictObject({ fit: id }),
+
+  shapeView: nothing,
+  strata: nothing,
+  themeView: v.strictObject({ theme: id }),
+  wordView: v.strictObject({ form: name }),
+  nameTheme: v.strictObject({ theme: id, name }),
+  defineTheme: v.strictObject({
+    theme: id,
+    brief: text,
+    full: text,
+    whenToUse: text,
+    whenNotToUse: text,
+    examples: text,
+  }),
+  addTheme: v.strictObject({ name, byHand: v.boolean(), seeds: words }),
+  pinTheme: v.strictObject({ theme: id, pinned: v.boolean() }),
+  setThemeAside: v.strictObject({ theme: id, aside: v.boolean() }),
+  mergeThemes: v.strictObject({ into: id, from: ids }),
+  orderThemes: v.strictObject({ themes: ids }),
+  seedWord: v.strictObject({ theme: id, word: name, seeded: v.boolean() }),
+  shutOutWord: v.strictObject({ theme: id, word: name, shutOut: v.boolean() }),
+
+  readingList: v.strictObject({
+    kind: v.picklist([
+      'in order',
+      'strongest first',
+      'nearest the edge',
+      'unexplained',
+      'random draw',
+      'one theme',
+    ]),
+    theme: v.nullable(id),
+    transcript: v.nullable(id),
+    unreadOnly: v.boolean(),
+    count: v.pipe(v.number(), v.safeInteger(), v.minValue(0), v.maxValue(1_000_000)),
+    seed: v.pipe(v.number(), v.safeInteger()),
+  }),
+  passageView: v.strictObject({ place }),
+  confirm: code,
+  reject: code,
+  codeByHand: code,
+  removeCoding: v.strictObject({ transcript: id, coding: id }),
+  markNone: v.strictObject({ place, ...underView }),
+  clearNone: v.strictObject({ transcript: id, none: id }),
+  writeMemo: v.strictObject({
+    on: v.variant('kind', [
+      v.strictObject({ kind: v.literal('study') }),
+      v.strictObject({ kind: v.literal('transcript'), transcript: id }),
+      v.strictObject({ kind: v.literal('passage'), place }),
+      v.strictObject({ kind: v.literal('theme'), theme: id }),
+      v.strictObject({ kind: v.literal('coding'), transcript: id, coding: id }),
+    ]),
+    text,
+  }),
+  reviseMemo: v.strictObject({ memo: id, text }),
+
+  find: v.strictObject({ text: name }),
+  reportPreview: v.strictObject(reportRequest),
+  report: v.strictObject({
+    ...reportRequest,
+    format: v.picklist(['csv', 'json', 'html', 'docx', 'themes csv', 'methods']),
+  }),
+  saveFile: v.strictObject({ fileName: id, bytes }),
+} as const satisfies {
+  readonly [Name in Method]: v.GenericSchema<unknown, Api[Name]['takes']>;
+};
+
+type Comparable<Value> = Value extends Uint8Array
+  ? 'bytes'
+  : Value extends string | number | boolean | null
+    ? Value
+    : { readonly [Key in keyof Value]: Comparable<Value[Key]> };
+
+/** Methods whose schema would refuse something that the api takes. */
+type TooNarrow = {
+  [Name in Method]: Comparable<Api[Name]['takes']> extends Comparable<
+    v.InferOutput<(typeof payloads)[Name]>
+  >
+    ? never
+    : Name;
+}[Method];
+
+/** Fails to compile where a schema is narrower than the api. */
+export const noPayloadIsTooNarrow: [TooNarrow] extends [never] ? true : TooNarrow = true;
