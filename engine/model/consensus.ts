@@ -37,26 +37,26 @@ export function consensus(
     const phi = pinned[k];
     if (phi) result.set(phi, k * words);
     else if (drawn[k]) {
-      const versions = runs.map((run) => unitTheme(run, k, words));
+      const versions = runs.map((run) => poolTheme(run, k, words));
       const similar = similarities(versions);
       const neighbours = Math.max(1, runs.length - 1);
-      const weights = densities(similar, versions.length, neighbours).map(fourthPower);
+      const weights = densities(similar, versions.length, neighbours).map(weightOf);
       const all = versions.map((_, i) => i);
       setRow(result, k, words, average(versions, all, weights, words).phi, eta);
     } else free.push(k);
   }
   if (free.length > 0) {
-    const pool = runs.flatMap((run) => free.map((k) => unitTheme(run, k, words)));
+    const pool = runs.flatMap((run) => free.map((k) => poolTheme(run, k, words)));
     const gathered = gather(pool, free.length, runs.length, words, settings);
     fillRows(result, free, gathered, words, eta);
   }
   return result;
 }
 
-/** A theme of the pool: its distribution, that distribution at length 1, and its size in words. */
+/** A theme of the pool: its distribution, that distribution's length, and its size in words. */
 interface PoolTheme {
   readonly phi: Float32Array;
-  readonly unit: Float32Array;
+  readonly length: number;
   readonly size: number;
 }
 
@@ -65,16 +65,9 @@ interface Average {
   readonly size: number;
 }
 
-function unitTheme(run: RunThemes, k: number, words: number): PoolTheme {
+function poolTheme(run: RunThemes, k: number, words: number): PoolTheme {
   const phi = run.phi.subarray(k * words, (k + 1) * words);
-  return { phi, unit: unitVector(phi), size: run.sizes[k] };
-}
-
-function unitVector(values: ArrayLike<number>): Float32Array {
-  let squares = 0;
-  for (let i = 0; i < values.length; i++) squares += values[i] * values[i];
-  const scale = squares > 0 ? 1 / Math.sqrt(squares) : 0;
-  return Float32Array.from(values, (value) => value * scale);
+  return { phi, length: Math.sqrt(dot(phi, phi)), size: run.sizes[k] };
 }
 
 function dot(a: Float32Array, b: Float32Array): number {
@@ -89,7 +82,8 @@ function similarities(pool: readonly PoolTheme[]): Float64Array {
   const similar = new Float64Array(n * n);
   for (let i = 0; i < n; i++) {
     for (let j = i; j < n; j++) {
-      similar[i * n + j] = dot(pool[i].unit, pool[j].unit);
+      const scale = pool[i].length * pool[j].length;
+      similar[i * n + j] = scale > 0 ? dot(pool[i].phi, pool[j].phi) / scale : 0;
       similar[j * n + i] = similar[i * n + j];
     }
   }
@@ -112,11 +106,15 @@ function densities(similar: Float64Array, n: number, neighbours: number): Float6
   return result;
 }
 
-function fourthPower(x: number): number {
-  return x * x * x * x;
+/** Density to the fourth; a theme that resembles no other still counts where it stands alone. */
+function weightOf(density: number): number {
+  return Math.max(density * density * density * density, 1e-12);
 }
 
-/** k-means of the pool into `groups` averages, largest first. */
+/**
+ * k-means of the pool into `groups` averages, largest first. An average is a weighted sum of pool
+ * themes, so its cosine to any theme follows from the themes' cosines: no round reads a word.
+ */
 function gather(
   pool: readonly PoolTheme[],
   groups: number,
@@ -128,25 +126,51 @@ function gather(
   const similar = similarities(pool);
   const neighbours = Math.max(2, Math.round(runs * settings.neighbours));
   const density = densities(similar, n, neighbours);
-  const weights = density.map(fourthPower);
+  const weights = density.map(weightOf);
+  const pulls = weights.map((weight, i) => weight * pool[i].length);
 
-  let centres = farthestFirst(similar, density, groups).map((i) => pool[i].unit);
-  let averages: Average[] = [];
+  let members = farthestFirst(similar, density, groups).map((i) => [i]);
   let belongs: number[] = [];
   for (let round = 0; round < Math.max(1, settings.consensusRounds); round++) {
-    const nearest = pool.map(({ unit }) => nearestCentre(unit, centres));
-    const settled = nearest.every((centre, i) => centre === belongs[i]);
-    if (settled) break;
+    const scores = members.map((group) => cosinesToSum(similar, n, group, pulls));
+    const nearest = pool.map((_, i) => indexOfMost(scores, i));
+    if (nearest.every((group, i) => group === belongs[i])) break;
     belongs = nearest;
-    averages = centres.map((centre, group) => {
-      const members = [...belongs.keys()].filter((i) => belongs[i] === group);
-      if (members.length > 0) return average(pool, members, weights, words);
-      return averages[group] ?? { phi: Float64Array.from(centre), size: 0 };
+    // A group that all its themes left stays where it was.
+    members = members.map((group, g) => {
+      const now = [...belongs.keys()].filter((i) => belongs[i] === g);
+      return now.length > 0 ? now : group;
     });
-    centres = averages.map(({ phi }) => unitVector(phi));
   }
+  const averages = members.map((group) => average(pool, group, weights, words));
   const order = [...averages.keys()].sort((a, b) => averages[b].size - averages[a].size || a - b);
   return order.map((group) => averages[group]);
+}
+
+/** The cosine of each theme of the pool to the sum of a group's themes, each times its pull. */
+function cosinesToSum(
+  similar: Float64Array,
+  n: number,
+  group: readonly number[],
+  pulls: Float64Array,
+): Float64Array {
+  const products = new Float64Array(n);
+  for (const j of group) {
+    for (let i = 0; i < n; i++) products[i] += pulls[j] * similar[j * n + i];
+  }
+  let square = 0;
+  for (const j of group) square += pulls[j] * products[j];
+  const length = Math.sqrt(square);
+  return products.map((product) => (length > 0 ? product / length : 0));
+}
+
+/** The group whose score for theme i is greatest; the first of equals. */
+function indexOfMost(scores: readonly Float64Array[], i: number): number {
+  let best = 0;
+  for (let group = 1; group < scores.length; group++) {
+    if (scores[group][i] > scores[best][i]) best = group;
+  }
+  return best;
 }
 
 /** The densest theme, then again and again the one farthest from those chosen, by its density. */
@@ -171,19 +195,6 @@ function farthestFirst(similar: Float64Array, density: Float64Array, groups: num
   return chosen;
 }
 
-function nearestCentre(unit: Float32Array, centres: readonly Float32Array[]): number {
-  let best = 0;
-  let bestScore = -Infinity;
-  for (let group = 0; group < centres.length; group++) {
-    const score = dot(unit, centres[group]);
-    if (score > bestScore) {
-      best = group;
-      bestScore = score;
-    }
-  }
-  return best;
-}
-
 function average(
   pool: readonly PoolTheme[],
   members: readonly number[],
@@ -194,12 +205,9 @@ function average(
   let weight = 0;
   let size = 0;
   for (const i of members) {
-    // A theme that resembles no other still counts for something where it stands alone.
-    const own = Math.max(weights[i], 1e-12);
-    weight += own;
-    size += own * pool[i].size;
-    const from = pool[i].phi;
-    for (let w = 0; w < words; w++) phi[w] += own * from[w];
+    weight += weights[i];
+    size += weights[i] * pool[i].size;
+    for (let w = 0; w < words; w++) phi[w] += weights[i] * pool[i].phi[w];
   }
   for (let w = 0; w < words; w++) phi[w] /= weight;
   return { phi, size: size / weight };

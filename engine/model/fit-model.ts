@@ -27,7 +27,7 @@ export function fitModel(
   watcher?: Watcher,
 ): ModelFit {
   const prepared = prepare('fitModel', counts, priors);
-  if (prepared.priors.pinned.every((phi) => phi !== null)) {
+  if (everythingPinned(priors)) {
     return finishFit(prepared, settings, pinnedThemes(prepared), [], 'schedule completed');
   }
   if (start.kind === 'warm') {
@@ -36,26 +36,40 @@ export function fitModel(
   }
   const runs: Run[] = [];
   for (let number = 0; number < settings.runs; number++) {
-    const done = poolRun(prepared, start, settings, number, partOf(watcher, number, settings.runs));
-    const stopped = done.stopReason === 'stopped by a person';
-    // A run cut short would blur the others; alone it is better than nothing.
-    if (!stopped || runs.length === 0) runs.push(done);
-    if (stopped) return finishPool(prepared, start, settings, runs, done.stopReason);
+    const run = poolRun(prepared, start, settings, number, partOf(watcher, number, settings.runs));
+    runs.push(run);
+    if (run.stopReason === 'stopped by a person') break;
   }
-  return finishPool(prepared, start, settings, runs, 'schedule completed');
+  return finishPool(prepared, start, settings, runs);
 }
 
-/** The consensus of a pool's runs, in the order of their numbers, and every passage folded in. */
+/**
+ * How many runs a fit's pool has: 0 where the fit is not pooled (a warm start, or every theme
+ * pinned) and `fitModel` makes it in one go. Else its runs, numbered from 0, may be made side by
+ * side by `poolRun`, each worker on its own `prepareFit` of the same counts and priors; `finishPool`
+ * of all of them in order gives the bits that `fitModel` gives.
+ */
+export function poolSize(priors: Priors, start: Start, settings: FitSettings): number {
+  return start.kind === 'warm' || everythingPinned(priors) ? 0 : settings.runs;
+}
+
+/**
+ * The consensus of a pool's runs, in the order of their numbers, and every passage folded in. Runs
+ * that were cancelled are left out, unless there is nothing else.
+ */
 export function finishPool(
   prepared: Prepared,
   start: FreshStart,
   settings: FitSettings,
   runs: readonly Run[],
-  stopReason: StopReason,
 ): ModelFit {
+  if (runs.length === 0) throw new Error('finishPool: runs is empty; must hold a run at least');
   const { priors, counts } = prepared;
-  const phi = consensus(runs, priors, drawnThemes(prepared, start), counts.words, settings);
-  return finishFit(prepared, settings, phi, runs, stopReason);
+  const whole = runs.filter(({ stopReason }) => stopReason !== 'stopped by a person');
+  const used = whole.length > 0 ? whole : runs.slice(0, 1);
+  const phi = consensus(used, priors, drawnThemes(prepared, start), counts.words, settings);
+  const stopReason = whole.length < runs.length ? 'stopped by a person' : 'schedule completed';
+  return finishFit(prepared, settings, phi, used, stopReason);
 }
 
 function finishFit(
@@ -88,6 +102,10 @@ function finishFit(
     stopReason,
     boundTerms: terms,
   };
+}
+
+function everythingPinned({ themes, frozen }: Priors): boolean {
+  return frozen.length === themes;
 }
 
 /** Themes that decisions draw to a row of their own: seeded, or confirmed in a passage. */

@@ -8,7 +8,10 @@ export type {
   TracePoint,
   Watcher,
 } from './types.ts';
-export { fitModel } from './fit-model.ts';
+export { prepareFit, type Prepared } from './collapsed/prepare.ts';
+export { poolRun, type FreshStart, type Run } from './collapsed/runs.ts';
+export { finishPool, fitModel, poolSize } from './fit-model.ts';
+export { leadingThemes } from './leading-themes.ts';
 export {
   defaultFitSettings,
   methodNumber,

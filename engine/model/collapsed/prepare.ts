@@ -31,3 +31,8 @@ export function prepare(
   const countedWords = sum(counts.counts);
   return { counts, priors: dense, kernel, state: createState(kernel, counts, dense), countedWords };
 }
+
+/** The counts and priors of one fit, ready for its runs (see poolSize). */
+export function prepareFit(counts: Counts, priors: Priors): Prepared {
+  return prepare('prepareFit', counts, priors);
+}
