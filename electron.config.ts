@@ -29,12 +29,26 @@ export default defineConfig({
       lib: {
         entry: {
           command: here('main/shells/command.ts'),
+          electron: here('main/shells/electron.ts'),
           loopback: here('main/shells/loopback.ts'),
           ...workers,
         },
         formats: ['es'],
       },
       rolldownOptions: { external: ['electron'], checks },
+    },
+  },
+  preload: {
+    build: {
+      ...bundled,
+      outDir: 'out/preload',
+      // A sandboxed preload is one CommonJS file.
+      lib: { entry: here('main/shells/preload.ts'), formats: ['cjs'], fileName: 'preload' },
+      rolldownOptions: {
+        external: ['electron'],
+        output: { entryFileNames: 'preload.cjs', codeSplitting: false },
+        checks,
+      },
     },
   },
   renderer: {

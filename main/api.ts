@@ -132,6 +132,8 @@ export interface GatherView {
 export interface GatherOutcome {
   readonly gathered: readonly string[];
   readonly skipped: readonly { readonly file: string; readonly sentence: string }[];
+  /** What tables of attributes among the files said; null where there was none. */
+  readonly attributes: AttributesOutcome | null;
 }
 
 export interface AttributesOutcome {

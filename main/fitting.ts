@@ -30,7 +30,15 @@ export type FitMade =
   | DeskResult<{ readonly fit: Fit; readonly done: FitDone }>
   | FitRefused
   | { readonly ok: false; readonly code: 'no fit to start from' }
-  | { readonly ok: false; readonly code: 'changed while fitting' };
+  | { readonly ok: false; readonly code: 'changed while fitting' }
+  | { readonly ok: false; readonly code: 'stopped' };
+
+export interface FitStudyOptions extends FitOptions {
+  /** From scratch: how many themes; the study's setting unless told, and its setting from then on. */
+  readonly themes?: number;
+  /** Let go of the result of a fit that was stopped, so that the study stays as it was. */
+  readonly discardStopped?: boolean;
+}
 
 /**
  * Fits the study in a worker and records the result. From scratch, themes that carry no decision are
@@ -41,13 +49,14 @@ export async function fit(
   desk: Desk,
   kind: FitKind,
   lists: WordLists,
-  options: FitOptions = {},
+  options: FitStudyOptions = {},
 ): Promise<FitMade> {
   const before = desk.study;
   const previous = desk.fitted(before.fit);
   if (kind === 're-fit' && previous === null) return { ok: false, code: 'no fit to start from' };
   const settings = settingsOf(before.settings);
-  const found = kind === 'from scratch' ? newThemes(desk, settings.themes) : [];
+  const asked = kind === 'from scratch' ? (options.themes ?? settings.themes) : settings.themes;
+  const found = kind === 'from scratch' ? newThemes(desk, asked) : [];
   const kept = kind === 'from scratch' ? keptThemes(before) : modelledThemes(before);
   const job: FitJob = {
     transcripts: desk.transcriptTexts(),
@@ -64,6 +73,9 @@ export async function fit(
   };
   const basis = basisOf(before, kind);
   const done = await runFit(job, options);
+  if (options.discardStopped === true && options.signal?.aborted === true) {
+    return { ok: false, code: 'stopped' };
+  }
   if (!done.ok) return done;
   if (basisOf(desk.study, kind) !== basis || desk.study.fit !== before.fit) {
     return { ok: false, code: 'changed while fitting' };
@@ -83,7 +95,7 @@ export async function fit(
     },
     method: done.method,
     preparation: done.preparation,
-    settings: { ...recordedSettings(before.settings), lists: hashOf(lists) },
+    settings: { ...recordedSettings(before.settings), themes: asked, lists: hashOf(lists) },
     passages: done.passages,
     vocabulary: done.vocabulary,
     countedWords: done.countedWords,
@@ -101,7 +113,17 @@ export async function fit(
     return { kind: 'modelFitted', fit: record(words, result), found, before: before.fit };
   };
   const blobs = sameWords === null ? [done.words, done.result] : [done.result];
-  const made = desk.make([{ blobs, edit }]);
+  const { themes = null } = desk.study.settings;
+  const setting: Edit = {
+    kind: 'settingsChanged',
+    changes: [{ key: 'themes', from: themes, to: asked }],
+  };
+  const made = desk.make(
+    [...(asked === settings.themes ? [] : [{ edit: setting }]), { blobs, edit }],
+    {
+      group: desk.context.mintId('group'),
+    },
+  );
   if (!made.ok) return made;
   return { ok: true, value: { fit: desk.study.fits.get(id) as Fit, done } };
 }

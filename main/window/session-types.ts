@@ -1,4 +1,4 @@
-import type { About, Answer, Api, Events, FitProgress, Method } from '../api.ts';
+import type { About, Answer, Api, Events, FitProgress, Method, Overview } from '../api.ts';
 
 /** What a call brings along besides its payload. */
 export interface CallContext {
@@ -39,6 +39,8 @@ export interface Surroundings {
   readonly now: () => string;
   /** The name that a reader gets until one is typed. */
   readonly readerName: string;
+  /** Brings this window to the front: somebody opened its study a second time. */
+  readonly comeForward?: () => void;
 }
 
 export interface Session {
@@ -47,8 +49,8 @@ export interface Session {
     event: Name,
     listener: (detail: Events[Name]) => void,
   ) => () => void;
-  /** Opens a study that the system handed over (a double-clicked file). */
-  readonly openPath: (path: string) => Promise<void>;
+  /** Opens a study that the system handed over (a double-clicked file); a refusal is to be shown. */
+  readonly openPath: (path: string) => Promise<Answer<Overview> | void>;
   /** Closes the open study; safe to call twice. */
   readonly close: () => Promise<void>;
 }

@@ -1,0 +1,130 @@
+import type { Edit, EditKind, EditOf } from '../../engine/study/index.ts';
+
+/** What an edit's ids are called. */
+export interface Names {
+  readonly theme: (id: string) => string;
+  readonly transcript: (id: string) => string;
+  readonly participant: (id: string) => string;
+}
+
+type Phrases = {
+  readonly [Kind in EditKind]: (edit: EditOf<Kind>, names: Names) => string;
+};
+
+/** What each edit is, as a noun phrase: it stands after "Undo" and in the trail. */
+const phrases: Phrases = {
+  studyStarted: ({ name }) => `start of ${name}`,
+  studyRenamed: ({ to }) => `rename of the study to ${to}`,
+  settingsChanged: ({ changes }) =>
+    changes.length === 1 ? `change of ${settingWords(changes[0].key)}` : 'change of settings',
+  readerAdded: ({ reader }) => `reader ${reader.name}`,
+  readerRemoved: ({ reader }) => `removal of reader ${reader.name}`,
+  transcriptGathered: ({ transcript }) => `adding of ${transcript.name}`,
+  transcriptRemoved: ({ transcript }) => `removal of ${transcript.name}`,
+  transcriptRenamed: ({ to }) => `rename of ${to}`,
+  speakersAssigned: ({ transcript }, names) => `speakers of ${names.transcript(transcript)}`,
+  textRevised: ({ transcript }, names) => `correction of ${names.transcript(transcript)}`,
+  participantAdded: ({ participant }) => `participant ${participant.name}`,
+  participantRemoved: ({ participant }) => `removal of participant ${participant.name}`,
+  participantDescribed: ({ to }) => `description of ${to.name}`,
+  themeAdded: ({ theme }) => `new theme${theme.name === null ? '' : ` ${theme.name}`}`,
+  themeRemoved: ({ theme }) => `removal of theme${theme.name === null ? '' : ` ${theme.name}`}`,
+  themeRenamed: ({ from, to }) =>
+    from === null ? `naming of ${to ?? 'a candidate'}` : `rename of ${to ?? from}`,
+  themeDefined: ({ theme }, names) => `definition of ${names.theme(theme)}`,
+  themePinned: ({ theme }, names) => `pin of ${names.theme(theme)}`,
+  themeUnpinned: ({ theme }, names) => `unpinning of ${names.theme(theme)}`,
+  themeSetAside: ({ theme }, names) => `setting aside of ${names.theme(theme)}`,
+  themeBroughtBack: ({ theme }, names) => `bringing back of ${names.theme(theme)}`,
+  themesMerged: ({ into }, names) => `merge into ${names.theme(into)}`,
+  themesUnmerged: ({ into }, names) => `taking apart of ${names.theme(into)}`,
+  themesOrdered: () => 'order of the themes',
+  wordSeeded: ({ theme, word }, names) => `seed “${word}” in ${names.theme(theme)}`,
+  wordUnseeded: ({ theme, word }, names) => `unseeding of “${word}” in ${names.theme(theme)}`,
+  wordShutOut: ({ theme, word }, names) => `shutting out of “${word}” from ${names.theme(theme)}`,
+  wordLetIn: ({ theme, word }, names) => `letting in of “${word}” to ${names.theme(theme)}`,
+  codingMade: ({ coding }, names) => {
+    const theme = names.theme(coding.theme);
+    if (coding.standing === 'confirmed') return `confirmation of ${theme}`;
+    return coding.standing === 'rejected' ? `rejection of ${theme}` : `coding with ${theme}`;
+  },
+  codingRemoved: ({ coding }, names) => `removal of a coding with ${names.theme(coding.theme)}`,
+  codingRevised: ({ from, to }, names) =>
+    from.memo === to.memo
+      ? `change of a coding with ${names.theme(to.theme)}`
+      : `memo on a coding with ${names.theme(to.theme)}`,
+  noneMarked: () => 'mark that no theme applies',
+  noneCleared: () => 'clearing of a mark that no theme applies',
+  memoWritten: () => 'memo',
+  memoErased: () => 'erasing of a memo',
+  memoRevised: () => 'change of a memo',
+  modelFitted: ({ fit }) => (fit.start.kind === 'warm' ? 're-fit' : 'fit from scratch'),
+  fitRemoved: () => 'removal of a fit',
+  fitChosen: () => 'choice of a fit',
+  fitRenamed: () => 'name of a fit',
+};
+
+/** Several edits of one kind in one gesture. */
+const several: Partial<Record<EditKind, (count: number) => string>> = {
+  transcriptGathered: (count) => `adding of ${count} transcripts`,
+  transcriptRemoved: (count) => `removal of ${count} transcripts`,
+  speakersAssigned: (count) => `speakers of ${count} transcripts`,
+  participantDescribed: (count) => `attributes of ${count} participants`,
+  wordSeeded: (count) => `${count} seed words`,
+  codingMade: (count) => `${count} codings`,
+  codingRemoved: (count) => `removal of ${count} codings`,
+};
+
+/**
+ * Kinds that come along with others in one gesture, the least telling first; whatever is not named
+ * here tells more.
+ */
+const alongside: readonly EditKind[] = [
+  'readerRemoved',
+  'readerAdded',
+  'participantRemoved',
+  'participantAdded',
+  'participantDescribed',
+  'settingsChanged',
+  'noneCleared',
+  'codingRemoved',
+  'wordSeeded',
+];
+
+export function editInWords(edit: Edit, names: Names): string {
+  // The union guarantees that an edit meets the phrase of its own kind.
+  return (phrases[edit.kind] as (edit: Edit, names: Names) => string)(edit, names);
+}
+
+/** One gesture, by what it was made for. */
+export function gestureInWords(edits: readonly Edit[], names: Names): string {
+  const told = edits.reduce((most, edit) => (rank(edit) > rank(most) ? edit : most));
+  const count = edits.filter(({ kind }) => kind === told.kind).length;
+  const many = several[told.kind];
+  return count > 1 && many !== undefined ? many(count) : editInWords(told, names);
+}
+
+function rank({ kind }: Edit): number {
+  const place = alongside.indexOf(kind);
+  return place < 0 ? alongside.length : place;
+}
+
+const settings: Readonly<Record<string, string>> = {
+  themes: 'the number of themes',
+  seed: 'the seed of fits',
+  answer: 'the kind of fit',
+  suggestionStrength: 'the strength from which a theme is suggested',
+  suggestionCountedWords: 'the counted words that a suggestion needs',
+  'text.language': 'the language',
+  'text.passageMinimumWords': 'the shortest passage',
+  'text.passageMaximumWords': 'the longest passage',
+  'text.stemming': 'counting by stems',
+  'text.leaveOutStopWords': 'the use of stop words',
+  'text.leaveOutFillers': 'the use of fillers',
+  'text.extraStopWords': 'the stop words',
+  'text.keptWords': 'the kept words',
+};
+
+function settingWords(key: string): string {
+  return Object.hasOwn(settings, key) ? settings[key] : 'a setting';
+}

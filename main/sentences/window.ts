@@ -1,0 +1,49 @@
+type Say = (subject: string) => string;
+
+const quoted = (subject: string): string => `“${subject}”`;
+
+/** What only a window can ask for and cannot have: why, and what to do instead. */
+export const windowSentences = {
+  'no study': () => 'No study is open; start one, or open one.',
+  'no dialog': () => 'The system’s file dialog cannot be shown here; type where the study is.',
+  'no dialog to save': () =>
+    'The system’s file dialog cannot be shown here; take the file from the browser instead.',
+  'shown forward': (s) =>
+    `${quoted(s)} is open in another window, which was brought forward; go on there, or close it first.`,
+  'unfinished trail': (s) =>
+    `${quoted(s)} holds decisions that do not follow from one another, so it was not opened; open a backup of it.`,
+  'newer decisions': (s) =>
+    `${quoted(s)} holds decisions of a newer version of Understory; install that version to open it.`,
+  'no demo': () =>
+    'The transcripts of the demo study could not be read; install Understory again, or start a study of your own.',
+  'fit running': () => 'A fit is running already; wait for it, or stop it first.',
+  'no fit': () => 'There is no fit yet; fit the study in Shape first.',
+  'place changed': () =>
+    'The passages were divided in another way in the meantime; open the passage again, then decide.',
+  'nothing selected': () => 'No words are selected; select at least one word to code.',
+  'several speakers': () =>
+    'The selection runs over several speakers; code each one’s words by themselves.',
+  'no participant speaks': () =>
+    'Only what participants say can be coded; select words of a participant.',
+  'codings there': () =>
+    'This passage carries codings; remove them first to say that no theme applies.',
+  'part coded': (s) =>
+    `A part of this passage is coded with ${quoted(s)}; remove that coding first to say that the theme does not apply.`,
+  'too long': () =>
+    'The text is longer than a million characters; divide it, or keep it in a file of its own.',
+  'empty memo': () => 'The memo is empty; type something first.',
+  'not one word': (s) => `${quoted(s)} is not one word; type a single word.`,
+  'seeds by hand': () =>
+    'A theme by hand has no words of its own; leave the seed words out, or let the model look for it.',
+  'word not said': (s) =>
+    `${quoted(s)} is not among the counted words; check its spelling, or the lists of words in Gather.`,
+  'no attribute table': (s) =>
+    `${quoted(s)} is no table of attributes; head its first column “participant” and each other column with an attribute.`,
+  'no files': () => 'No files were handed over; choose at least one.',
+  'order out of date': () =>
+    'The list of themes changed in the meantime; look at it again, then put it in order.',
+  'passage limits': () =>
+    'The shortest passage must be shorter than the longest; change one of the two numbers.',
+} satisfies Record<string, Say>;
+
+export type WindowRefusalCode = keyof typeof windowSentences;

@@ -1,0 +1,266 @@
+import { existsSync } from 'node:fs';
+import { mkdir } from 'node:fs/promises';
+import { homedir } from 'node:os';
+import { basename, dirname, isAbsolute, join, resolve, sep } from 'node:path';
+import { editKinds } from '../../engine/study/index.ts';
+import type { Answer, Overview, RecentStudy, Refused } from '../api.ts';
+import { randomIds } from '../ids.ts';
+import {
+  bringForward,
+  createStudyFile,
+  openStudyFile,
+  StudyFileFault,
+  type StudyFile,
+  type StudyFileFailure,
+} from '../project/index.ts';
+import { sentenceFor } from '../sentences/sentences.ts';
+import { give, isRefused, refuse } from './answers.ts';
+import { buildDemo, demoName } from './demo.ts';
+import { safeFileName } from './file-names.ts';
+import { OpenStudy, startGroup } from './open-study.ts';
+import { overview } from './overview.ts';
+import { faultInWords, type Room } from './room.ts';
+import type { CallContext, Handlers } from './session-types.ts';
+import { folderFailure } from './write-file.ts';
+
+const ending = '.understory';
+
+export function openingHandlers(
+  room: Room,
+): Pick<
+  Handlers,
+  | 'about'
+  | 'recentStudies'
+  | 'overview'
+  | 'openDemo'
+  | 'startStudy'
+  | 'openStudy'
+  | 'closeStudy'
+  | 'renameStudy'
+  | 'nameReader'
+> {
+  const { surroundings } = room;
+  const { about, dialogs, recent } = surroundings;
+  const look = room.look<null, Overview>((open) => give(overview(open)));
+  return {
+    about: async () => give(about),
+
+    recentStudies: async () => give((await recent.list()).map(asRecent)),
+
+    overview: async (takes, context) => (room.open === null ? give(null) : look(takes, context)),
+
+    openDemo: (_, context) => room.inTurn(() => openDemo(room, context)),
+
+    startStudy: ({ name, path }) =>
+      room.inTurn(async () => {
+        const title = name.trim();
+        if (title === '') return { code: 'empty name', refused: sentenceFor(emptyName) };
+        let place = path;
+        if (place === null && dialogs !== null) {
+          place = await dialogs.placeStudy(safeFileName(title));
+          if (place === null) return give(null);
+        }
+        return startStudy(room, title, placeOf(place ?? safeFileName(title), about.studiesFolder));
+      }),
+
+    openStudy: ({ path, readOnly }) =>
+      room.inTurn(async () => {
+        let place = path;
+        if (place === null) {
+          if (dialogs === null) return refuse('no dialog');
+          place = await dialogs.chooseStudy();
+          if (place === null) return give(null);
+        }
+        return openStudy(room, placeOf(place, about.studiesFolder, ''), readOnly);
+      }),
+
+    closeStudy: () =>
+      room.inTurn(async () => {
+        closeStudy(room);
+        return give(null);
+      }),
+
+    renameStudy: room.decide((open, { name }: { name: string }) => {
+      const from = open.study.name;
+      const to = name.trim();
+      return to === from ? null : open.decide([{ kind: 'studyRenamed', from, to }]);
+    }),
+
+    nameReader: room.decide((open, { name }: { name: string }) => nameReader(open, name.trim())),
+  };
+}
+
+const emptyName = { ok: false, code: 'empty name', subject: '' } as const;
+
+/** Opens a study, whatever the way it was asked for. */
+export async function openStudy(
+  room: Room,
+  path: string,
+  readOnly: boolean,
+): Promise<Answer<Overview>> {
+  const { open: current, surroundings } = room;
+  if (current !== null && !current.file.closed && samePath(current.file.path, path)) {
+    if (current.file.readOnly === readOnly)
+      return room.look<null, Overview>((open) => give(overview(open)))(null, noContext);
+    // The lock of the one would stand in the way of the other.
+    closeStudy(room);
+  }
+  const opened = await openStudyFile(path, { readOnly, ...knock(room) });
+  if (!opened.ok) {
+    if (opened.code === 'not found') await surroundings.recent.remove(path);
+    return notOpened(opened, path);
+  }
+  return take(room, opened.value);
+}
+
+async function notOpened(failure: StudyFileFailure, path: string): Promise<Refused> {
+  if (failure.code === 'open elsewhere' && (await bringForward(path))) {
+    return { ...refuse('shown forward', basename(path, ending)), code: failure.code };
+  }
+  return { code: failure.code, refused: sentenceFor(failure) };
+}
+
+async function startStudy(room: Room, name: string, path: string): Promise<Answer<Overview>> {
+  const { readerName, now } = room.surroundings;
+  try {
+    await mkdir(dirname(path), { recursive: true });
+  } catch (error) {
+    const failure = folderFailure(error, dirname(path));
+    return { code: failure.code, refused: sentenceFor(failure) };
+  }
+  const id = randomIds('study');
+  const created = await createStudyFile(path, { studyId: id }, knock(room));
+  if (!created.ok) return { code: created.code, refused: sentenceFor(created) };
+  const open = new OpenStudy(created.value, { accountName: readerName, now });
+  const made = open.desk.make(
+    [
+      { edit: { kind: 'studyStarted', study: id, name } },
+      { edit: { kind: 'readerAdded', reader: open.reader } },
+    ],
+    { group: startGroup },
+  );
+  if (!made.ok) {
+    open.close();
+    return open.refusal(made);
+  }
+  return enter(room, open);
+}
+
+/** Reads the trail of a file and shows its study in place of the one before. */
+async function take(room: Room, file: StudyFile): Promise<Answer<Overview>> {
+  const { readerName, now } = room.surroundings;
+  const open = new OpenStudy(file, { accountName: readerName, now });
+  const fault = load(open);
+  if (fault !== null) {
+    open.close();
+    return fault;
+  }
+  return enter(room, open);
+}
+
+function load({ desk, file }: OpenStudy): Refused | null {
+  const name = basename(file.path, ending);
+  try {
+    const known = new Set<string>(editKinds);
+    for (const { json } of file.edits()) {
+      const kind = (json as { readonly edit?: { readonly kind?: unknown } }).edit?.kind;
+      if (typeof kind !== 'string' || !known.has(kind)) return refuse('newer decisions', name);
+    }
+    desk.load(file.edits());
+    // A file that was cut off right after its header.
+    return desk.study.id === '' ? refuse('unfinished trail', name) : null;
+  } catch (error) {
+    return error instanceof StudyFileFault ? faultInWords(error) : refuse('unfinished trail', name);
+  }
+}
+
+async function enter(room: Room, open: OpenStudy): Promise<Answer<Overview>> {
+  closeStudy(room, { quietly: true });
+  room.open = open;
+  await room.surroundings.recent.add(open.file.path);
+  try {
+    return await room.afterwards(open);
+  } catch (error) {
+    if (!(error instanceof StudyFileFault)) throw error;
+    closeStudy(room);
+    return faultInWords(error);
+  }
+}
+
+export function closeStudy(room: Room, { quietly = false } = {}): void {
+  const { open } = room;
+  if (open === null) return;
+  room.open = null;
+  open.close();
+  if (!quietly) room.tell('closed', null);
+}
+
+async function openDemo(room: Room, context: CallContext): Promise<Answer<Overview>> {
+  const { studiesFolder } = room.surroundings.about;
+  const first = join(studiesFolder, `${demoName}${ending}`);
+  if (existsSync(first)) {
+    const opened = await openStudy(room, first, false);
+    // Whatever else stands under that name is left alone, and a new one made beside it.
+    if (!isRefused(opened) || opened.code === 'open elsewhere') return opened;
+  }
+  let path = first;
+  for (let number = 2; existsSync(path); number++) {
+    path = join(studiesFolder, `${demoName} ${number}${ending}`);
+  }
+  const built = await buildDemo(room.surroundings, path, knock(room), context);
+  return isRefused(built) ? built : take(room, built.value);
+}
+
+function nameReader(open: OpenStudy, name: string): Refused | null {
+  const { study, reader } = open;
+  if (name === reader.name) return null;
+  const known = [...study.readers.values()].find((one) => one.name === name);
+  if (known !== undefined) {
+    open.chooseReader(known.id);
+    return null;
+  }
+  const next = { id: open.desk.context.mintId('reader'), name };
+  const drafts = [{ edit: { kind: 'readerAdded', reader: next } as const }];
+  const removed = study.readers.has(reader.id)
+    ? open.desk.make([...drafts, { edit: { kind: 'readerRemoved', reader } }], {
+        group: open.desk.context.mintId('group'),
+      })
+    : open.desk.make(drafts);
+  // Whoever has decided something stays in the study beside the new name.
+  const made = !removed.ok && removed.code === 'reader in use' ? open.desk.make(drafts) : removed;
+  if (!made.ok) return open.refusal(made);
+  open.chooseReader(next.id);
+  return null;
+}
+
+function knock({ surroundings }: Room): { readonly onSecondOpen?: () => void } {
+  const { comeForward } = surroundings;
+  return comeForward === undefined ? {} : { onSecondOpen: comeForward };
+}
+
+function placeOf(path: string, folder: string, otherwise: string = ending): string {
+  const full = isAbsolute(path) ? path : resolve(folder, path);
+  return full.endsWith(ending) ? full : `${full}${otherwise}`;
+}
+
+function samePath(a: string, b: string): boolean {
+  return resolve(a) === resolve(b);
+}
+
+function asRecent(path: string): RecentStudy {
+  const folder = dirname(path);
+  const home = homedir();
+  return {
+    path,
+    name: basename(path, ending),
+    folder:
+      folder === home
+        ? '~'
+        : folder.startsWith(home + sep)
+          ? `~${folder.slice(home.length)}`
+          : folder,
+    missing: !existsSync(path),
+  };
+}
+
+const noContext: CallContext = { onProgress: () => {}, signal: new AbortController().signal };
