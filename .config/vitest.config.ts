@@ -5,6 +5,7 @@ export default defineConfig({
   plugins: [assemblyscript()],
   test: {
     include: ['test/**/*.test.ts'],
+    globalSetup: ['test/build-first.ts'],
     testTimeout: 60_000,
     hookTimeout: 180_000,
   },

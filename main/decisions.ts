@@ -9,7 +9,8 @@ import {
   type Study,
   type Theme,
 } from '../engine/study/index.ts';
-import { settingsFault } from '../engine/themes/index.ts';
+import { formOf, type Language } from '../engine/text/index.ts';
+import { settingsFault, settingsOf } from '../engine/themes/index.ts';
 import type { Desk, DeskResult } from './desk.ts';
 import { interviewersAmong } from './gather/gather.ts';
 import { participantName } from './gather/participants.ts';
@@ -128,10 +129,11 @@ function applyTheme(desk: Desk, planned: PlannedTheme): Applied {
     if (other === undefined) return { ok: false, code: 'plan names no theme', subject: name };
     edits.push({ kind: 'themesMerged', into: theme.id, from: [other.id] });
   }
-  for (const word of planned.seed) {
+  const { language } = settingsOf(desk.study.settings).text;
+  for (const word of wordsAsCounted(planned.seed, language)) {
     if (!theme.seeds.includes(word)) edits.push({ kind: 'wordSeeded', theme: theme.id, word });
   }
-  for (const word of planned.shutOut) {
+  for (const word of wordsAsCounted(planned.shutOut, language)) {
     if (!theme.shutOut.includes(word)) edits.push({ kind: 'wordShutOut', theme: theme.id, word });
   }
   if (planned.pin !== undefined && planned.pin !== theme.pinned) {
@@ -147,6 +149,11 @@ function applyTheme(desk: Desk, planned: PlannedTheme): Applied {
     edits.map((edit) => ({ edit })),
     { group: desk.context.mintId('group') },
   );
+}
+
+/** Typed words in the form that they are counted under, so that “Soil” and “soil” are one. */
+function wordsAsCounted(typed: readonly string[], language: Language): Set<string> {
+  return new Set(typed.map((word) => formOf(word, language) ?? word.normalize('NFC')));
 }
 
 function applyCoding(desk: Desk, planned: PlannedCoding): Applied {

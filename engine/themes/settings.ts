@@ -11,7 +11,7 @@ export const defaultSettings = {
   alpha: 0.1,
   eta: 0.1,
   suggestionStrength: 0.5,
-  suggestionCountedWords: 8,
+  suggestionCountedWords: 1,
   'text.language': defaultTextSettings.language,
   'text.passageMinimumWords': defaultTextSettings.passageMinimumWords,
   'text.passageMaximumWords': defaultTextSettings.passageMaximumWords,

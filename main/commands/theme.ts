@@ -146,7 +146,7 @@ export async function theme(words: readonly string[], terminal: Terminal): Promi
   return values.strict === true && skipped.length > 0 ? 1 : 0;
 }
 
-/** Warns of seed words that nobody says: they could not be taken into account. */
+/** Warns of seeds that nobody says, or that are several words: they could not be used. */
 export function sayUnheard(
   desk: Desk,
   unheard: readonly { readonly theme: string; readonly word: string }[],
@@ -155,7 +155,7 @@ export function sayUnheard(
   for (const { theme: id, word } of unheard) {
     const name = desk.study.themes.get(id)?.name ?? id;
     terminal.err(
-      `The seed “${word}” of “${name}” is said by no participant, so it had no effect.\n`,
+      `The seed “${word}” of “${name}” is no word that a participant says, so it had no effect; give single words as they are said.\n`,
     );
   }
 }
