@@ -1,0 +1,91 @@
+import { settingFault, whatMoved, type Moved } from '../../engine/themes/index.ts';
+import type { Api, FitRequest, MovedView, Refused } from '../api.ts';
+import { fitBefore } from '../commands/moved.ts';
+import { sentenceForSetting } from '../sentences/sentences.ts';
+import { give, isRefused, refuse } from './answers.ts';
+import { fitForWindow } from './fit-for-window.ts';
+import { Kept } from './kept.ts';
+import type { OpenStudy } from './open-study.ts';
+import type { Room } from './room.ts';
+import type { CallContext, Handlers } from './session-types.ts';
+
+export function fitHandlers(room: Room): Pick<Handlers, 'fit' | 'moved' | 'chooseFit'> {
+  return {
+    fit: room.look(async (open, request: FitRequest, context) => {
+      const fitted = await fitStudy(open, request, context);
+      if (isRefused(fitted)) return fitted;
+      const after = await room.afterwards(open);
+      return isRefused(after) ? after : give({ overview: after.value, moved: movedView(open) });
+    }),
+
+    moved: room.look<null, MovedView | null>((open) => give(movedView(open))),
+
+    chooseFit: room.decide((open, { fit: to }: Api['chooseFit']['takes']) => {
+      const from = open.study.fit;
+      return from === to ? null : open.decide([{ kind: 'fitChosen', from, to }]);
+    }),
+  };
+}
+
+async function fitStudy(
+  open: OpenStudy,
+  { kind, themes }: FitRequest,
+  context: CallContext,
+): Promise<{ readonly value: unknown } | Refused> {
+  if (open.fitting) return refuse('fit running');
+  const fault = themes === null ? null : settingFault('themes', themes);
+  if (fault !== null) return { code: 'setting', refused: sentenceForSetting(fault) };
+  const signal = AbortSignal.any([context.signal, open.closing.signal]);
+  open.fitting = true;
+  try {
+    return await fitForWindow(open.desk, kind, kind === 're-fit' ? null : themes, context, signal);
+  } finally {
+    open.fitting = false;
+  }
+}
+
+const kept = new WeakMap<OpenStudy, Kept<MovedView | null>>();
+
+/** What moved between the fit on screen and the one before it; null where there is none. */
+function movedView(open: OpenStudy): MovedView | null {
+  const { study, now } = open;
+  const before = fitBefore(study);
+  const last = kept.get(open) ?? new Kept();
+  kept.set(open, last);
+  return last.get([study.fit, before, study.themes, study.transcripts], () => {
+    const then = before !== null && study.fits.has(before) ? open.desk.fitted(before) : null;
+    if (then === null || now.fitted === null) return null;
+    const moved = whatMoved(study, then, now.fitted);
+    return inWords(open, moved, now.fitted.fit.themes.length);
+  });
+}
+
+function inWords({ study, now, desk }: OpenStudy, moved: Moved, ofThemes: number): MovedView {
+  const named = (id: string) => ({ id, label: now.themes.label(id) });
+  return {
+    compared: moved.compared,
+    ofThemes,
+    passages: moved.passages.flatMap(({ passage: row, from, to, strengths }) => {
+      const passage = now.fitted?.words.passages[row];
+      const transcript = study.transcripts.get(passage?.transcript ?? '');
+      if (passage === undefined || transcript === undefined) return [];
+      const { start, end, number } = passage;
+      return [
+        {
+          transcript: transcript.id,
+          start,
+          end,
+          transcriptName: transcript.name,
+          number,
+          text: desk.text(transcript.id).slice(start, end),
+          from: named(from),
+          to: named(to),
+          strengths,
+        },
+      ];
+    }),
+    themes: moved.themes.map(({ theme, gained, lost }) => ({ ...named(theme), gained, lost })),
+    appeared: moved.appeared.map((id) => now.themes.label(id)),
+    gone: moved.gone.map((id) => now.themes.label(id)),
+  };
+}

@@ -1,0 +1,106 @@
+import type { Coding } from '../../engine/study/index.ts';
+import type { CodingView, PassagePlace, PassageView, Refused, SuggestionView } from '../api.ts';
+import { refuse } from './answers.ts';
+import { carriedBy } from './carried-by.ts';
+import { memosOnPassage } from './memos.ts';
+import type { Offer } from './offers-now.ts';
+import type { OpenStudy } from './open-study.ts';
+import type { Placed } from './passages-now.ts';
+import { strengthsOf } from './themes-now.ts';
+
+// "Another theme" offers what the model sees a trace of; the rest is found by name.
+const mostOffered = 5;
+const leastOffered = 0.05;
+
+/** A passage of now by its place, as an index in its transcript. */
+export function indexOf(open: OpenStudy, place: PassagePlace): number | Refused {
+  if (!open.study.transcripts.has(place.transcript)) {
+    return open.refusal({ ok: false, code: 'unknown transcript', subject: place.transcript });
+  }
+  const index = open.now
+    .passagesIn(place.transcript)
+    .findIndex(({ start, end }) => start === place.start && end === place.end);
+  return index < 0 ? refuse('place changed') : index;
+}
+
+export function passageView(open: OpenStudy, transcript: string, index: number): PassageView {
+  const { study, now } = open;
+  const passage = now.passagesIn(transcript)[index];
+  const { codings, nones } = now.decidedIn(transcript).passages[index];
+  const [none] = nones;
+  return {
+    start: passage.start,
+    end: passage.end,
+    number: passage.number,
+    speaker: passage.speaker,
+    participant: now.participantName(passage.participant),
+    time: passage.startTime,
+    segments: passage.segments,
+    question: passage.questionBefore,
+    words: passage.words,
+    countedWords: passage.countedWords,
+    suggestions: now
+      .offersIn(transcript)
+      .passages[index].map((offer) => suggestionView(open, passage, offer)),
+    strongest: strongestIn(open, passage).map((offer) => suggestionView(open, passage, offer)),
+    codings: codings.map((coding) => codingView(open, coding)),
+    none:
+      none === undefined
+        ? null
+        : {
+            id: none.id,
+            reader: study.readers.get(none.under.reader)?.name ?? '',
+            at: none.under.at,
+          },
+    memos: memosOnPassage(study, { transcript, start: passage.start, end: passage.end }),
+  };
+}
+
+/** The themes that the model sees in a passage, whatever was decided on them; strongest first. */
+export function strongestIn({ now }: OpenStudy, passage: Placed): Offer[] {
+  const { themes } = now;
+  const strengths = strengthsOf(themes, passage.row);
+  if (strengths === null) return [];
+  return [...strengths]
+    .map((strength, column) => ({ strength, column }))
+    .filter(({ strength, column }) => strength >= leastOffered && themes.offered[column] === 1)
+    .sort((a, b) => b.strength - a.strength)
+    .slice(0, mostOffered);
+}
+
+/** A theme's strength in a passage; null where the fit has none for it. */
+export function strengthIn({ now }: OpenStudy, passage: Placed, theme: string): number | null {
+  const column = now.themes.columnOf.get(now.themeOf(theme) ?? '');
+  const strengths = column === undefined ? null : strengthsOf(now.themes, passage.row);
+  // Sums of f32 may stand a hair above one.
+  return strengths === null ? null : Math.min(1, strengths[column as number]);
+}
+
+function suggestionView(
+  { now: { themes } }: OpenStudy,
+  { row }: Placed,
+  { column, strength }: Offer,
+): SuggestionView {
+  const theme = themes.columns[column];
+  return {
+    theme,
+    themeName: themes.label(theme),
+    strength,
+    carriedBy: carriedBy(themes, row, column),
+  };
+}
+
+function codingView({ study, now }: OpenStudy, coding: Coding): CodingView {
+  const theme = now.themeOf(coding.theme) ?? coding.theme;
+  return {
+    id: coding.id,
+    span: coding.span,
+    theme,
+    themeName: now.themes.label(theme),
+    standing: coding.standing,
+    memo: coding.memo,
+    reader: study.readers.get(coding.under.reader)?.name ?? '',
+    at: coding.under.at,
+    strengthAtDecision: coding.strength,
+  };
+}

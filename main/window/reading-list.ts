@@ -1,0 +1,199 @@
+import { createGenerator } from '../../engine/numbers/index.ts';
+import type {
+  Api,
+  PassagePlace,
+  ReadingList,
+  ReadingListKind,
+  ReadingListRequest,
+  Refused,
+} from '../api.ts';
+import { give, refuse } from './answers.ts';
+import { isDecided, type DecidedPassage } from './decided-now.ts';
+import type { OpenStudy } from './open-study.ts';
+import { oneEachFirst } from './one-each-first.ts';
+import type { Placed } from './passages-now.ts';
+import { strengthsOf } from './themes-now.ts';
+
+/** A passage that may come on a list. */
+interface Candidate {
+  readonly passage: Placed;
+  readonly decided: DecidedPassage;
+  /** Of the theme asked for, else of the strongest theme; null where nothing was counted. */
+  readonly strength: number | null;
+}
+
+/** Passages to go through, in the order asked for, under the name that decisions record. */
+export function readingList(
+  open: OpenStudy,
+  request: Api['readingList']['takes'],
+): { readonly value: ReadingList } | Refused {
+  const { study, now } = open;
+  const { kind, theme, transcript, unreadOnly } = request;
+  if (theme !== null && !study.themes.has(theme)) {
+    return open.refusal({ ok: false, code: 'unknown theme', subject: theme });
+  }
+  if (kind === 'one theme' && theme === null) {
+    return open.refusal({ ok: false, code: 'unknown theme', subject: '' });
+  }
+  if (transcript !== null && !study.transcripts.has(transcript)) {
+    return open.refusal({ ok: false, code: 'unknown transcript', subject: transcript });
+  }
+  if (needsFit.has(kind) && now.fitted === null) return refuse('no fit');
+
+  const name = nameOf(open, request);
+  const isWanted = (one: Candidate): boolean => !unreadOnly || isOpen(one, name);
+  const shown = inOrder(open, request, candidates(open, request), isWanted);
+  return give({
+    name,
+    places: shown.map(placeOf),
+    decided: shown.filter(({ decided }) => isDecided(decided)).length,
+  });
+}
+
+const needsFit: ReadonlySet<ReadingListKind> = new Set([
+  'strongest first',
+  'nearest the edge',
+  'unexplained',
+]);
+
+function nameOf(
+  { study, now }: OpenStudy,
+  { kind, theme, transcript, unreadOnly, count, seed }: ReadingListRequest,
+): string {
+  const list = kind === 'random draw' ? `random draw of ${count}, seed ${seed}` : kind;
+  const where = transcript === null ? undefined : study.transcripts.get(transcript)?.name;
+  return [
+    kind === 'one theme' ? `one theme: ${now.themes.label(theme ?? '')}` : list,
+    ...(theme !== null && kind !== 'one theme' ? [`with ${now.themes.label(theme)}`] : []),
+    ...(where === undefined ? [] : [`in ${where}`]),
+    ...(unreadOnly ? ['unread'] : []),
+  ].join(', ');
+}
+
+/**
+ * Unread, or decided on from this very list: so a list that is asked for again is the same list, with
+ * what was done in it.
+ */
+function isOpen({ decided }: Candidate, name: string): boolean {
+  return (
+    !isDecided(decided) ||
+    [...decided.codings, ...decided.nones].some(({ under }) => under.drawnBy === name)
+  );
+}
+
+function candidates(
+  { now }: OpenStudy,
+  { kind, theme, transcript }: ReadingListRequest,
+): Candidate[][] {
+  const { themes, settings } = now;
+  const wanted = theme === null ? null : (now.themeOf(theme) ?? theme);
+  const column = wanted === null ? undefined : themes.columnOf.get(wanted);
+  const { strength: threshold, countedWords } = settings.suggestions;
+  return now.transcripts
+    .filter(({ id }) => transcript === null || id === transcript)
+    .map(({ id }) => {
+      const { passages } = now.decidedIn(id);
+      return now.passagesIn(id).flatMap((passage, index): Candidate[] => {
+        const decided = passages[index];
+        const counted = passage.countedWords >= Math.max(1, countedWords);
+        const strengths = counted ? strengthsOf(themes, passage.row) : null;
+        const strength =
+          strengths === null
+            ? null
+            : wanted === null
+              ? largest(strengths)
+              : column === undefined
+                ? null
+                : strengths[column];
+        if (wanted !== null && kind !== 'nearest the edge') {
+          const coded = decided.codings.some((coding) => now.themeOf(coding.theme) === wanted);
+          if (!coded && (strength === null || strength < threshold)) return [];
+        }
+        return [{ passage, decided, strength }];
+      });
+    });
+}
+
+function inOrder(
+  { now }: OpenStudy,
+  { kind, count, seed }: ReadingListRequest,
+  transcripts: readonly Candidate[][],
+  isWanted: (one: Candidate) => boolean,
+): Candidate[] {
+  const all = transcripts.flat().filter(isWanted);
+  switch (kind) {
+    case 'in order':
+      return all;
+    case 'strongest first':
+      return by(counted(all), ({ strength }) => -strength);
+    case 'nearest the edge': {
+      const edge = now.settings.suggestions.strength;
+      return by(counted(all), ({ strength }) => Math.abs(strength - edge));
+    }
+    case 'unexplained': {
+      const surprise = now.fitted?.unexplained;
+      return by(counted(all), ({ passage }) => -(surprise?.[passage.row] ?? 0));
+    }
+    case 'one theme':
+      return oneEachFirst(
+        by(all, ({ strength }) => -(strength ?? -1)),
+        ({ passage }) => passage.participant,
+      );
+    case 'random draw':
+      return draw(transcripts, count, seed, isWanted);
+  }
+}
+
+type Counted = Candidate & { readonly strength: number };
+
+function counted(all: readonly Candidate[]): Counted[] {
+  return all.filter((one): one is Counted => one.strength !== null);
+}
+
+function by<One extends Candidate>(all: readonly One[], key: (one: One) => number): One[] {
+  return all
+    .map((one) => ({ one, value: key(one) }))
+    .sort((a, b) => a.value - b.value)
+    .map(({ one }) => one);
+}
+
+/**
+ * A draw without replacement, in parts that follow the transcripts' sizes (largest remainders), in a
+ * random order. Each transcript is put into its random order before anything is left out of it, so
+ * that a passage keeps its place in the draw while others are decided on.
+ */
+function draw(
+  transcripts: readonly Candidate[][],
+  count: number,
+  seed: number,
+  isWanted: (one: Candidate) => boolean,
+): Candidate[] {
+  const chance = Math.abs(Math.trunc(seed));
+  const frames = transcripts.map((all, stream) =>
+    createGenerator(chance, stream + 1)
+      .shuffle([...all])
+      .filter(isWanted),
+  );
+  const total = frames.reduce((sum, frame) => sum + frame.length, 0);
+  const drawn = Math.min(count, total);
+  const exact = frames.map((frame) => (total === 0 ? 0 : (drawn * frame.length) / total));
+  const parts = exact.map(Math.floor);
+  const left = drawn - parts.reduce((sum, part) => sum + part, 0);
+  exact
+    .map((share, index) => ({ index, rest: share - parts[index] }))
+    .sort((a, b) => b.rest - a.rest || a.index - b.index)
+    .slice(0, left)
+    .forEach(({ index }) => parts[index]++);
+  const chosen = frames.flatMap((frame, index) => frame.slice(0, parts[index]));
+  return createGenerator(chance).shuffle(chosen);
+}
+
+function largest(strengths: Float64Array): number {
+  let most = 0;
+  for (const strength of strengths) if (strength > most) most = strength;
+  return most;
+}
+
+function placeOf({ passage: { transcript, start, end } }: Candidate): PassagePlace {
+  return { transcript, start, end };
+}

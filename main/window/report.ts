@@ -1,0 +1,199 @@
+import type {
+  Api,
+  NamedFile,
+  Refused,
+  ReportFormat,
+  ReportPreview,
+  ReportRequest,
+} from '../api.ts';
+import { codedExcerpts, type CodedExcerpt } from '../reports/coded-excerpts.ts';
+import { attribution, bookCautions, filterSentence } from '../reports/excerpt-book.ts';
+import { excerptsCsv } from '../reports/excerpts-csv.ts';
+import { excerptsDocx } from '../reports/excerpts-docx.ts';
+import { excerptsHtml } from '../reports/excerpts-html.ts';
+import { excerptsJson } from '../reports/excerpts-json.ts';
+import { methodsText } from '../reports/methods.ts';
+import { themesCsv } from '../reports/theme-table.ts';
+import { sentenceFor } from '../sentences/sentences.ts';
+import { give, isRefused, refuse } from './answers.ts';
+import { safeFileName } from './file-names.ts';
+import { Kept } from './kept.ts';
+import type { OpenStudy } from './open-study.ts';
+import type { Room } from './room.ts';
+import type { Handlers } from './session-types.ts';
+import { themeRows } from './theme-rows.ts';
+import { writeWholeFile } from './write-file.ts';
+
+const excerptsShown = 12;
+const fewPeople = 3;
+
+export function reportHandlers(
+  room: Room,
+): Pick<Handlers, 'reportPreview' | 'report' | 'saveFile'> {
+  return {
+    reportPreview: room.look((open, request: ReportRequest) => {
+      const excerpts = excerptsFor(open, request);
+      return isRefused(excerpts) ? excerpts : give(preview(open, request, excerpts));
+    }),
+
+    report: room.look(async (open, request: Api['report']['takes']) => {
+      const excerpts = excerptsFor(open, request);
+      return isRefused(excerpts) ? excerpts : reportFile(open, request, excerpts);
+    }),
+
+    saveFile: async ({ fileName, bytes }) => {
+      const { dialogs } = room.surroundings;
+      if (dialogs === null) return refuse('no dialog to save');
+      const path = await dialogs.placeFile(fileName);
+      if (path === null) return give(null);
+      const failure = await writeWholeFile(path, bytes);
+      return failure === null ? give(path) : { code: failure.code, refused: sentenceFor(failure) };
+    },
+  };
+}
+
+const kept = new WeakMap<OpenStudy, Map<string, Kept<CodedExcerpt[]>>>();
+
+/** Excerpts of some standings, kept while the study stays the same: a preview comes with each tick. */
+function allExcerpts(open: OpenStudy, standings: ReportRequest['standings']): CodedExcerpt[] {
+  const each = kept.get(open) ?? new Map<string, Kept<CodedExcerpt[]>>();
+  kept.set(open, each);
+  const key = [...new Set(standings)].sort().join();
+  const one = each.get(key) ?? new Kept<CodedExcerpt[]>();
+  each.set(key, one);
+  return one.get([open.study], () => codedExcerpts(open.desk, new Set(standings)));
+}
+
+function excerptsFor(
+  open: OpenStudy,
+  { standings, themes }: ReportRequest,
+): CodedExcerpt[] | Refused {
+  const unknown = themes?.find((id) => !open.study.themes.has(id));
+  if (unknown !== undefined) {
+    return open.refusal({ ok: false, code: 'unknown theme', subject: unknown });
+  }
+  const all = allExcerpts(open, standings);
+  if (themes === null) return all;
+  const wanted = new Set(themes.map((id) => open.now.themeOf(id)));
+  return all.filter(({ themeId }) => wanted.has(themeId));
+}
+
+function preview(
+  open: OpenStudy,
+  request: ReportRequest,
+  excerpts: readonly CodedExcerpt[],
+): ReportPreview {
+  const byTheme = new Map<string, CodedExcerpt[]>();
+  for (const excerpt of allExcerpts(open, request.standings)) {
+    const own = byTheme.get(excerpt.themeId);
+    if (own === undefined) byTheme.set(excerpt.themeId, [excerpt]);
+    else own.push(excerpt);
+  }
+  return {
+    count: excerpts.length,
+    people: peopleIn(excerpts),
+    filter: filterFor(open, request, excerpts.length),
+    themes: themeRows(open).map(({ id, label }) => {
+      const own = byTheme.get(id) ?? [];
+      return { id, label, count: own.length, people: peopleIn(own) };
+    }),
+    excerpts: excerpts.slice(0, excerptsShown).map((excerpt) => ({
+      theme: excerpt.theme,
+      question: excerpt.questionBefore,
+      text: excerpt.text,
+      attribution: attribution(excerpt),
+      standing: excerpt.standing,
+    })),
+    cautions: cautionsFor(request, excerpts),
+  };
+}
+
+function peopleIn(excerpts: readonly CodedExcerpt[]): number {
+  return new Set(excerpts.map(({ participant }) => participant)).size;
+}
+
+function filterFor(
+  { now }: OpenStudy,
+  { standings, themes }: ReportRequest,
+  count: number,
+): string {
+  const sentence = filterSentence(standings, count);
+  if (themes === null) return sentence;
+  const labels = themes.map((id) => now.themes.label(id));
+  return `${sentence.replace(/\.$/u, '')}; themes: ${labels.length === 0 ? 'none' : labels.join(', ')}.`;
+}
+
+function cautionsFor(
+  { standings }: ReportRequest,
+  excerpts: readonly CodedExcerpt[],
+): readonly string[] {
+  return [
+    bookCautions[0],
+    ...(standings.includes('suggested') ? [bookCautions[1]] : []),
+    ...(standings.includes('suggested')
+      ? ['Suggestions that nobody has read are among these excerpts; they are marked as suggested.']
+      : []),
+    ...(someoneStandsOut(excerpts)
+      ? [
+          'Some sets of attributes belong to fewer than three people here: printed together they can say who somebody is.',
+        ]
+      : []),
+  ];
+}
+
+/** Whether the attributes of somebody in the report are shared by fewer than three people in it. */
+function someoneStandsOut(excerpts: readonly CodedExcerpt[]): boolean {
+  const people = new Map<string, Set<string>>();
+  for (const { participant, attributes } of excerpts) {
+    const pairs = Object.entries(attributes).sort(([a], [b]) => (a < b ? -1 : 1));
+    if (pairs.length === 0) continue;
+    const key = JSON.stringify(pairs);
+    people.set(key, (people.get(key) ?? new Set()).add(participant));
+  }
+  return [...people.values()].some((own) => own.size < fewPeople);
+}
+
+const endings: Readonly<Record<ReportFormat, string>> = {
+  csv: 'excerpts.csv',
+  json: 'excerpts.json',
+  html: 'excerpts.html',
+  docx: 'excerpts.docx',
+  'themes csv': 'themes.csv',
+  methods: 'methods.md',
+};
+
+async function reportFile(
+  open: OpenStudy,
+  { format, standings, guard }: Api['report']['takes'],
+  excerpts: readonly CodedExcerpt[],
+): Promise<{ readonly value: NamedFile } | Refused> {
+  const content = await contentOf(open, format, standings, guard, excerpts);
+  if (isRefused(content)) return content;
+  return give({
+    fileName: `${safeFileName(open.study.name)} ${endings[format]}`,
+    bytes: typeof content === 'string' ? new TextEncoder().encode(content) : content,
+  });
+}
+
+async function contentOf(
+  { study, desk, now }: OpenStudy,
+  format: ReportFormat,
+  standings: readonly string[],
+  guard: boolean,
+  excerpts: readonly CodedExcerpt[],
+): Promise<string | Uint8Array | Refused> {
+  switch (format) {
+    case 'csv':
+      return excerptsCsv(study, excerpts, { guard });
+    case 'json':
+      return excerptsJson(study.name, excerpts, standings);
+    case 'html':
+      return excerptsHtml(study.name, excerpts, standings);
+    case 'docx':
+      return excerptsDocx(study.name, excerpts, standings);
+    case 'themes csv':
+      return themesCsv(desk, { guard });
+    case 'methods':
+      return now.fitted === null ? refuse('no fit') : methodsText(desk, now.fitted);
+  }
+}

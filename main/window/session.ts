@@ -1,0 +1,56 @@
+import type { Strata } from '../api.ts';
+import { give } from './answers.ts';
+import { find } from './find.ts';
+import { fitHandlers } from './fits.ts';
+import { gatheringHandlers } from './gathering.ts';
+import { redoInWords, undoInWords } from './history.ts';
+import { closeStudy, openingHandlers, openStudy } from './opening.ts';
+import type { OpenStudy } from './open-study.ts';
+import { readingHandlers } from './reading.ts';
+import { reportHandlers } from './report.ts';
+import { Room } from './room.ts';
+import type { Handlers, Session, Surroundings } from './session-types.ts';
+import { shapeView } from './shape-view.ts';
+import { strata } from './strata.ts';
+import { themeDecisions } from './theme-decisions.ts';
+import { themeView } from './theme-view.ts';
+import { wordView } from './word-view.ts';
+
+/** One window at work on one study at a time: answers every method of the api. */
+export function createSession(surroundings: Surroundings): Session {
+  const room = new Room(surroundings);
+  const handlers: Handlers = {
+    ...openingHandlers(room),
+    ...gatheringHandlers(room),
+    ...fitHandlers(room),
+    ...themeDecisions(room),
+    ...readingHandlers(room),
+    ...reportHandlers(room),
+    undo: room.look((open) => takeBack(room, open, 'undo')),
+    redo: room.look((open) => takeBack(room, open, 'redo')),
+    shapeView: room.look<null, ReturnType<typeof shapeView>>((open) => give(shapeView(open))),
+    strata: room.look<null, Strata>((open) => give(strata(open))),
+    themeView: room.look(themeView),
+    wordView: room.look(wordView),
+    find: room.look(async (open, { text }: { text: string }) => give(await find(open, text))),
+  };
+  return {
+    handlers,
+    on: (event, listener) => room.on(event, listener),
+    openPath: (path) => room.inTurn(() => openStudy(room, path, false)),
+    close: () =>
+      room.inTurn(async () => {
+        closeStudy(room);
+      }),
+  };
+}
+
+async function takeBack(room: Room, open: OpenStudy, which: 'undo' | 'redo') {
+  const did = which === 'undo' ? undoInWords(open) : redoInWords(open);
+  const made = did === null ? null : open.desk[which]();
+  if (made !== null && !made.ok) return open.refusal(made);
+  const after = await room.afterwards(open);
+  return 'refused' in after
+    ? after
+    : give({ did: made === null ? null : did, overview: after.value });
+}

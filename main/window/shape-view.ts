@@ -1,0 +1,58 @@
+import type { Fit } from '../../engine/study/index.ts';
+import type { FitProgress, FitView, ShapeView } from '../api.ts';
+import { fitBefore } from '../commands/moved.ts';
+import type { OpenStudy } from './open-study.ts';
+import { themeRows } from './theme-rows.ts';
+
+export function shapeView(open: OpenStudy): ShapeView {
+  const { study, now } = open;
+  const people = new Set<string>();
+  for (const id of study.transcripts.keys()) {
+    for (const { participant } of now.passagesIn(id)) people.add(participant);
+  }
+  const before = fitBefore(study);
+  return {
+    themes: themeRows(open),
+    people: people.size,
+    fit: now.fitted === null ? null : fitView(now.fitted.fit),
+    fits: fitsInWords(open),
+    before: before !== null && study.fits.has(before) ? before : null,
+  };
+}
+
+function fitView(fit: Fit): FitView {
+  return {
+    id: fit.id,
+    kind: kindOf(fit),
+    themes: fit.themes.length,
+    passages: fit.passages,
+    countedWords: fit.countedWords,
+    bound: fit.bound,
+    sweeps: fit.sweeps,
+    stopReason: fit.stopReason,
+    seed: fit.start.seed,
+    trace: fit.trace.map(({ sweep, bound, change }, index): FitProgress => ({
+      sweep,
+      bound,
+      change,
+      fraction: (index + 1) / fit.trace.length,
+    })),
+  };
+}
+
+function fitsInWords({ study, now }: OpenStudy): ShapeView['fits'] {
+  const times = new Map<string, string>();
+  for (const { edit, at } of now.trail.values()) {
+    // A fit that was taken back and made again keeps its first time.
+    if (edit.kind === 'modelFitted' && !times.has(edit.fit.id)) times.set(edit.fit.id, at);
+  }
+  return [...study.fits.values()].map((fit, index) => ({
+    id: fit.id,
+    label: fit.name ?? `${index + 1}: ${kindOf(fit)}, ${fit.themes.length} themes`,
+    at: times.get(fit.id) ?? '',
+  }));
+}
+
+function kindOf({ start }: Fit): FitView['kind'] {
+  return start.kind === 'warm' ? 're-fit' : 'from scratch';
+}
