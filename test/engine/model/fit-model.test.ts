@@ -2,6 +2,7 @@ import { describe, expect, it } from 'vitest';
 import { hash32 } from '../../../engine/numbers/index.ts';
 import {
   adjustedRand,
+  cosine,
   defaultFitSettings,
   fitModel,
   matchThemes,
@@ -285,16 +286,35 @@ describe('a re-fit from the fit before', () => {
     expect(kept / 400).toBeGreaterThan(0.95);
   });
 
-  it('makes at least 20 sweeps before it judges itself settled, at most the limit', () => {
-    const again = fitModel(planted.counts, priors(6), warm(plain, 1), settings);
-    expect(again.sweeps).toBeGreaterThanOrEqual(20);
-    expect(['converged', 'sweep limit']).toContain(again.stopReason);
-    const once = fitModel(planted.counts, priors(6), warm(plain, 1), {
-      ...settings,
-      sweepLimit: 3,
-    });
-    expect(once.sweeps).toBe(3);
-    expect(once.stopReason).toBe('sweep limit');
+  it('judges itself settled by its likelihood, not before 20 sweeps, and stops at the limit', () => {
+    const sweeps = (more: Partial<FitSettings>): [number, string] => {
+      const given = { ...settings, ...more };
+      const fit = fitModel(planted.counts, priors(6), warm(plain, 1), given);
+      return [fit.sweeps, fit.stopReason];
+    };
+    expect(settings.sweepsAtLeast).toBe(20);
+    expect(sweeps({ judgeEvery: 5, tolerance: 1e9 })).toEqual([20, 'converged']);
+    expect(sweeps({ tolerance: -1e9 })).toEqual([40, 'sweep limit']);
+    expect(sweeps({ sweepLimit: 3 })).toEqual([3, 'sweep limit']);
+    // Going on pays while the likelihood rises: by default it stops between the two.
+    expect(sweeps({})[0]).toBeGreaterThanOrEqual(20);
+  });
+
+  it('holds a theme where it was, the more the larger the share of its old counts', () => {
+    // Other passages about other things: without a hold the themes leave their words.
+    const { counts } = plantedCorpus(400, 500, 6, 50, 99);
+    const kept = (hold: number): number => {
+      const start = { ...warm(plain, hold), theta: new Float32Array(400 * 6) } as Start;
+      const fit = fitModel(counts, priors(6), start, settings);
+      const cosines = Array.from({ length: 6 }, (_, k) =>
+        cosine(plain.phi, fit.phi, 500, k * 500, k * 500),
+      );
+      return cosines.reduce((a, b) => a + b, 0) / 6;
+    };
+    const [none, some, all] = [kept(0), kept(1), kept(10)];
+    expect(some).toBeGreaterThan(none + 0.05);
+    expect(all).toBeGreaterThan(some + 0.05);
+    expect(all).toBeGreaterThan(0.95);
   });
 
   it('lets nothing shut out or rejected leak back from the fit before', () => {

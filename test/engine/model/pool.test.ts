@@ -51,6 +51,17 @@ describe('a pool of runs', () => {
     );
   });
 
+  it('begins each run elsewhere, and another seed elsewhere again', () => {
+    const prepared = prepareFit(counts, priors);
+    const phis = [
+      poolRun(prepared, start, settings, 0),
+      poolRun(prepared, start, settings, 1),
+      poolRun(prepared, { ...start, seed: 10 }, settings, 0),
+    ].map(({ phi }) => phi);
+    expect(phis[0]).not.toEqual(phis[1]);
+    expect(phis[0]).not.toEqual(phis[2]);
+  });
+
   it('keeps the bound in its first run only', () => {
     const prepared = prepareFit(counts, priors);
     const bounds = (run: number) =>

@@ -83,6 +83,21 @@ describe('the SIMD kernel and its plain twin', () => {
     });
   }
 
+  it('leaves equal bits where occurrences weigh less than one', () => {
+    const light = {
+      ...counts,
+      counts: counts.counts.map((count, j) => count * (0.1 + (j % 7) / 5)),
+    };
+    const priors = decided(5);
+    const [a, b] = [simd, plainKernel].map((kernel) => {
+      const prepared = prepare('test', light, priors, kernel);
+      startFresh(kernel, prepared.state, light, prepared.priors, [], 7, 0.173, 0.95);
+      for (let i = 0; i < 3; i++) kernel.sweep(prepared.state, 1);
+      return prepared.state;
+    });
+    expect(kept(a)).toEqual(kept(b));
+  });
+
   it('a run of a pool is the same on both', () => {
     const priors = decided(6);
     const start = { kind: 'fresh', seed: 3, leanings: [{ theme: 0, word: 3 }] } as const;
