@@ -66,6 +66,12 @@ const cancelled: Refused = {
   code: 'cancelled',
 };
 
+const broken: Refused = {
+  refused:
+    'This is a fault in Understory: the answer did not arrive. The study on the drive holds everything decided so far. Close the window and open it again.',
+  code: 'fault',
+};
+
 /** The link over whichever shell carries this window. */
 export function connect(page: Page = browserPage()): WindowLink {
   const bridge = page.understory;
@@ -92,6 +98,7 @@ class CarriedLink implements WindowLink {
   }
 
   #stand(connection: Connection): void {
+    if (connection === this.#connection) return;
     const mended = this.#connection.state === 'lost' && connection.state === 'open';
     this.#connection = connection;
     for (const watcher of this.#watchers) watcher(connection);
@@ -171,7 +178,13 @@ function bridgeCarrier(bridge: Bridge, heard: Heard): Carrier {
   bridge.onEvent(heard.event);
   heard.connection(open);
   return {
-    call: (id, method, takes) => bridge.calls[method](id, plain(takes)),
+    call: async (id, method, takes) => {
+      try {
+        return await bridge.calls[method](id, plain(takes));
+      } catch {
+        return broken;
+      }
+    },
     cancel: (id) => bridge.cancel(id),
   };
 }
@@ -208,7 +221,16 @@ function browserPage(): Page {
 const storageKey = 'understory.secret';
 /** The shell's own closing code (main/shells/loopback-server.ts). */
 const closedByShell = 4000;
+const notUnderstood = 4001;
 const pauses = [100, 300, 1000, 2000, 4000];
+
+function read(data: unknown): ToWindow | null {
+  try {
+    return unpack(data as ArrayBuffer) as ToWindow;
+  } catch {
+    return null;
+  }
+}
 
 /**
  * The loopback shell. A token in the address is exchanged once for a secret that the tab keeps, so
@@ -297,7 +319,12 @@ class SocketCarrier implements Carrier {
         opened = true;
         resolve(socket);
       };
-      socket.onmessage = ({ data }) => this.#hear(unpack(data as ArrayBuffer) as ToWindow);
+      socket.onmessage = ({ data }) => {
+        const message = read(data);
+        // An answer that cannot be read would leave its call waiting for ever: begin anew.
+        if (message === null) socket.close(notUnderstood);
+        else this.#hear(message);
+      };
       socket.onclose = ({ code }) => {
         if (opened) this.#closed(code);
         else resolve(null);

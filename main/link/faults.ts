@@ -20,9 +20,12 @@ function kindOf(error: unknown): string {
 
 function placesIn(error: unknown): string {
   if (!(error instanceof Error) || typeof error.stack !== 'string') return '';
-  // The stack begins with the message, which may itself hold lines that look like places.
-  const message = error.stack.indexOf(error.message);
-  const rest = message < 0 ? '' : error.stack.slice(message + error.message.length);
+  // The stack begins with kind and message, which may itself hold lines that look like places. Where
+  // it cannot be told apart, nothing is taken.
+  const { message, stack } = error;
+  const kind = /^[\w$. [\]-]{1,80}/u.exec(stack)?.[0] ?? '';
+  const head = message === '' ? kind : `${kind}: ${message}`;
+  const rest = stack.startsWith(`${head}\n`) ? stack.slice(head.length) : '';
   const places = rest
     .split('\n')
     .map((line) =>

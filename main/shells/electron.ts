@@ -1,0 +1,4 @@
+import { createSession } from '../window/session.ts';
+import { startElectron } from './electron-app.ts';
+
+startElectron(createSession);

@@ -1,0 +1,115 @@
+import { join } from 'node:path';
+import { createInterface } from 'node:readline';
+import { version } from '../../package.json';
+import { faultLog } from '../link/index.ts';
+import { createSession } from '../window/session.ts';
+import type { Session, Surroundings } from '../window/session-types.ts';
+import { accountName } from './account-name.ts';
+import { openInBrowser } from './browser.ts';
+import { startLoopback, type Loopback } from './loopback-server.ts';
+import { placesOfApp, settingsFolder, studiesFolder } from './places.ts';
+import { recentPaths } from './recent-paths.ts';
+import { StaticFiles } from './static-files.ts';
+
+export { hasDisplay } from './browser.ts';
+
+export interface ServeOptions {
+  /** A study to open, as an absolute path, or null. */
+  readonly study: string | null;
+  /** Whether to hand the address to the person's browser. */
+  readonly open: boolean;
+  /** 0 for any free port. */
+  readonly port: number;
+}
+
+/** Serves a session to browser windows until Ctrl-C; the exit code. */
+export async function serve({ study, open, port }: ServeOptions): Promise<number> {
+  const settings = settingsFolder();
+  const log = faultLog(join(settings, 'faults.log'), () => new Date().toISOString());
+  const places = placesOfApp();
+  let shell: Loopback | null = null;
+  const comeForward = (): void => {
+    if (shell !== null) void offer(shell, open);
+  };
+  const session = createSession(surroundings(places.demo, settings, comeForward));
+  const stopped = interrupted();
+  try {
+    shell = await startLoopback({
+      session,
+      files: new StaticFiles(places.window),
+      port,
+      onFault: (where, error) => void log(where, error),
+    });
+    if (study !== null) await openFirst(session, study);
+    await offer(shell, open);
+    say('Press Enter for another address, or Ctrl-C to close the study and stop.');
+    const lines = createInterface({ input: process.stdin });
+    lines.on('line', () => shell !== null && say(`\n  ${shell.newAddress()}\n`));
+    await stopped;
+    lines.close();
+    await shell.close();
+  } catch (error) {
+    if (!isPortTaken(error)) throw error;
+    process.stderr.write(`Port ${port} is in use. Choose another with --port, or leave it out.\n`);
+    return 1;
+  } finally {
+    await session.close();
+  }
+  return 0;
+}
+
+function say(text: string): void {
+  process.stdout.write(`${text}\n`);
+}
+
+async function openFirst({ handlers }: Session, path: string): Promise<void> {
+  const answer = await handlers.openStudy(
+    { path, readOnly: false },
+    { onProgress: () => undefined, signal: new AbortController().signal },
+  );
+  // The window opens all the same, and offers other studies.
+  if ('refused' in answer) say(answer.refused);
+}
+
+/** Shows a window in the person's browser, or says where one can be opened. */
+async function offer(shell: Loopback, open: boolean): Promise<void> {
+  const address = shell.newAddress();
+  if (open && (await openInBrowser(address))) {
+    say('Understory is open in your browser. It stays on this machine and uses no network.');
+    return;
+  }
+  say(`Open this address in a browser on this machine:\n\n  ${address}\n`);
+  say('The address works once and for five minutes.');
+}
+
+function surroundings(demoFolder: string, settings: string, comeForward: () => void): Surroundings {
+  return {
+    about: {
+      version,
+      shell: 'browser',
+      dialogs: false,
+      studiesFolder: studiesFolder(),
+      platform: process.platform,
+      locale: new Intl.DateTimeFormat().resolvedOptions().locale,
+    },
+    dialogs: null,
+    recent: recentPaths(join(settings, 'recent.json')),
+    demoFolder,
+    now: () => new Date().toISOString(),
+    readerName: accountName(),
+    comeForward,
+  };
+}
+
+function interrupted(): Promise<void> {
+  return new Promise((resolve) => {
+    for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP'] as const) {
+      process.once(signal, () => resolve());
+    }
+  });
+}
+
+function isPortTaken(error: unknown): boolean {
+  const code = error instanceof Error && 'code' in error ? error.code : null;
+  return code === 'EADDRINUSE' || code === 'EACCES';
+}
