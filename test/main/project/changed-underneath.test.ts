@@ -1,7 +1,12 @@
 import * as fs from 'node:fs';
 import * as path from 'node:path';
 import { describe, expect, it } from 'vitest';
-import type { StudyFile } from '../../../main/project/index.ts';
+import {
+  nodeStorage,
+  openStudyFile,
+  type Storage,
+  type StudyFile,
+} from '../../../main/project/index.ts';
 import {
   appendSamples,
   contents,
@@ -56,6 +61,29 @@ describe('a study file changed by something else', () => {
       .map((name) => [name, sha256Of(path.join(path.dirname(at), name))]);
     expect(after).toEqual(before);
     expect(file.records).toHaveLength(records);
+  });
+
+  it('while it is being opened is not opened for writing', async () => {
+    const at = newPath();
+    const made = await create(at);
+    appendSamples(made, 2);
+    made.close();
+    const storage: Storage = {
+      ...nodeStorage,
+      open(filePath, how, mode) {
+        const handle = nodeStorage.open(filePath, how, mode);
+        if (how === 'write') {
+          fs.copyFileSync(at, `${at}.new`);
+          fs.renameSync(`${at}.new`, at);
+        }
+        return handle;
+      },
+    };
+    expect(await openStudyFile(at, { storage })).toMatchObject({
+      code: 'changed underneath',
+      how: 'replaced',
+    });
+    appendSamples(await reopen(at), 1);
   });
 
   it('before the first edit is noticed as well', async () => {

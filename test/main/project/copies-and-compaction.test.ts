@@ -1,7 +1,7 @@
 import * as fs from 'node:fs';
 import * as path from 'node:path';
 import { describe, expect, it } from 'vitest';
-import { nodeStorage } from '../../../main/project/index.ts';
+import { nodeStorage, recoverStudyFile, type Storage } from '../../../main/project/index.ts';
 import { faultyStorage } from './faulty-storage.ts';
 import {
   appendSamples,
@@ -71,6 +71,30 @@ describe('saving a copy', () => {
     storage.plan = { at: 1, fault: 'half', counted: ['write'], code: 'ENOSPC' };
     expect(await file.saveCopy(path.join(full, 'copy'))).toMatchObject({ code: 'no space' });
     expect(fs.readdirSync(full)).toEqual([]);
+  });
+});
+
+describe('a file written anew', () => {
+  it('is on the drive before it gets its name, and its name is made lasting after', async () => {
+    const done: string[] = [];
+    const storage: Storage = {
+      ...nodeStorage,
+      write: (...args) => (done.push('write'), nodeStorage.write(...args)),
+      sync: (...args) => (done.push('sync'), nodeStorage.sync(...args)),
+      rename: (...args) => (done.push('rename'), nodeStorage.rename(...args)),
+      syncFolder: (...args) => (done.push('sync folder'), nodeStorage.syncFolder(...args)),
+    };
+    const order = ['write', 'sync', 'rename', 'sync folder'];
+    const file = await create(newPath(), { storage, owner: null });
+    expect(done.splice(0)).toEqual(['write', 'sync', 'sync folder']);
+    appendSamples(file, 2);
+    expect(done.splice(0)).toEqual(['write', 'sync', 'write', 'sync']);
+    valueOf(await file.compact([2]));
+    expect(done.splice(0)).toEqual(order);
+    valueOf(await file.saveCopy(path.join(newFolder(), 'copy')));
+    expect(done.splice(0)).toEqual(order);
+    valueOf(await recoverStudyFile(file.path, path.join(newFolder(), 'new'), { storage }));
+    expect(done.splice(0)).toEqual(order);
   });
 });
 

@@ -208,6 +208,24 @@ describe('a write that fails', () => {
     },
   );
 
+  it('is taken back on the drive too, for else a loss of power could bring it up again', async () => {
+    const done: string[] = [];
+    const plan = { at: 1, fault: 'half' as const, counted: ['write' as const] };
+    const faulty = faultyStorage();
+    const file = await create(newPath(), {
+      storage: {
+        ...faulty,
+        write: (...args) => (done.push('write'), faulty.write(...args)),
+        truncate: (...args) => (done.push('truncate'), faulty.truncate(...args)),
+        sync: (...args) => (done.push('sync'), faulty.sync(...args)),
+      },
+    });
+    done.length = 0;
+    faulty.plan = plan;
+    expect(file.append([], () => ({ type: 'lost' })).ok).toBe(false);
+    expect(done).toEqual(['write', 'truncate', 'sync']);
+  });
+
   it('and cannot be taken back leaves the study read-only', async () => {
     const at = newPath();
     const storage = faultyStorage();
