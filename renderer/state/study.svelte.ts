@@ -1,3 +1,4 @@
+import { untrack } from 'svelte';
 import type { Api, FitProgress, Link, Method, Overview } from '../../main/api.ts';
 
 export type PlaceName = 'gather' | 'read' | 'shape' | 'report';
@@ -77,7 +78,8 @@ export class StudyState {
     takes: Api[Name]['takes'],
     options?: Parameters<Link['call']>[2],
   ): Promise<Api[Name]['gives'] | undefined> {
-    this.#busy++;
+    // Asked from an effect, this must not make the effect depend on what it changes.
+    untrack(() => this.#busy++);
     try {
       const answer = await this.link.call(method, takes, options);
       if ('value' in answer) return answer.value;

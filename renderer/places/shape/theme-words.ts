@@ -12,3 +12,8 @@ export function standingOf(theme: ThemeRowView, people: number): string {
 export function percent(share: number): string {
   return `${Math.round(share * 100)} %`;
 }
+
+/** What stands for the name of a candidate in a list that says beside it that it is one. */
+export function firstWords(theme: ThemeRowView): string {
+  return theme.words.length === 0 ? theme.label : `${theme.words.slice(0, 3).join(', ')} …`;
+}
