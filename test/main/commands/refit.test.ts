@@ -196,7 +196,7 @@ describe('a re-fit keeps what was decided', () => {
       excerpts
         .filter(({ standing }) => standing !== 'suggested')
         .map((row) => ({ ...row, strength: '', theme: '' }))
-        .sort((a, b) => (a['excerpt_id'] < b['excerpt_id'] ? -1 : 1));
+        .sort((a: Row, b: Row) => (a['excerpt_id'] < b['excerpt_id'] ? -1 : 1));
     expect(coded(second)).toHaveLength(3);
     expect(coded(third)).toEqual(coded(second));
   });
