@@ -85,6 +85,8 @@ async function load(
 ): Promise<Loaded | { readonly refusal: { readonly code: string } | MissedFile }> {
   let bytes: Uint8Array;
   try {
+    // A file from the drive lets others be answered meanwhile; so must one that was handed over.
+    if ('bytes' in file) await new Promise((resolve) => setImmediate(resolve));
     bytes = 'bytes' in file ? file.bytes : await readFile(file.path);
   } catch (error) {
     return { refusal: { code: codeOf(error) } };

@@ -4,7 +4,7 @@ const reserved = /^(?:con|prn|aux|nul|com\d|lpt\d)$/iu;
 export function safeFileName(name: string): string {
   const plain = name
     .normalize('NFC')
-     
+
     .replace(/[\u0000-\u001f\u007f<>:"/\\|?*]+/gu, ' ')
     .replace(/\s+/gu, ' ')
     .trim()

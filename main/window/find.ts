@@ -3,8 +3,7 @@ import { visibleThemes } from '../../engine/study/index.ts';
 import { formOf, stemmerFor, type Language, type Prepared } from '../../engine/text/index.ts';
 import type { Found } from '../api.ts';
 import type { OpenStudy } from './open-study.ts';
-import type { Placed } from './passages-now.ts';
-import { pause } from './passages-now.ts';
+import { pause, type Placed } from './passages-now.ts';
 import { inContext } from './word-view.ts';
 
 const mostPassages = 50;
@@ -13,6 +12,7 @@ const mostWords = 8;
 /** Forms of one word that are looked for; the rarest of very many add nothing. */
 const mostForms = 12;
 const shortestBeginning = 3;
+const millisecondsAtOnce = 25;
 
 /** Themes, words, transcripts and passages that a typed text may mean. */
 export async function find(open: OpenStudy, typed: string): Promise<Found> {
@@ -25,7 +25,7 @@ export async function find(open: OpenStudy, typed: string): Promise<Found> {
   const key = plain(text);
   return {
     themes: visibleThemes(study)
-      .map(({ id }) => ({ id, label: now.themes.label(id) }))
+      .map(({ id }) => ({ id, label: now.label(id) }))
       .filter(({ label }) => plain(label).includes(key))
       .slice(0, mostNamed),
     transcripts: now.transcripts
@@ -33,7 +33,7 @@ export async function find(open: OpenStudy, typed: string): Promise<Found> {
       .slice(0, mostNamed)
       .map(({ id, name }) => ({ id, name })),
     words: wordsLike(words, text, language),
-    passages: await passagesWith(open, needlesFor(text, formsOf(words, language), language)),
+    passages: await passagesWith(open, text, needlesFor(text, formsOf(words, language), language)),
   };
 }
 
@@ -98,58 +98,80 @@ function wordsLike(words: Prepared, text: string, language: Language): Found['wo
 interface Needle {
   readonly wholes: readonly string[];
   readonly beginning: string | null;
+  /** How often it is said, about; what is rare is looked for first. */
+  readonly occurrences: number;
 }
 
-/** The typed words by their stems; the last may still be being typed. */
+/** The typed words by their stems, the rarest first; the last may still be being typed. */
 function needlesFor(text: string, { byStem, stem }: Forms, language: Language): Needle[] {
   const typed = text.split(/\s+/u);
-  return typed.flatMap((word, index): Needle[] => {
-    const form = formOf(word, language);
-    const beginning = index === typed.length - 1 && word.length >= shortestBeginning;
-    if (form === null) return [{ wholes: [], beginning: lowered(word) }];
-    const forms = byStem.get(stem(form)) ?? [];
-    const wholes = new Set([form, ...forms.slice(0, mostForms).map((one) => one.form)]);
-    if (!beginning) return [{ wholes: [...wholes], beginning: null }];
-    return [{ wholes: [...wholes].filter((one) => !one.startsWith(form)), beginning: form }];
-  });
+  return typed
+    .map((word, index): Needle => {
+      const form = formOf(word, language);
+      if (form === null) return { wholes: [], beginning: lowered(word), occurrences: 0 };
+      const forms = byStem.get(stem(form)) ?? [];
+      const occurrences = forms.reduce((sum, one) => sum + one.occurrences, 0);
+      const wholes = new Set([form, ...forms.slice(0, mostForms).map((one) => one.form)]);
+      if (index < typed.length - 1 || word.length < shortestBeginning) {
+        return { wholes: [...wholes], beginning: null, occurrences };
+      }
+      const others = [...wholes].filter((one) => !one.startsWith(form));
+      return { wholes: others, beginning: form, occurrences };
+    })
+    .sort((a, b) => a.occurrences - b.occurrences);
 }
 
+/** Passages that hold the text as it was typed, then those in which all of its words are said. */
 async function passagesWith(
-  { now, desk }: OpenStudy,
+  open: OpenStudy,
+  text: string,
   needles: readonly Needle[],
 ): Promise<Found['passages']> {
-  const found: Found['passages'][number][] = [];
+  const phrase = { wholes: [], beginning: lowered(text).replace(/\s+/gu, ' '), occurrences: 0 };
+  const found = new Map<string, Found['passages'][number]>();
+  const searches = needles.length > 1 ? [[phrase], needles] : [needles];
+  for (const search of searches) await lookThrough(open, search, found);
+  return [...found.values()];
+}
+
+async function lookThrough(
+  { now, desk }: OpenStudy,
+  needles: readonly Needle[],
+  found: Map<string, Found['passages'][number]>,
+): Promise<void> {
   let since = performance.now();
-  for (const transcript of now.transcripts) {
-    if (found.length === mostPassages) break;
-    if (performance.now() - since > 25) {
+  for (const { id, name, turns } of now.transcripts) {
+    if (performance.now() - since > millisecondsAtOnce) {
       await pause();
       since = performance.now();
     }
-    if (!now.study.transcripts.has(transcript.id)) continue;
-    const text = desk.text(transcript.id);
-    const searched = searchable(transcript, text);
-    for (const { passage, place } of matches(now.passagesIn(transcript.id), searched, needles)) {
-      if (found.length === mostPassages) break;
-      const { before, word, after } = inContext(text, place.start, place.end);
-      found.push({
-        transcript: transcript.id,
-        start: passage.start,
-        end: passage.end,
-        transcriptName: transcript.name,
+    // Other calls are answered in the pauses, and one of them may have taken it away.
+    if (!now.study.transcripts.has(id)) continue;
+    const text = desk.text(id);
+    const searched = searchable(turns, text);
+    for (const { passage, place } of matches(now.passagesIn(id), searched, needles)) {
+      if (found.size === mostPassages) return;
+      const { start, end } = passage;
+      const key = `${id} ${start}`;
+      if (found.has(key)) continue;
+      const { before, word, after } = inContext(text, place, passage);
+      found.set(key, {
+        transcript: id,
+        start,
+        end,
+        transcriptName: name,
         before,
         match: word,
         after,
       });
     }
   }
-  return found;
 }
 
 const loweredTexts = new WeakMap<Transcript['turns'], string>();
 
 /** A text in the plain form in which it is searched; every offset stays where it is. */
-function searchable({ turns }: Transcript, text: string): string {
+function searchable(turns: Transcript['turns'], text: string): string {
   const known = loweredTexts.get(turns);
   if (known?.length === text.length) return known;
   const made = lowered(text);
@@ -161,7 +183,10 @@ function lowered(text: string): string {
   const lower = text.toLowerCase();
   // Few letters are longer in lower case; a text with one of them keeps its capitals.
   const same = lower.length === text.length ? lower : text;
-  return same.replace(/[’ʼ‘]/gu, "'").replace(/[\u2010\u2011]/gu, '-');
+  return same
+    .replace(/[’ʼ‘]/gu, "'")
+    .replace(/[\u2010\u2011]/gu, '-')
+    .replace(/\s/gu, ' ');
 }
 
 interface Place {
@@ -169,7 +194,7 @@ interface Place {
   readonly end: number;
 }
 
-/** Passages in which each of the words is said, with the place of the first that was typed. */
+/** Passages in which each of the words is said, with the place of the rarest. */
 function matches(
   placed: readonly Placed[],
   text: string,

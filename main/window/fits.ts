@@ -61,7 +61,7 @@ function movedView(open: OpenStudy): MovedView | null {
 }
 
 function inWords({ study, now, desk }: OpenStudy, moved: Moved, ofThemes: number): MovedView {
-  const named = (id: string) => ({ id, label: now.themes.label(id) });
+  const named = (id: string) => ({ id, label: now.label(id) });
   return {
     compared: moved.compared,
     ofThemes,
@@ -85,7 +85,7 @@ function inWords({ study, now, desk }: OpenStudy, moved: Moved, ofThemes: number
       ];
     }),
     themes: moved.themes.map(({ theme, gained, lost }) => ({ ...named(theme), gained, lost })),
-    appeared: moved.appeared.map((id) => now.themes.label(id)),
-    gone: moved.gone.map((id) => now.themes.label(id)),
+    appeared: moved.appeared.map((id) => now.label(id)),
+    gone: moved.gone.map((id) => now.label(id)),
   };
 }

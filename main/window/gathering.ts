@@ -76,7 +76,18 @@ export function gatheringHandlers(
  * Gathers files under one group. A table of attributes among them is not skipped but read, once the
  * transcripts are there.
  */
-async function add(
+function add(
+  room: Room,
+  open: OpenStudy,
+  files: readonly SourceFile[],
+): Promise<{ readonly value: GatherOutcome } | Refused> {
+  // One after the other, or the same file could come in twice; and a study is not closed in between.
+  return room.inTurn(async () =>
+    room.open === open ? addFiles(room, open, files) : refuse('no study'),
+  );
+}
+
+async function addFiles(
   room: Room,
   open: OpenStudy,
   files: readonly SourceFile[],

@@ -4,7 +4,7 @@ import { startGroup, type OpenStudy } from './open-study.ts';
 
 export function namesIn({ study, now }: OpenStudy): Names {
   return {
-    theme: (id) => now.themes.label(id),
+    theme: (id) => now.label(id),
     transcript: (id) => study.transcripts.get(id)?.name ?? 'a transcript that is no more',
     participant: (id) => study.participants.get(id)?.name ?? 'a participant who is no more',
   };

@@ -89,7 +89,7 @@ export class OpenStudy {
 
   #inWords(subject: string): string {
     const { study, now } = this;
-    if (study.themes.has(subject)) return now.themes.label(subject);
+    if (study.themes.has(subject)) return now.label(subject);
     return (
       study.transcripts.get(subject)?.name ??
       study.participants.get(subject)?.name ??

@@ -6,7 +6,7 @@ import { memosOnPassage } from './memos.ts';
 import type { Offer } from './offers-now.ts';
 import type { OpenStudy } from './open-study.ts';
 import type { Placed } from './passages-now.ts';
-import { strengthsOf } from './themes-now.ts';
+import { strengthOf, strengthsOf } from './themes-now.ts';
 
 // "Another theme" offers what the model sees a trace of; the rest is found by name.
 const mostOffered = 5;
@@ -71,20 +71,21 @@ export function strongestIn({ now }: OpenStudy, passage: Placed): Offer[] {
 /** A theme's strength in a passage; null where the fit has none for it. */
 export function strengthIn({ now }: OpenStudy, passage: Placed, theme: string): number | null {
   const column = now.themes.columnOf.get(now.themeOf(theme) ?? '');
-  const strengths = column === undefined ? null : strengthsOf(now.themes, passage.row);
+  const strength = column === undefined ? null : strengthOf(now.themes, passage.row, column);
   // Sums of f32 may stand a hair above one.
-  return strengths === null ? null : Math.min(1, strengths[column as number]);
+  return strength === null ? null : Math.min(1, strength);
 }
 
 function suggestionView(
-  { now: { themes } }: OpenStudy,
+  { now }: OpenStudy,
   { row }: Placed,
   { column, strength }: Offer,
 ): SuggestionView {
+  const { themes } = now;
   const theme = themes.columns[column];
   return {
     theme,
-    themeName: themes.label(theme),
+    themeName: now.label(theme),
     strength,
     carriedBy: carriedBy(themes, row, column),
   };
@@ -96,7 +97,7 @@ function codingView({ study, now }: OpenStudy, coding: Coding): CodingView {
     id: coding.id,
     span: coding.span,
     theme,
-    themeName: now.themes.label(theme),
+    themeName: now.label(theme),
     standing: coding.standing,
     memo: coding.memo,
     reader: study.readers.get(coding.under.reader)?.name ?? '',

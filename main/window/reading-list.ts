@@ -63,8 +63,8 @@ function nameOf(
   const list = kind === 'random draw' ? `random draw of ${count}, seed ${seed}` : kind;
   const where = transcript === null ? undefined : study.transcripts.get(transcript)?.name;
   return [
-    kind === 'one theme' ? `one theme: ${now.themes.label(theme ?? '')}` : list,
-    ...(theme !== null && kind !== 'one theme' ? [`with ${now.themes.label(theme)}`] : []),
+    kind === 'one theme' ? `one theme: ${now.label(theme ?? '')}` : list,
+    ...(theme !== null && kind !== 'one theme' ? [`with ${now.label(theme)}`] : []),
     ...(where === undefined ? [] : [`in ${where}`]),
     ...(unreadOnly ? ['unread'] : []),
   ].join(', ');

@@ -141,7 +141,7 @@ function reject(open: OpenStudy, request: CodeRequest): Refused | null {
   const rejected = mine.find((coding) => coding.standing === 'rejected');
   if (rejected !== undefined) return withMemo(open, rejected, request.memo);
   const whole = mine.filter((coding) => sameSpan(coding.span, span));
-  if (whole.length < mine.length) return refuse('part coded', open.now.themes.label(theme.id));
+  if (whole.length < mine.length) return refuse('part coded', open.now.label(theme.id));
   return open.decide([
     ...whole.map((coding): Edit => ({ kind: 'codingRemoved', coding })),
     made(open, request, passage, span, theme, 'rejected'),

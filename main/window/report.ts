@@ -119,7 +119,7 @@ function filterFor(
 ): string {
   const sentence = filterSentence(standings, count);
   if (themes === null) return sentence;
-  const labels = themes.map((id) => now.themes.label(id));
+  const labels = themes.map((id) => now.label(id));
   return `${sentence.replace(/\.$/u, '')}; themes: ${labels.length === 0 ? 'none' : labels.join(', ')}.`;
 }
 

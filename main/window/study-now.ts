@@ -7,6 +7,7 @@ import {
   type StudySettings,
 } from '../../engine/themes/index.ts';
 import { transcriptsInOrder, type Desk } from '../desk.ts';
+import { themeName } from '../reports/theme-name.ts';
 import { wordLists } from '../word-lists.ts';
 import { runPrepare } from '../work/run-prepare.ts';
 import { decidedIn, type DecidedTranscript } from './decided-now.ts';
@@ -14,7 +15,7 @@ import { Kept, KeptEach } from './kept.ts';
 import { offersIn, type OffersIn } from './offers-now.ts';
 import { PassagesNow, type PassageBasis, type Placed } from './passages-now.ts';
 import { sinceFit, type SinceFit } from './since-fit.ts';
-import { themesNow, type ThemesNow } from './themes-now.ts';
+import { columnsKey, themesNow, type ThemesNow } from './themes-now.ts';
 
 /**
  * What the views read: the study as it stands, and everything that follows from it, each kept until
@@ -28,7 +29,9 @@ export class StudyNow {
   readonly #order = new Kept<readonly Transcript[]>();
   readonly #settings = new Kept<StudySettings>();
   readonly #since = new Kept<SinceFit | null>();
+  readonly #columnsKey = new Kept<string>();
   readonly #themes = new Kept<ThemesNow>();
+  readonly #labels = new Kept<Map<string, string>>();
   readonly #decided = new KeptEach<string, DecidedTranscript>();
   readonly #offers = new KeptEach<string, OffersIn>();
   readonly #prepared = new Kept<Promise<Prepared>>();
@@ -73,9 +76,22 @@ export class StudyNow {
     );
   }
 
+  /** Names and words of themes are no part of it, so that a rename leaves it alone. */
   get themes(): ThemesNow {
     const { study, fitted } = this;
-    return this.#themes.get([study.themes, fitted], () => themesNow(study, fitted));
+    const key = this.#columnsKey.get([study.themes], () => columnsKey(study));
+    return this.#themes.get([key, fitted], () => themesNow(study, fitted));
+  }
+
+  /** What a theme is called on screen. */
+  label(id: string): string {
+    const { study, fitted } = this;
+    const labels = this.#labels.get([study.themes, fitted], () => new Map());
+    const theme = resolveTheme(study, id);
+    if (theme === undefined) return 'a theme that is no more';
+    const known = labels.get(theme.id) ?? themeName(theme, fitted);
+    labels.set(theme.id, known);
+    return known;
   }
 
   /** Resolves once every passage can be had at once. */

@@ -32,7 +32,7 @@ function themeRow(
   return {
     id: theme.id,
     name: theme.name,
-    label: themes.label(theme.id),
+    label: now.label(theme.id),
     origin: theme.origin,
     pinned: theme.pinned,
     setAside: theme.setAside,

@@ -10,7 +10,7 @@ import type { Placed } from './passages-now.ts';
 import { spreadOf } from './spread.ts';
 import { themeRows } from './theme-rows.ts';
 import { formFor, wordsOfColumn } from './theme-words.ts';
-import { strengthsOf } from './themes-now.ts';
+import { strengthOf } from './themes-now.ts';
 
 const wordsShown = 30;
 const passagesShown = 40;
@@ -95,10 +95,9 @@ function passageViews(
     now.passagesIn(id).forEach((passage, index) => {
       const decided = passages[index];
       const coded = codingOf(open, decided, theme) !== null;
-      const strengths = column === undefined ? null : strengthsOf(now.themes, passage.row);
-      const strength = strengths === null ? 0 : strengths[column as number];
-      if (coded || (strengths !== null && passage.countedWords >= enough)) {
-        all.push({ passage, decided, strength });
+      const strength = column === undefined ? null : strengthOf(now.themes, passage.row, column);
+      if (coded || (strength !== null && passage.countedWords >= enough)) {
+        all.push({ passage, decided, strength: strength ?? 0 });
       }
     });
   }

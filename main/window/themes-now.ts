@@ -1,6 +1,5 @@
-import { resolveTheme, type Study, type Theme } from '../../engine/study/index.ts';
+import { resolveTheme, type Study } from '../../engine/study/index.ts';
 import type { Fitted } from '../../engine/themes/index.ts';
-import { themeName } from '../reports/theme-name.ts';
 
 /** The themes of the fit on screen as they stand now: merges followed, in codebook order. */
 export interface ThemesNow {
@@ -14,8 +13,6 @@ export interface ThemesNow {
   /** Rows of the fit in each column. */
   readonly rows: readonly (readonly number[])[];
   readonly fitted: Fitted | null;
-  /** What a theme is called on screen. */
-  readonly label: (id: string) => string;
 }
 
 export function themesNow(study: Study, fitted: Fitted | null): ThemesNow {
@@ -26,7 +23,6 @@ export function themesNow(study: Study, fitted: Fitted | null): ThemesNow {
   const columnOfRow = Int32Array.from(resolved, (theme) =>
     theme === undefined ? -1 : (columnOf.get(theme.id) ?? -1),
   );
-  const labels = new Map<string, string>();
   return {
     columns,
     columnOf,
@@ -36,18 +32,26 @@ export function themesNow(study: Study, fitted: Fitted | null): ThemesNow {
       [...columnOfRow].flatMap((each, row) => (each === column ? [row] : [])),
     ),
     fitted,
-    label: (id) => {
-      const theme = resolveTheme(study, id);
-      if (theme === undefined) return 'a theme that is no more';
-      const known = labels.get(theme.id) ?? themeLabel(theme, fitted);
-      labels.set(theme.id, known);
-      return known;
-    },
   };
 }
 
-function themeLabel(theme: Theme, fitted: Fitted | null): string {
-  return themeName(theme, fitted);
+/** All of a study that its columns depend on, as one value to compare. */
+export function columnsKey({ themes }: Study): string {
+  return JSON.stringify(
+    [...themes.values()].map(({ id, mergedInto, setAside }) => [id, mergedInto, setAside]),
+  );
+}
+
+/** A passage's strength in one column, or null where the fit counted nothing in it. */
+export function strengthOf(
+  { fitted, columnOfRow, rows }: ThemesNow,
+  row: number,
+  column: number,
+): number | null {
+  if (fitted === null || row < 0 || fitted.words.passages[row].countedWords === 0) return null;
+  let strength = 0;
+  for (const each of rows[column]) strength += fitted.theta[row * columnOfRow.length + each];
+  return strength;
 }
 
 /** A passage's strength in each column, or null where the fit counted nothing in it. */

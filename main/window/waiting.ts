@@ -67,15 +67,27 @@ const kinds: readonly (readonly [Kind, string, string, string, string])[] = [
   ['pin', 'theme pinned', 'themes pinned', 'theme unpinned', 'themes unpinned'],
   ['seed', 'word seeded', 'words seeded', 'seed taken away', 'seeds taken away'],
   ['shut out', 'word shut out', 'words shut out', 'word let in again', 'words let in again'],
-  ['confirmed', 'confirmed', 'confirmed', 'confirmation removed', 'confirmations removed'],
+  [
+    'confirmed',
+    'coding confirmed',
+    'codings confirmed',
+    'confirmation removed',
+    'confirmations removed',
+  ],
   [
     'by hand',
-    'coded by hand',
-    'coded by hand',
+    'coding by hand',
+    'codings by hand',
     'coding by hand removed',
     'codings by hand removed',
   ],
-  ['rejected', 'rejected', 'rejected', 'rejection removed', 'rejections removed'],
+  [
+    'rejected',
+    'suggestion rejected',
+    'suggestions rejected',
+    'rejection removed',
+    'rejections removed',
+  ],
 ];
 
 function phrase(count: number | undefined, one: string, more: string): string[] {

@@ -1,4 +1,4 @@
-import type { Refused, WordView } from '../api.ts';
+import type { Refused, Span, WordView } from '../api.ts';
 import { give, refuse } from './answers.ts';
 import type { OpenStudy } from './open-study.ts';
 import { formFor, placeOf } from './theme-words.ts';
@@ -42,7 +42,7 @@ export async function wordView(
         start: passage.start,
         end: passage.end,
         transcriptName: transcript.name,
-        ...inContext(desk.text(passage.transcript), start, end),
+        ...inContext(desk.text(passage.transcript), { start, end }, passage),
       });
     }
   }
@@ -56,7 +56,7 @@ export async function wordView(
     themes: themes.columns
       .map((id, column) => ({
         id,
-        label: themes.label(id),
+        label: now.label(id),
         share: all > 0 ? parts[column] / all : 0,
       }))
       .filter(({ share }) => share >= leastShare)
@@ -81,19 +81,20 @@ function addParts({ now }: OpenStudy, passage: number, word: number, parts: Floa
   }
 }
 
-/** A word with some of what is said around it, cut between words. */
+/** A word with some of what is said around it in its passage, cut between words. */
 export function inContext(
   text: string,
-  start: number,
-  end: number,
+  { start, end }: Span,
+  passage: Span,
 ): { readonly before: string; readonly word: string; readonly after: string } {
-  const from = Math.max(0, start - aroundWord);
+  const from = Math.max(passage.start, start - aroundWord);
+  const to = Math.min(passage.end, end + aroundWord);
   const before = text.slice(from, start);
-  const after = text.slice(end, end + aroundWord);
+  const after = text.slice(end, to);
   return {
-    before: oneLine(from === 0 ? before : before.replace(/^\S*\s/u, '')),
+    before: oneLine(from === passage.start ? before : before.replace(/^\S*\s/u, '')),
     word: text.slice(start, end),
-    after: oneLine(end + aroundWord >= text.length ? after : after.replace(/\s\S*$/u, '')),
+    after: oneLine(to === passage.end ? after : after.replace(/\s\S*$/u, '')),
   };
 }
 
