@@ -1,0 +1,207 @@
+import type { Page } from 'playwright-core';
+
+/** A view worth looking at: reached from the one before in the same window. */
+export interface Scene {
+  readonly name: string;
+  readonly reach: (page: Page) => Promise<unknown>;
+}
+
+const button = (page: Page, name: string | RegExp) => page.getByRole('button', { name });
+const place = (page: Page, name: string) =>
+  page.getByRole('navigation', { name: 'Places' }).getByRole('button', { name }).click();
+const closeDialog = async (page: Page): Promise<void> => {
+  await page.keyboard.press('Escape');
+  await page.getByRole('dialog').waitFor({ state: 'detached' });
+};
+const fromMore = async (page: Page, item: string): Promise<void> => {
+  await button(page, /^More/u).click();
+  await page.getByRole('menuitem', { name: item }).click();
+};
+
+/** Every place, dialog and empty state, in an order that a person could follow. */
+export const scenes: readonly Scene[] = [
+  {
+    name: 'first-run',
+    reach: (page) => page.getByRole('heading', { name: 'Understory' }).waitFor(),
+  },
+  {
+    name: 'first-run-start',
+    reach: async (page) => {
+      await button(page, 'Start a study').click();
+      await page.getByRole('dialog').waitFor();
+    },
+  },
+  {
+    name: 'gather-empty',
+    reach: async (page) => {
+      await page.getByLabel('Name of the study').fill('An empty study');
+      await button(page, 'Start the study').click();
+      await page.getByText('Bring in your transcripts').waitFor();
+    },
+  },
+  { name: 'read-empty', reach: (page) => place(page, 'Read') },
+  { name: 'shape-empty', reach: (page) => place(page, 'Shape') },
+  { name: 'report-empty', reach: (page) => place(page, 'Report') },
+  {
+    name: 'study-names',
+    reach: async (page) => {
+      await button(page, /^Study/u).click();
+      await page.getByRole('menuitem', { name: 'Study and reader names' }).click();
+      await page.getByRole('dialog').waitFor();
+    },
+  },
+  {
+    name: 'first-run-open',
+    reach: async (page) => {
+      await closeDialog(page);
+      await button(page, /^Study/u).click();
+      await page.getByRole('menuitem', { name: 'Close the study' }).click();
+      await button(page, 'Open a study').click();
+      await page.getByRole('dialog').waitFor();
+    },
+  },
+  {
+    name: 'shape',
+    reach: async (page) => {
+      await closeDialog(page);
+      await button(page, 'Open the demo study').click();
+      await page.getByRole('heading', { name: 'Strata' }).waitFor({ timeout: 120_000 });
+      await page.getByText('Strongest passages').waitFor();
+    },
+  },
+  {
+    name: 'shape-name',
+    reach: async (page) => {
+      await button(page, 'Name it').click();
+      await page.getByRole('dialog').waitFor();
+    },
+  },
+  {
+    name: 'shape-named',
+    reach: async (page) => {
+      await page
+        .getByLabel('Name', { exact: true })
+        .fill('Getting to appointments on the mainland and back again within the same week');
+      await button(page, 'Save name').click();
+      await page.getByRole('dialog').waitFor({ state: 'detached' });
+      await button(page, 'Pin').click();
+      await button(page, 'Unpin').waitFor();
+    },
+  },
+  {
+    name: 'shape-define',
+    reach: async (page) => {
+      await button(page, 'Define').click();
+      await page.getByRole('dialog').waitFor();
+    },
+  },
+  {
+    name: 'shape-defined',
+    reach: async (page) => {
+      await page
+        .getByLabel('Brief definition')
+        .fill(
+          'Reaching medical and official appointments on the mainland; nights away, rebooking.',
+        );
+      await page.getByLabel('When not to use').fill('Visits for pleasure.');
+      await button(page, 'Save entry').click();
+      await page.getByRole('dialog').waitFor({ state: 'detached' });
+    },
+  },
+  {
+    name: 'shape-word-menu',
+    reach: async (page) => {
+      await page.locator('.word').nth(3).click();
+      await page.getByRole('menuitem', { name: 'Where it is said' }).waitFor();
+    },
+  },
+  {
+    name: 'shape-word',
+    reach: async (page) => {
+      await page.getByRole('menuitem', { name: 'Where it is said' }).click();
+      await page.getByRole('dialog').getByRole('listitem').first().waitFor();
+    },
+  },
+  {
+    name: 'shape-merge',
+    reach: async (page) => {
+      await closeDialog(page);
+      await fromMore(page, 'Merge with another …');
+      await page.getByRole('radio').first().check();
+    },
+  },
+  {
+    name: 'shape-memo',
+    reach: async (page) => {
+      await closeDialog(page);
+      await fromMore(page, 'Write a memo');
+      await page.getByRole('dialog').waitFor();
+    },
+  },
+  {
+    name: 'shape-add',
+    reach: async (page) => {
+      await closeDialog(page);
+      await button(page, 'Add a theme').click();
+      await page.getByRole('dialog').waitFor();
+    },
+  },
+  {
+    name: 'shape-waiting',
+    reach: async (page) => {
+      await page.getByLabel('Name', { exact: true }).fill('Not being asked');
+      await page.getByRole('textbox', { name: 'Seed words' }).fill('survey meeting council');
+      await button(page, 'Add the theme').click();
+      await page.getByRole('dialog').waitFor({ state: 'detached' });
+      await page.getByText(/Waiting:/u).waitFor();
+    },
+  },
+  {
+    name: 'shape-moved',
+    reach: async (page) => {
+      await button(page, 'Re-fit').click();
+      await page.getByRole('heading', { name: 'What moved' }).waitFor({ timeout: 120_000 });
+    },
+  },
+  {
+    name: 'shape-scratch',
+    reach: async (page) => {
+      await button(page, 'Keep this fit').click();
+      await button(page, /From scratch/u).click();
+      await page.getByRole('dialog').waitFor();
+    },
+  },
+  {
+    name: 'find',
+    reach: async (page) => {
+      await closeDialog(page);
+      await page.keyboard.press('Control+k');
+      await page.getByPlaceholder('Passages, words, themes, transcripts').fill('diesel');
+      await page.getByRole('dialog').getByRole('listitem').first().waitFor();
+    },
+  },
+  {
+    name: 'gather',
+    reach: async (page) => {
+      await closeDialog(page);
+      await place(page, 'Gather');
+      await page.getByRole('tab', { name: 'Transcripts' }).waitFor();
+    },
+  },
+  {
+    name: 'gather-participants',
+    reach: (page) => page.getByRole('tab', { name: /Participants/u }).click(),
+  },
+  {
+    name: 'gather-words',
+    reach: (page) => page.getByRole('tab', { name: 'What is counted' }).click(),
+  },
+  { name: 'read', reach: (page) => place(page, 'Read') },
+  { name: 'report', reach: (page) => place(page, 'Report') },
+];
+
+/** The window sizes that every screen must hold at. */
+export const sizes = [
+  { width: 1280, height: 800 },
+  { width: 1600, height: 1000 },
+] as const;
