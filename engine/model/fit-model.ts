@@ -1,10 +1,8 @@
-import { sum } from '../numbers/index.ts';
 import { boundOf } from './bound.ts';
 import { collapsedBound } from './collapsed/history.ts';
 import { prepare, type Prepared } from './collapsed/prepare.ts';
 import { poolRun, warmRun, type FreshStart, type Run } from './collapsed/runs.ts';
 import { themeSizes } from './collapsed/state.ts';
-import { passageLengths } from './check-counts.ts';
 import { consensus } from './consensus.ts';
 import { foldIn, proportions } from './fold-in.ts';
 import { liftSeeds } from './lift-seeds.ts';
@@ -79,24 +77,24 @@ function finishFit(
   runs: readonly Run[],
   stopReason: StopReason,
 ): ModelFit {
-  const { counts, priors, kernel, state, countedWords } = prepared;
+  const { counts, priors, kernel, state } = prepared;
   liftSeeds(phi, counts, priors);
   foldIn(kernel, state, priors, phi, settings.foldPasses);
   const theta = proportions(state, priors);
   const terms = collapsedBound(prepared);
-  const surprise = unexplained(counts, priors.themes, theta, phi);
   const trace = runs.length > 0 ? runs[0].trace : [];
   const answer: TracePoint = {
     sweep: trace.length + 1,
     bound: boundOf(terms),
-    likelihood: countedWords > 0 ? -meanOverWords(prepared, surprise) : 0,
+    // The words of a fold have been seen by it: no prediction.
+    likelihood: null,
     change: 0,
   };
   return {
     theta,
     phi,
     themeWords: themeSizes(state),
-    unexplained: surprise,
+    unexplained: unexplained(counts, priors.themes, theta, phi),
     trace: [...trace, answer],
     sweeps: runs.reduce((total, run) => total + run.sweeps, 0),
     stopReason,
@@ -117,12 +115,6 @@ function pinnedThemes({ counts, priors }: Prepared): Float32Array {
   const phi = new Float32Array(priors.themes * counts.words);
   priors.pinned.forEach((row, k) => row && phi.set(row, k * counts.words));
   return phi;
-}
-
-/** A passage's mean over its words, averaged over all counted words. */
-function meanOverWords({ counts, countedWords }: Prepared, means: Float32Array): number {
-  const lengths = passageLengths(counts);
-  return sum(lengths.map((length, d) => means[d] * length)) / countedWords;
 }
 
 function partOf(watcher: Watcher | undefined, part: number, parts: number): Watcher | undefined {

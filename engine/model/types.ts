@@ -71,7 +71,10 @@ export interface TracePoint {
   readonly sweep: number;
   /** Evidence lower bound in nats, evaluated at this sweep; null where it was not evaluated. */
   readonly bound: number | null;
-  /** Predictive log likelihood a counted word, in nats; null where it was not evaluated. */
+  /**
+   * Predictive log likelihood a counted word, in nats, each occurrence given all the others; null
+   * where it was not evaluated.
+   */
   readonly likelihood: number | null;
   /** Mean absolute change of the responsibilities a counted word in this sweep. */
   readonly change: number;

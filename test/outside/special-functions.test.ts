@@ -2,7 +2,7 @@ import { describe, expect, it } from 'vitest';
 import { digamma, exp, expDigamma, lgamma, log, trigamma } from '../../engine/numbers/index.ts';
 import values from './values/special-functions.json' with { type: 'json' };
 
-// Values by mpmath with 50 digits (values/special_functions.py); definitions in Abramowitz & Stegun
+// Values by mpmath with 50 digits (values/special-functions.py); definitions in Abramowitz & Stegun
 // 1964, 6.1, 6.3, 6.4.
 
 /** Relative error; absolute where the value itself is 0. */

@@ -1,4 +1,4 @@
-"""Makes special-functions.json with mpmath (arbitrary precision): python3 special_functions.py
+"""Makes special-functions.json with mpmath (arbitrary precision): python3 special-functions.py
 
 Definitions: Abramowitz & Stegun 1964, sections 6.1, 6.3, 6.4; DLMF 5.4, 5.15 (section numbers from
 memory). The values of exp(digamma), exp and log are mpmath's own. The Dirichlet divergences are the
