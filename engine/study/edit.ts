@@ -4,6 +4,7 @@ import type {
   Coding,
   CodingId,
   Definition,
+  EvidenceKind,
   Fit,
   FitId,
   Memo,
@@ -11,6 +12,7 @@ import type {
   None,
   Participant,
   ParticipantId,
+  PlainValue,
   Reader,
   SettingValue,
   Speaker,
@@ -170,6 +172,15 @@ export type Edit =
       readonly fit: FitId;
       readonly from: string | null;
       readonly to: string | null;
+    }
+  | {
+      readonly kind: 'evidenceGathered';
+      readonly fit: FitId;
+      readonly what: EvidenceKind;
+      /** Plain JSON; null takes it away. */
+      readonly result: PlainValue;
+      /** What stood there before; null for nothing. */
+      readonly before: PlainValue;
     };
 
 export type EditKind = Edit['kind'];

@@ -151,6 +151,13 @@ export interface Memo {
   readonly at: string;
 }
 
+/** Plain JSON: finite numbers only. */
+export type PlainValue =
+  string | number | boolean | null | readonly PlainValue[] | { readonly [key: string]: PlainValue };
+
+/** What can be measured about a fit afterwards; engine/evidence gives the results their shapes. */
+export type EvidenceKind = 'steadiness' | 'how many';
+
 /** What a fit was made from and what came out: enough to make it again, bit for bit. */
 export interface Fit {
   readonly id: FitId;
@@ -196,6 +203,8 @@ export interface Fit {
   readonly words: BlobRef;
   /** Proportions and distributions, f32. */
   readonly result: BlobRef;
+  /** The newest evidence of each kind; absent before any was gathered. */
+  readonly evidence?: { readonly [Kind in EvidenceKind]?: PlainValue };
 }
 
 /** A chain of units that undo or redo can reach, newest first. */

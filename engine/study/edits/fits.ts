@@ -1,10 +1,14 @@
 import { done, refused } from '../refusal.ts';
-import type { FitId, Study } from '../study.ts';
+import type { EvidenceKind, FitId, Study } from '../study.ts';
 import { isModelled } from '../themes.ts';
 import { isReferredTo, nameFault, outsideModel } from './themes.ts';
 import { sameJson, withEntry, withoutEntry, type Rules } from './rule.ts';
 
-export const fitRules: Rules<'modelFitted' | 'fitRemoved' | 'fitChosen' | 'fitRenamed'> = {
+const evidenceKinds: readonly EvidenceKind[] = ['steadiness', 'how many'];
+
+export const fitRules: Rules<
+  'modelFitted' | 'fitRemoved' | 'fitChosen' | 'fitRenamed' | 'evidenceGathered'
+> = {
   modelFitted: {
     apply(study, { fit, found, before }) {
       if (study.fits.has(fit.id)) return refused('already there', fit.id);
@@ -69,7 +73,38 @@ export const fitRules: Rules<'modelFitted' | 'fitRemoved' | 'fitChosen' | 'fitRe
     },
     inverse: ({ fit, from, to }) => ({ kind: 'fitRenamed', fit, from: to, to: from }),
   },
+
+  evidenceGathered: {
+    apply(study, { fit: id, what, result, before }) {
+      const current = study.fits.get(id);
+      if (current === undefined) return refused('unknown fit', id);
+      if (!isPlain(result)) return refused('unusable value', what);
+      const { evidence = {}, ...fit } = current;
+      if (!sameJson(evidence[what] ?? null, before)) return refused('changed since', id);
+      // In a fixed order, so that taking back restores the same bytes.
+      const kept = evidenceKinds.flatMap((kind) => {
+        const value = kind === what ? result : (evidence[kind] ?? null);
+        return value === null ? [] : [[kind, value] as const];
+      });
+      const changed = kept.length === 0 ? fit : { ...fit, evidence: Object.fromEntries(kept) };
+      return done({ ...study, fits: withEntry(study.fits, id, changed) });
+    },
+    inverse: ({ fit, what, result, before }) => ({
+      kind: 'evidenceGathered',
+      fit,
+      what,
+      result: before,
+      before: result,
+    }),
+  },
 };
+
+/** Whether a value comes back from JSON as it was. */
+function isPlain(value: unknown): boolean {
+  if (typeof value === 'number') return Number.isFinite(value);
+  if (value === null || typeof value === 'string' || typeof value === 'boolean') return true;
+  return typeof value === 'object' && Object.values(value).every(isPlain);
+}
 
 function isFitInUse(study: Study, id: FitId): boolean {
   for (const { start } of study.fits.values()) if (start.from === id) return true;

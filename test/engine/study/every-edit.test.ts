@@ -73,6 +73,8 @@ const secondFitting = {
 } as const;
 const fittedTwice = after(island, secondFitting);
 
+const steady = { themes: [{ steadiness: 0.75, passages: 4 }], floor: 0.5, note: null };
+
 const wordedOnce: TextState = {
   text: harbour.text,
   length: harbour.length,
@@ -862,6 +864,54 @@ const cases: { readonly [Kind in EditKind]: readonly Case<Kind>[] } = {
       does: 'names a fit',
       edit: { kind: 'fitRenamed', fit: 'first-fit', from: null, to: 'Pilot' },
       expected: { fits: having(island.fits, 'first-fit', { ...firstFit, name: 'Pilot' }) },
+    },
+  ],
+  evidenceGathered: [
+    {
+      does: 'keeps what was measured with its fit',
+      edit: {
+        kind: 'evidenceGathered',
+        fit: 'first-fit',
+        what: 'steadiness',
+        result: steady,
+        before: null,
+      },
+      expected: {
+        fits: having(island.fits, 'first-fit', { ...firstFit, evidence: { steadiness: steady } }),
+      },
+    },
+    {
+      does: 'takes the place of older evidence of its kind alone',
+      before: after(
+        island,
+        {
+          kind: 'evidenceGathered',
+          fit: 'first-fit',
+          what: 'how many',
+          result: [3, 4],
+          before: null,
+        },
+        {
+          kind: 'evidenceGathered',
+          fit: 'first-fit',
+          what: 'steadiness',
+          result: steady,
+          before: null,
+        },
+      ),
+      edit: {
+        kind: 'evidenceGathered',
+        fit: 'first-fit',
+        what: 'steadiness',
+        result: { themes: [] },
+        before: steady,
+      },
+      expected: {
+        fits: having(island.fits, 'first-fit', {
+          ...firstFit,
+          evidence: { 'how many': [3, 4], steadiness: { themes: [] } },
+        }),
+      },
     },
   ],
 };

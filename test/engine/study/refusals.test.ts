@@ -298,6 +298,17 @@ const refusals: { readonly [Code in RefusalCode]: readonly Case[] } = {
       edit: { kind: 'fitRenamed', fit: 'first-fit', from: 'a', to: 'b' },
       subject: 'first-fit',
     },
+    {
+      what: 'to replace evidence that is not the evidence there is',
+      edit: {
+        kind: 'evidenceGathered',
+        fit: 'first-fit',
+        what: 'steadiness',
+        result: [1],
+        before: [2],
+      },
+      subject: 'first-fit',
+    },
   ],
   'codings remain': [
     {
@@ -883,6 +894,17 @@ const refusals: { readonly [Code in RefusalCode]: readonly Case[] } = {
       subject: 'gone',
     },
     {
+      what: 'evidence about a fit that is not there',
+      edit: {
+        kind: 'evidenceGathered',
+        fit: 'gone',
+        what: 'how many',
+        result: {},
+        before: null,
+      },
+      subject: 'gone',
+    },
+    {
       what: 'to take back a fit that is not there',
       edit: { kind: 'fitRemoved', fit: fit('gone'), found: [], before: null },
       subject: 'gone',
@@ -1091,6 +1113,17 @@ const refusals: { readonly [Code in RefusalCode]: readonly Case[] } = {
     },
   ],
   'unusable value': [
+    {
+      what: 'evidence that JSON would not bring back',
+      edit: {
+        kind: 'evidenceGathered',
+        fit: 'first-fit',
+        what: 'steadiness',
+        result: { themes: [{ steadiness: Number.NaN }] },
+        before: null,
+      },
+      subject: 'steadiness',
+    },
     { what: 'a setting that is not a number', edit: setting(NaN), subject: 'model.themes' },
     { what: 'an infinite setting', edit: setting(Infinity), subject: 'model.themes' },
     { what: 'an object for a setting', edit: setting({}), subject: 'model.themes' },
