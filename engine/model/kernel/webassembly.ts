@@ -1,7 +1,7 @@
 // The type checks of other rooms reach this file without reading its folder.
 // eslint-disable-next-line @typescript-eslint/triple-slash-reference
 /// <reference path="./compiled.d.ts" />
-import * as compiled from './sweep.as.ts?wasm';
+import bytes from './sweep.as.ts?wasm';
 import type { Exponent, Kernel } from './kernel.ts';
 import type { MeanFieldState } from './expectation.ts';
 import type { SweepState } from './state.ts';
@@ -27,14 +27,11 @@ const firstByte = 65536;
 
 const rootsOf: Readonly<Record<Exponent, number>> = { 1: 0, 0.5: 1, 0.75: 2, 0.875: 3 };
 
-/**
- * The SIMD kernel, or null where WebAssembly or its SIMD is missing, or the build did not compile it
- * (it warns of an undefined import then).
- */
+/** The SIMD kernel, or null where WebAssembly or its SIMD is missing. */
 export function webAssemblyKernel(): Kernel | null {
   let module: object;
   try {
-    module = new WebAssembly.Module(compiled.default);
+    module = new WebAssembly.Module(bytes);
   } catch {
     return null;
   }
@@ -48,8 +45,8 @@ export function webAssemblyKernel(): Kernel | null {
   const at = (array: { readonly byteOffset: number }): number => array.byteOffset;
 
   return {
-    allocate: (bytes) => {
-      const initial = Math.ceil((firstByte + bytes) / pageBytes);
+    allocate: (size) => {
+      const initial = Math.ceil((firstByte + size) / pageBytes);
       const memory = new WebAssembly.Memory({ initial });
       const instance = new WebAssembly.Instance(module, { env: { memory } });
       compiledFor.set(memory.buffer, instance.exports as Compiled);
