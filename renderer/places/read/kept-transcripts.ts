@@ -3,9 +3,21 @@ import type { PassagePlace, PassageView, TranscriptView } from '../../../main/ap
 /** The transcripts that were read last; a change makes another of it. Newest last. */
 export class KeptTranscripts {
   readonly #views: readonly TranscriptView[];
+  readonly #fresh: readonly string[];
 
-  constructor(views: readonly TranscriptView[] = []) {
+  constructor(views: readonly TranscriptView[] = [], fresh: readonly string[] = []) {
     this.#views = views;
+    this.#fresh = fresh;
+  }
+
+  /** Whether a transcript is kept as the study has it now. */
+  isFresh(id: string): boolean {
+    return this.#fresh.includes(id);
+  }
+
+  /** The same to look at; each has to be asked for again. */
+  outdated(): KeptTranscripts {
+    return new KeptTranscripts(this.#views);
   }
 
   get(id: string): TranscriptView | null {
@@ -20,7 +32,8 @@ export class KeptTranscripts {
       if (oldest < 0) break;
       others.splice(oldest, 1);
     }
-    return new KeptTranscripts([...others, view]);
+    const fresh = this.#fresh.filter((id) => others.some((other) => other.id === id));
+    return new KeptTranscripts([...others, view], [...fresh, view.id]);
   }
 
   withPassage(transcript: string, fresh: PassageView): KeptTranscripts {
@@ -35,11 +48,8 @@ export class KeptTranscripts {
             }
           : view,
       ),
+      this.#fresh,
     );
-  }
-
-  only(id: string | null): KeptTranscripts {
-    return new KeptTranscripts(this.#views.filter((view) => view.id === id));
   }
 }
 

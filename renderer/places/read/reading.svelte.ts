@@ -360,11 +360,16 @@ export class Reading {
   async follow(revision: number): Promise<void> {
     if (this.#deciding > 0 || revision === this.#seen || !this.#ready) return;
     this.#seen = revision;
+    this.#transcripts = this.#transcripts.outdated();
+    this.#asked = [];
     const current = this.#place?.transcript ?? null;
-    await Promise.all([this.#loadNames(), this.loadThemes()]);
-    const fresh = current === null ? undefined : await this.#load(current, true);
-    // Others are asked for again when they are needed.
-    this.#transcripts = this.#transcripts.only(this.#place?.transcript ?? null);
+    const [fresh] = await Promise.all([
+      current === null ? undefined : this.#load(current),
+      this.#loadNames(),
+      this.loadThemes(),
+    ]);
+    // Somebody may have gone on meanwhile.
+    if (this.#place !== null && this.#place.transcript !== current) return;
     const place = this.#place;
     const there = fresh?.passages.some(
       ({ start, end }) => start === place?.start && end === place.end,
@@ -425,7 +430,7 @@ export class Reading {
 
   #load(id: string, anew = false): Promise<TranscriptView | undefined> {
     const known = this.#transcripts.get(id);
-    if (known !== null && !anew) return Promise.resolve(known);
+    if (known !== null && this.#transcripts.isFresh(id) && !anew) return Promise.resolve(known);
     const asked = this.#asked.find((each) => each.id === id);
     if (asked !== undefined && !anew) return asked.view;
     const view = this.#study.ask('transcriptView', { transcript: id }).then((found) => {
