@@ -7,18 +7,13 @@ import {
   type Watcher,
 } from '../model/index.ts';
 import { sha256 } from '../numbers/index.ts';
-import {
-  prepare,
-  countedForm,
-  preparationMethod,
-  tallyLeftOut,
-  type Prepared,
-  type TextSettings,
-} from '../text/index.ts';
+import { prepare, preparationMethod, tallyLeftOut, type Prepared } from '../text/index.ts';
+import { leaningsOf } from './asked.ts';
 import type { FitJob, WordPlaces } from './fit-job.ts';
 import { priorsOf } from './priors.ts';
 import { packResult, packWords } from './stored.ts';
 import { warmStart } from './warm-start.ts';
+import { placesOf } from './word-places.ts';
 
 export interface FitDone {
   readonly ok: true;
@@ -105,14 +100,6 @@ export function fitStudy(job: FitJob, watcher?: Watcher): FitDone | FitRefused {
   };
 }
 
-function placesOf(words: Prepared, settings: TextSettings): WordPlaces {
-  const places = new Map(words.vocabulary.map((form, index) => [form, index]));
-  return (word) => {
-    const form = countedForm(word, settings);
-    return form === null ? undefined : places.get(form);
-  };
-}
-
 /** A counted word that every theme shuts out could belong nowhere. */
 function wordWithoutTheme({ themes }: FitJob, places: WordPlaces): string | undefined {
   const shutOutEverywhere = (word: string): boolean =>
@@ -122,12 +109,7 @@ function wordWithoutTheme({ themes }: FitJob, places: WordPlaces): string | unde
 }
 
 function startOf(job: FitJob, words: Prepared, places: WordPlaces): Start {
-  const leanings = job.themes.flatMap(({ seeds }, theme) =>
-    seeds.flatMap((form) => {
-      const word = places(form);
-      return word === undefined ? [] : [{ theme, word }];
-    }),
-  );
+  const leanings = leaningsOf(job, places);
   return job.previous === null
     ? { kind: 'fresh', seed: job.seed, leanings }
     : warmStart(job.themes, words, job.previous, leanings);

@@ -1,3 +1,4 @@
+export { askedOf } from './asked.ts';
 export { decisions, type Decided } from './decided.ts';
 export type { FitJob, PreviousFit } from './fit-job.ts';
 export { fitStudy, type FitDone, type FitRefused } from './fit-study.ts';

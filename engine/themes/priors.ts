@@ -13,12 +13,15 @@ const seedShare = 0.1;
 const seedCap = 20;
 const seedFloor = 3;
 
+/** The part of a job that says what the model is to be. */
+export type Deciding = Pick<FitJob, 'themes' | 'decisions' | 'alpha' | 'eta' | 'pinnedFrom'>;
+
 /**
  * Decisions as asymmetric Dirichlet priors (seeds as in Jagarlamudi, Daumé & Udupa 2012): seeds raise
  * a word in a theme, what is shut out gets exactly zero, a pinned theme keeps its distribution, a
  * confirmed theme gets as many prior words as the passage has counted ones, a rejected one zero.
  */
-export function priorsOf(job: FitJob, words: Prepared, places: WordPlaces): Priors {
+export function priorsOf(job: Deciding, words: Prepared, places: WordPlaces): Priors {
   const counts = wordCounts(words);
   const wordPriors: { theme: number; word: number; value: number }[] = [];
   job.themes.forEach(({ seeds, shutOut }, theme) => {
@@ -46,9 +49,9 @@ export function priorsOf(job: FitJob, words: Prepared, places: WordPlaces): Prio
   };
 }
 
-function passagePriors(job: FitJob, words: Prepared): Priors['passagePriors'] {
+function passagePriors(job: Deciding, words: Prepared): Priors['passagePriors'] {
   const rows = new Map(job.themes.map(({ id }, row) => [id, row]));
-  const byTranscript = new Map<string, FitJob['decisions'][number][]>();
+  const byTranscript = new Map<string, Deciding['decisions'][number][]>();
   for (const decided of job.decisions) {
     const here = byTranscript.get(decided.transcript);
     if (here === undefined) byTranscript.set(decided.transcript, [decided]);
@@ -73,7 +76,7 @@ function passagePriors(job: FitJob, words: Prepared): Priors['passagePriors'] {
   return priors;
 }
 
-function frozen(job: FitJob, words: Prepared): Priors['frozen'] {
+function frozen(job: Deciding, words: Prepared): Priors['frozen'] {
   const { pinnedFrom } = job;
   if (pinnedFrom === null) return [];
   return job.themes.flatMap(({ id, pinned }, theme) => {

@@ -62,6 +62,8 @@ const phrases: Phrases = {
   fitRemoved: () => 'removal of a fit',
   fitChosen: () => 'choice of a fit',
   fitRenamed: () => 'name of a fit',
+  evidenceGathered: ({ what }) =>
+    what === 'steadiness' ? 'measure of steadiness' : 'trial of numbers of themes',
 };
 
 /** Several edits of one kind in one gesture. */
