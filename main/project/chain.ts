@@ -1,10 +1,19 @@
-import { createHash } from 'node:crypto';
+import * as crypto from 'node:crypto';
 
 export const HASH_BYTES = 32;
 export const SALT_BYTES = 16;
 
+// Node before 20.12 has no hash in one call. Where it is, a frame's hashes take half the time.
+const inOneCall = (crypto as { readonly hash?: typeof crypto.hash }).hash;
+const ONE_CALL_BYTES = 16_384;
+
 export function sha256(...parts: readonly Uint8Array[]): Uint8Array {
-  const hash = createHash('sha256');
+  let length = 0;
+  for (const part of parts) length += part.length;
+  if (inOneCall !== undefined && length <= ONE_CALL_BYTES) {
+    return inOneCall('sha256', Buffer.concat(parts, length), 'buffer');
+  }
+  const hash = crypto.createHash('sha256');
   for (const part of parts) hash.update(part);
   return hash.digest();
 }

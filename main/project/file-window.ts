@@ -1,4 +1,5 @@
 import { createHash } from 'node:crypto';
+import { sha256 } from './chain.ts';
 import { FRAME_MAGIC, HEAD_BYTES, decodeHead, type FrameHead } from './frame.ts';
 import { readWhole, type Handle, type Storage } from './storage.ts';
 
@@ -43,6 +44,7 @@ export class FileWindow {
 
   /** SHA-256(salt, bytes of the file): the commitment to a payload as it stands. */
   commitment(salt: Uint8Array, offset: number, length: number): Uint8Array {
+    if (length < WINDOW_BYTES) return sha256(salt, this.bytes(offset, length));
     const hash = createHash('sha256').update(salt);
     for (let done = 0; done < length;) {
       const piece = this.bytes(offset + done, Math.min(WINDOW_BYTES, length - done));

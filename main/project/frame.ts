@@ -109,6 +109,12 @@ export function decodeHead(from: Uint8Array): FrameHead | null {
   };
 }
 
+/** Whether a whole frame's payload is still what its head commits to. */
+export function holdsItsCommitment(frame: Uint8Array): boolean {
+  const commitment = commitmentOf(frame.subarray(24, 40), frame.subarray(HEAD_BYTES));
+  return sameBytes(commitment, frame.subarray(40, 72));
+}
+
 function headCheck(head: Uint8Array): Uint8Array {
   return sha256(head.subarray(0, CHECKED_BYTES)).subarray(0, HEAD_BYTES - CHECKED_BYTES);
 }

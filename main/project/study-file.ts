@@ -1,8 +1,15 @@
-import { commitmentOf, hex, SALT_BYTES, sameBytes } from './chain.ts';
+import { hex, SALT_BYTES, sameBytes } from './chain.ts';
 import { causeOf, failure, failureOf, StudyFileFault, success } from './failure.ts';
 import type { Result, StudyFileFailure } from './failure.ts';
 import { FileWindow } from './file-window.ts';
-import { decodeHead, encodeHead, HEAD_BYTES, headFor, removedHead } from './frame.ts';
+import {
+  decodeHead,
+  encodeHead,
+  HEAD_BYTES,
+  headFor,
+  holdsItsCommitment,
+  removedHead,
+} from './frame.ts';
 import { MOST_EDIT_BYTES, MOST_PAYLOAD_BYTES, type FrameHead, type Kind } from './frame.ts';
 import { FrameWriter } from './frame-writer.ts';
 import { encodeHeader, type Header } from './header.ts';
@@ -476,9 +483,8 @@ export class StudyFile {
   #body(record: StudyRecord, window?: FileWindow): Uint8Array<ArrayBuffer> {
     try {
       const frame = window?.copy(record.offset, HEAD_BYTES + record.length) ?? this.#frame(record);
-      const head = this.#headAt(record, frame);
       const body = frame.subarray(HEAD_BYTES);
-      if (!record.removed && !sameBytes(commitmentOf(head.salt, body), head.commitment)) {
+      if (!record.removed && !holdsItsCommitment(frame)) {
         throw this.#rotten(record, 'content');
       }
       return body;

@@ -3,7 +3,6 @@ import * as path from 'node:path';
 import { describe, expect, it } from 'vitest';
 import {
   createStudyFile,
-  nodeStorage,
   openStudyFile,
   recoverStudyFile,
   type Storage,
@@ -18,6 +17,7 @@ import {
   look,
   newFolder,
   newPath,
+  quickStorage,
   reopen,
   valueOf,
 } from './study-folder.ts';
@@ -168,7 +168,7 @@ describe('whichever storage operation goes wrong', () => {
         }
         expect(mayBe(told), where).toContainEqual(seen);
 
-        const again = await reopen(at);
+        const again = await reopen(at, { storage: quickStorage });
         appendSamples(again, 1);
         const after = contents(again);
         again.close();
@@ -277,18 +277,18 @@ describe('a loss of power', () => {
     const steps: Step[] = [];
     const savedAfter: { steps: number; lines: number }[] = [];
     const recording: Storage = {
-      ...nodeStorage,
+      ...quickStorage,
       write(handle, bytes, position) {
         steps.push({ position, bytes: Buffer.from(bytes) });
-        return nodeStorage.write(handle, bytes, position);
+        return quickStorage.write(handle, bytes, position);
       },
       truncate(handle, size) {
         steps.push({ size });
-        nodeStorage.truncate(handle, size);
+        quickStorage.truncate(handle, size);
       },
       sync(handle) {
         steps.push('sync');
-        nodeStorage.sync(handle);
+        quickStorage.sync(handle);
       },
     };
     const file = await create(at, { storage: recording, owner: null });

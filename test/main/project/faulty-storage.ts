@@ -1,4 +1,5 @@
-import { nodeStorage, type Storage } from '../../../main/project/index.ts';
+import type { Storage } from '../../../main/project/index.ts';
+import { quickStorage } from './study-folder.ts';
 
 export type Operation = Exclude<keyof Storage, 'mustCloseToReplace'>;
 
@@ -30,7 +31,7 @@ export interface FaultyStorage extends Storage {
   plan: Plan | null;
 }
 
-/** Node's storage, one of whose operations goes wrong. */
+/** A storage, one of whose operations goes wrong. */
 export function faultyStorage(plan: Plan | null = null, mustCloseToReplace = false): FaultyStorage {
   let count = 0;
   let hit: Operation | null = null;
@@ -39,7 +40,7 @@ export function faultyStorage(plan: Plan | null = null, mustCloseToReplace = fal
     throw Object.assign(new Error(`planned ${code}`), { code });
   };
   const storage: FaultyStorage = {
-    ...nodeStorage,
+    ...quickStorage,
     mustCloseToReplace,
     count: () => count,
     hit: () => hit,
@@ -75,30 +76,30 @@ export function faultyStorage(plan: Plan | null = null, mustCloseToReplace = fal
   storage.open = around(
     'open',
     (path, how, mode) => {
-      const handle = nodeStorage.open(path, how, mode);
+      const handle = quickStorage.open(path, how, mode);
       handles.add(handle);
       return handle;
     },
     (path, how, mode) => {
       // An open that fails has given nobody a handle.
-      nodeStorage.close(nodeStorage.open(path, how, mode));
+      quickStorage.close(quickStorage.open(path, how, mode));
       return -1;
     },
   );
   storage.close = (handle) => {
     handles.delete(handle);
-    nodeStorage.close(handle);
+    quickStorage.close(handle);
   };
-  storage.read = around('read', nodeStorage.read);
-  storage.write = around('write', nodeStorage.write, (handle, bytes, position) =>
-    nodeStorage.write(handle, bytes.subarray(0, bytes.length >> 1), position),
+  storage.read = around('read', quickStorage.read);
+  storage.write = around('write', quickStorage.write, (handle, bytes, position) =>
+    quickStorage.write(handle, bytes.subarray(0, bytes.length >> 1), position),
   );
-  storage.sync = around('sync', nodeStorage.sync);
-  storage.truncate = around('truncate', nodeStorage.truncate);
-  storage.stat = around('stat', nodeStorage.stat);
-  storage.statPath = around('statPath', nodeStorage.statPath);
-  storage.rename = around('rename', nodeStorage.rename);
-  storage.remove = around('remove', nodeStorage.remove);
-  storage.syncFolder = around('syncFolder', nodeStorage.syncFolder);
+  storage.sync = around('sync', quickStorage.sync);
+  storage.truncate = around('truncate', quickStorage.truncate);
+  storage.stat = around('stat', quickStorage.stat);
+  storage.statPath = around('statPath', quickStorage.statPath);
+  storage.rename = around('rename', quickStorage.rename);
+  storage.remove = around('remove', quickStorage.remove);
+  storage.syncFolder = around('syncFolder', quickStorage.syncFolder);
   return storage;
 }

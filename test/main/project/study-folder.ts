@@ -5,11 +5,19 @@ import * as path from 'node:path';
 import { afterEach } from 'vitest';
 import {
   createStudyFile,
+  nodeStorage,
   openStudyFile,
   type OpenOptions,
   type Result,
+  type Storage,
   type StudyFile,
 } from '../../../main/project/index.ts';
+
+/**
+ * Node's storage without the waiting for the drive, for tests that open hundreds of files and ask
+ * nothing about a loss of power.
+ */
+export const quickStorage: Storage = { ...nodeStorage, sync: () => {}, syncFolder: () => {} };
 
 const folders: string[] = [];
 const open = new Set<StudyFile>();

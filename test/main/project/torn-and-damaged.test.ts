@@ -8,9 +8,12 @@ import {
   create,
   look,
   newPath,
+  quickStorage,
   reopen,
   valueOf,
 } from './study-folder.ts';
+
+const quick = { storage: quickStorage };
 
 interface Sample {
   readonly at: string;
@@ -24,7 +27,7 @@ interface Sample {
 /** A small study: edits alone, edits with blobs, two edits in one act. */
 async function sample(edits = 4): Promise<Sample> {
   const at = newPath();
-  const file = await create(at);
+  const file = await create(at, quick);
   const headerLength = file.size;
   appendSamples(file, edits);
   valueOf(
@@ -64,7 +67,7 @@ describe('a study cut short', () => {
       expect(await look(cut), `read-only at ${length}`).toEqual(left.seen);
       expect(fs.statSync(cut).size).toBe(length);
 
-      const file = await reopen(cut);
+      const file = await reopen(cut, quick);
       expect(file.leftOver).toBe(length - left.size);
       expect(fs.statSync(cut).size).toBe(left.size);
       expect(contents(file)).toEqual(left.seen);
@@ -231,7 +234,7 @@ describe('recovery', () => {
   it('of a whole study gives the same bytes', async () => {
     const study = await sample();
     const to = newPath('new.understory');
-    expect(valueOf(await recoverStudyFile(study.at, to))).toEqual({
+    expect(valueOf(await recoverStudyFile(study.at, to, quick))).toEqual({
       studyId: 'a study of ours',
       studyIdLost: false,
       kept: study.records.length,
@@ -253,7 +256,7 @@ describe('recovery', () => {
       bytes[at] = (bytes[at] ?? 0) ^ 0x10;
       fs.writeFileSync(study.at, bytes);
       const where = `byte ${at}`;
-      const found = valueOf(await recoverStudyFile(study.at, to));
+      const found = valueOf(await recoverStudyFile(study.at, to, quick));
       const record = study.records.findLast(({ offset }) => offset <= at);
       const inPayload = record !== undefined && at >= record.offset + 112;
       const inSalt =
@@ -306,7 +309,7 @@ describe('recovery', () => {
     for (const [how, damaged] of Object.entries(holes)) {
       fs.writeFileSync(study.at, damaged);
       expect(await openStudyFile(study.at), how).toMatchObject({ code: 'damaged' });
-      const found = valueOf(await recoverStudyFile(study.at, to));
+      const found = valueOf(await recoverStudyFile(study.at, to, quick));
       const seen = await look(to);
       const gone = how === 'put in' ? [5] : [2, 3, 4, 5];
       expect(
@@ -319,7 +322,7 @@ describe('recovery', () => {
       );
       expect(seen, how).toEqual(expected);
       // The new file is a study like any other.
-      const file = await reopen(to);
+      const file = await reopen(to, quick);
       appendSamples(file, 2);
       file.close();
       fs.rmSync(to);
@@ -335,7 +338,7 @@ describe('recovery', () => {
       study.at,
       Buffer.concat([study.bytes.subarray(0, at), Buffer.from('more'), study.bytes.subarray(at)]),
     );
-    const found = valueOf(await recoverStudyFile(study.at, to));
+    const found = valueOf(await recoverStudyFile(study.at, to, quick));
     expect(found.missing.map(({ sequence }) => sequence)).toEqual([3]);
     expect(found.headKept).toBe(true);
     expect(await look(to)).toHaveLength(study.seen.length);
@@ -365,7 +368,7 @@ describe('recovery', () => {
     const cut = study.bytes.subarray(0, study.bytes.length - 5);
     fs.writeFileSync(study.at, cut);
     const to = newPath('new.understory');
-    const found = valueOf(await recoverStudyFile(study.at, to));
+    const found = valueOf(await recoverStudyFile(study.at, to, quick));
     expect(found.leftOver).toBe(112 + 17 - 5);
     expect(await look(to)).toEqual(study.seen.slice(0, -1));
   });
