@@ -3,6 +3,7 @@ import { resolve } from 'node:path';
 import { svelte } from '@sveltejs/vite-plugin-svelte';
 import { defineConfig } from 'electron-vite';
 import { assemblyscript } from './.config/assemblyscript.ts';
+import { noteLicences, writeLicences } from './.config/licences.ts';
 
 const here = (path: string): string => resolve(import.meta.dirname, path);
 
@@ -22,7 +23,7 @@ const checks = { pluginTimings: false } as const;
 
 export default defineConfig({
   main: {
-    plugins: [assemblyscript()],
+    plugins: [assemblyscript(), noteLicences()],
     build: {
       ...bundled,
       outDir: 'out/main',
@@ -39,6 +40,7 @@ export default defineConfig({
     },
   },
   preload: {
+    plugins: [noteLicences()],
     build: {
       ...bundled,
       outDir: 'out/preload',
@@ -55,7 +57,7 @@ export default defineConfig({
     root: here('renderer'),
     // Opened from a folder of its own, in Electron and in a browser alike.
     base: '/',
-    plugins: [svelte()],
+    plugins: [svelte(), noteLicences(), writeLicences()],
     build: {
       outDir: here('out/renderer'),
       emptyOutDir: true,
