@@ -127,6 +127,8 @@ export interface GatherView {
     readonly forms: number;
     readonly tooShort: number;
   } | null;
+  /** Memos on the study as a whole, oldest first. */
+  readonly memos: readonly MemoView[];
 }
 
 export interface GatherOutcome {

@@ -3,6 +3,7 @@ import type { Transcript } from '../../engine/study/index.ts';
 import { languages, speakerKey, type Language } from '../../engine/text/index.ts';
 import type { GatherView, ParticipantRow, SpeakerView, TranscriptRow } from '../api.ts';
 import { attributeNames } from '../reports/coded-excerpts.ts';
+import { memosOnStudy } from './memos.ts';
 import { needsLook } from './needs-look.ts';
 import type { OpenStudy } from './open-study.ts';
 import { wordsIn } from './overview.ts';
@@ -44,6 +45,7 @@ export async function gatherView(open: OpenStudy): Promise<GatherView> {
       extraStopWords: settings.text.extraStopWords,
     },
     counted,
+    memos: memosOnStudy(study),
   };
 }
 

@@ -21,6 +21,13 @@ function memosIn({ memos }: Study, transcript: string): readonly Memo[] {
   return sorted.get(transcript) ?? [];
 }
 
+export function memosOnStudy(study: Study): MemoView[] {
+  return views(
+    study,
+    [...study.memos.values()].filter(({ subject }) => subject.kind === 'study'),
+  );
+}
+
 export function memosOnTranscript(study: Study, transcript: string): MemoView[] {
   return views(
     study,

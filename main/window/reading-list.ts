@@ -101,7 +101,7 @@ function candidates(
           strengths === null
             ? null
             : wanted === null
-              ? largest(strengths)
+              ? largest(strengths, themes.offered)
               : column === undefined
                 ? null
                 : strengths[column];
@@ -188,10 +188,12 @@ function draw(
   return createGenerator(chance).shuffle(chosen);
 }
 
-function largest(strengths: Float64Array): number {
-  let most = 0;
-  for (const strength of strengths) if (strength > most) most = strength;
-  return most;
+/** Of the themes that can be suggested. */
+function largest(strengths: Float64Array, offered: Uint8Array): number {
+  return strengths.reduce(
+    (most, strength, column) => (offered[column] === 1 && strength > most ? strength : most),
+    0,
+  );
 }
 
 function placeOf({ passage: { transcript, start, end } }: Candidate): PassagePlace {
