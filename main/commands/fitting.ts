@@ -28,16 +28,17 @@ export async function fitWithProgress(
 type Refused = Exclude<Awaited<ReturnType<typeof fit>>, { readonly ok: true }>;
 type FitRefusal = Extract<Refused, Parameters<typeof sentenceForFit>[0]>;
 
-const fitCodes: readonly FitRefusal['code'][] = [
-  'no words left',
-  'more themes than passages',
-  'no themes',
-  'word without a theme',
-  'no fit to start from',
-  'changed while fitting',
-  'stopped',
-];
+/** A record, so that no code of them can be forgotten. */
+const fitCodes: Record<FitRefusal['code'], true> = {
+  'no words left': true,
+  'more themes than passages': true,
+  'no themes': true,
+  'word without a theme': true,
+  'no fit to start from': true,
+  'changed while fitting': true,
+  stopped: true,
+};
 
 function isFitRefusal(refusal: Refused): refusal is FitRefusal {
-  return (fitCodes as readonly string[]).includes(refusal.code);
+  return Object.hasOwn(fitCodes, refusal.code);
 }

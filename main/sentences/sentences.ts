@@ -66,7 +66,7 @@ export function sentenceForFit(
     case 'more themes than passages':
       return `There are ${refusal.themes} themes and only ${refusal.passages} passages with counted words; ask for fewer themes, or add transcripts.`;
     case 'word without a theme':
-      return `“${refusal.word ?? ''}” is shut out of every theme that is fitted, so its occurrences would belong nowhere. Let it into one, or add it to the stop words.`;
+      return `“${refusal.word ?? ''}” is shut out of every theme that is fitted, so its occurrences would belong nowhere; let it into one, or add it to the stop words.`;
     case 'no themes':
       return 'There is no theme to fit; ask for at least one.';
     case 'no fit to start from':
