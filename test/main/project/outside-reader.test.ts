@@ -6,16 +6,23 @@ import { describe, expect, it } from 'vitest';
 import { appendSamples, create, newPath, reopen, valueOf } from './study-folder.ts';
 
 const script = fileURLToPath(new URL('../../outside/read-study.py', import.meta.url));
-const python = ['python3', 'python'].find(
-  (name) => spawnSync(name, ['-c', 'import sys; sys.exit(sys.version_info < (3, 8))']).status === 0,
-);
+// The interpreter itself: python3 on the path may be a slow script that looks for it.
+const python = ['python3', 'python']
+  .map((name) => {
+    const ask = 'import sys; print(sys.executable if sys.version_info >= (3, 8) else "")';
+    return (spawnSync(name, ['-c', ask], { encoding: 'utf8' }).stdout ?? '').trim();
+  })
+  .find((found) => found !== '');
 const title = 'a reader written from the format page alone, with none of our code';
 
 function read(...args: string[]) {
-  const { status, stdout, stderr } = spawnSync(python ?? 'python3', [script, ...args], {
-    encoding: 'utf8',
-    env: { ...process.env, PYTHONIOENCODING: 'utf-8', PYTHONDONTWRITEBYTECODE: '1' },
-  });
+  const { status, stdout, stderr } = spawnSync(
+    python ?? 'python3',
+    ['-B', '-X', 'utf8', script, ...args],
+    {
+      encoding: 'utf8',
+    },
+  );
   return { status, lines: stdout.trimEnd().split(/\r?\n/), stderr };
 }
 
