@@ -1,7 +1,9 @@
 import { exportExcerpts, exportUsage } from '../commands/export.ts';
 import { endingOf } from '../commands/fault.ts';
+import { howMany, howManyUsage } from '../commands/how-many.ts';
 import { moved, movedUsage } from '../commands/moved.ts';
 import { refit, refitUsage } from '../commands/refit.ts';
+import { steady, steadyUsage } from '../commands/steady.ts';
 import type { ExitCode, Terminal } from '../commands/terminal.ts';
 import { theme, themeUsage } from '../commands/theme.ts';
 
@@ -12,6 +14,8 @@ const commands: Record<string, Command> = {
   refit,
   export: exportExcerpts,
   moved,
+  steady,
+  howmany: howMany,
 };
 
 const help = `Understory: theme and code interview transcripts on this machine alone.
@@ -25,6 +29,11 @@ const help = `Understory: theme and code interview transcripts on this machine a
       writes coded excerpts into one file
   ${movedUsage}
       prints what the last re-fit moved
+  ${steadyUsage}
+      measures how steady each theme is when participants are left out, beside the floor that
+      shuffled words reach; writes NAME.steady.csv beside the study
+  ${howManyUsage}
+      compares numbers of themes and says which cannot be told apart; writes NAME.howmany.csv
 
 Run it as: npm run -s understory -- theme resources/demo --themes 12 --seed 1 --out demo-themes
 `;

@@ -1,0 +1,142 @@
+import {
+  howManyResult,
+  materialOf,
+  planHowMany,
+  planSteadiness,
+  steadinessResult,
+  type Base,
+  type EvidenceRefused,
+  type HowManyResult,
+  type Material,
+  type NumberScores,
+  type Refit,
+  type SteadinessResult,
+} from '../engine/evidence/index.ts';
+import { fold, type EvidenceKind, type PlainValue, type Study } from '../engine/study/index.ts';
+import {
+  askedOf,
+  decisions,
+  modelledThemes,
+  settingsOf,
+  type Fitted,
+  type ModelledTheme,
+} from '../engine/themes/index.ts';
+import type { Desk, DeskResult } from './desk.ts';
+import { runEvidence, type EvidenceOptions } from './work/run-evidence.ts';
+
+export type EvidenceMade<Value> =
+  | DeskResult<Value>
+  | EvidenceRefused
+  | { readonly ok: false; readonly code: 'no fit yet' }
+  | { readonly ok: false; readonly code: 'stopped' };
+
+export interface SteadinessOptions extends EvidenceOptions {
+  /** How many re-fits, from 2. */
+  readonly resamples: number;
+  /** Says who is left out and how words are shuffled; the fit's own seed unless told. */
+  readonly seed?: number;
+}
+
+/**
+ * Measures how steady the themes of the fit on screen are, with the floor that shuffled words reach,
+ * and keeps the result with the fit. Everything is measured on the words of that fit and under the
+ * decisions that it took in; what was decided since waits for the next fit.
+ */
+export async function gatherSteadiness(
+  desk: Desk,
+  { resamples, seed: given, ...options }: SteadinessOptions,
+): Promise<EvidenceMade<SteadinessResult>> {
+  const fitted = desk.fitted(desk.study.fit);
+  if (fitted === null) return { ok: false, code: 'no fit yet' };
+  const material = materialFor(desk, fitted);
+  const seed = given ?? material.seed;
+  const plan = planSteadiness(material, resamples, seed);
+  if (!plan.ok) return plan;
+  const half = (from: number): EvidenceOptions => ({
+    ...options,
+    onProgress: (fraction) => options.onProgress?.(from + fraction / 2),
+  });
+  const first = await runEvidence(material, plan.first, half(0));
+  if (first === null) return { ok: false, code: 'stopped' };
+  const shuffledThemes = first.at(-1) as Float32Array;
+  const second = await runEvidence(plan.shuffled(shuffledThemes), plan.second, half(0.5));
+  if (second === null) return { ok: false, code: 'stopped' };
+  const result = steadinessResult(
+    plan,
+    seed,
+    first[0] as Base,
+    first.slice(1, -1) as Refit[],
+    second[0] as Base,
+    second.slice(1) as Refit[],
+  );
+  return keep(desk, fitted, 'steadiness', result);
+}
+
+export interface HowManyOptions extends EvidenceOptions {
+  /** Numbers of themes to try, ascending. */
+  readonly numbers: readonly number[];
+  readonly seed?: number;
+}
+
+/** Tries numbers of themes on the words of the fit on screen and keeps the result with the fit. */
+export async function gatherHowMany(
+  desk: Desk,
+  { numbers, seed: given, ...options }: HowManyOptions,
+): Promise<EvidenceMade<HowManyResult>> {
+  const fitted = desk.fitted(desk.study.fit);
+  if (fitted === null) return { ok: false, code: 'no fit yet' };
+  const material = materialFor(desk, fitted);
+  const seed = given ?? material.seed;
+  const plan = planHowMany(material, numbers, seed);
+  if (!plan.ok) return plan;
+  const scores = await runEvidence(plan.material, plan.tasks, options);
+  if (scores === null) return { ok: false, code: 'stopped' };
+  return keep(desk, fitted, 'how many', howManyResult(plan, seed, scores as NumberScores[]));
+}
+
+/** What a fit was a function of, from the study as it was when the fit was begun. */
+export function materialFor(desk: Desk, { fit, words, phi }: Fitted): Material {
+  const then = studyAt(desk, fit.basis);
+  const known = new Map(modelledThemes(then).map((theme) => [theme.id, theme]));
+  const settings = settingsOf(fit.settings);
+  const asked = askedOf(
+    {
+      themes: fit.themes.map((id) => known.get(id) ?? foundTheme(id)),
+      decisions: decisions(then),
+      alpha: settings.alpha,
+      eta: settings.eta,
+      text: settings.text,
+      pinnedFrom: null,
+    },
+    words,
+  );
+  return materialOf(
+    { ...asked, seed: fit.start.seed, settings: settings.model, counts: words.counts, phi },
+    words.passages.map(({ participant }) => participant),
+  );
+}
+
+/** A candidate that the fit itself brought: nothing was decided about it before. */
+function foundTheme(id: string): ModelledTheme {
+  return { id, pinned: false, seeds: [], shutOut: [], absorbed: [] };
+}
+
+function studyAt(desk: Desk, sequence: number): Study {
+  const entries = [...desk.entries].filter((entry) => entry.sequence <= sequence);
+  const then = fold(entries);
+  if (!then.ok) throw new Error(`studyAt: entry after ${sequence} cannot be applied: ${then.code}`);
+  return then.value;
+}
+
+function keep<Value extends PlainValue>(
+  desk: Desk,
+  { fit }: Fitted,
+  what: EvidenceKind,
+  result: Value,
+): EvidenceMade<Value> {
+  const before = desk.study.fits.get(fit.id)?.evidence?.[what] ?? null;
+  const made = desk.make([
+    { edit: { kind: 'evidenceGathered', fit: fit.id, what, result, before } },
+  ]);
+  return made.ok ? { ok: true, value: result } : made;
+}
