@@ -66,9 +66,12 @@ function piecesOf({
   const pieces: (Omit<Piece, 'own'> & { passage: number })[] = [];
   let next = 0;
   for (const turn of turns) {
-    const add = (start: number, end: number, passage: number): void => {
+    const add = (from: number, to: number, passage: number): void => {
       // White space between two passages of a turn is the distance between their rows.
-      if (start >= end || text.slice(start, end).trim() === '') return;
+      const said = text.slice(from, Math.max(from, to));
+      const start = from + said.length - said.trimStart().length;
+      const end = from + said.trimEnd().length;
+      if (start >= end) return;
       const opensTurn = pieces.length === 0 || pieces[pieces.length - 1]!.end <= turn.start;
       const { speaker, role } = turn;
       const time = opensTurn ? turn.time : null;
