@@ -181,12 +181,19 @@ function searchable(turns: Transcript['turns'], text: string): string {
 
 function lowered(text: string): string {
   const lower = text.toLowerCase();
-  // Few letters are longer in lower case; a text with one of them keeps its capitals.
-  const same = lower.length === text.length ? lower : text;
+  // Few letters are longer in lower case (the dotted capital I): those keep their capital.
+  const same =
+    lower.length === text.length
+      ? lower
+      : [...text].map((letter) => sameLength(letter.toLowerCase(), letter)).join('');
   return same
     .replace(/[’ʼ‘]/gu, "'")
     .replace(/[\u2010\u2011]/gu, '-')
     .replace(/\s/gu, ' ');
+}
+
+function sameLength(lower: string, letter: string): string {
+  return lower.length === letter.length ? lower : letter;
 }
 
 interface Place {

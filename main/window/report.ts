@@ -7,7 +7,12 @@ import type {
   ReportRequest,
 } from '../api.ts';
 import { codedExcerpts, type CodedExcerpt } from '../reports/coded-excerpts.ts';
-import { attribution, bookCautions, filterSentence } from '../reports/excerpt-book.ts';
+import {
+  attribution,
+  bookCautions,
+  filterSentence,
+  type ReportFilter,
+} from '../reports/excerpt-book.ts';
 import { excerptsCsv } from '../reports/excerpts-csv.ts';
 import { excerptsDocx } from '../reports/excerpts-docx.ts';
 import { excerptsHtml } from '../reports/excerpts-html.ts';
@@ -117,10 +122,14 @@ function filterFor(
   { standings, themes }: ReportRequest,
   count: number,
 ): string {
-  const sentence = filterSentence(standings, count);
-  if (themes === null) return sentence;
-  const labels = themes.map((id) => now.label(id));
-  return `${sentence.replace(/\.$/u, '')}; themes: ${labels.length === 0 ? 'none' : labels.join(', ')}.`;
+  return filterSentence(reportFilter(now, { standings, themes }), count);
+}
+
+function reportFilter(
+  now: OpenStudy['now'],
+  { standings, themes }: Pick<ReportRequest, 'standings' | 'themes'>,
+): ReportFilter {
+  return { standings, themes: themes?.map((id) => now.label(id)) ?? null };
 }
 
 function cautionsFor(
@@ -164,33 +173,32 @@ const endings: Readonly<Record<ReportFormat, string>> = {
 
 async function reportFile(
   open: OpenStudy,
-  { format, standings, guard }: Api['report']['takes'],
+  request: Api['report']['takes'],
   excerpts: readonly CodedExcerpt[],
 ): Promise<{ readonly value: NamedFile } | Refused> {
-  const content = await contentOf(open, format, standings, guard, excerpts);
+  const content = await contentOf(open, request, excerpts);
   if (isRefused(content)) return content;
   return give({
-    fileName: `${safeFileName(open.study.name)} ${endings[format]}`,
+    fileName: `${safeFileName(open.study.name)} ${endings[request.format]}`,
     bytes: typeof content === 'string' ? new TextEncoder().encode(content) : content,
   });
 }
 
 async function contentOf(
   { study, desk, now }: OpenStudy,
-  format: ReportFormat,
-  standings: readonly string[],
-  guard: boolean,
+  { format, standings, themes, guard }: Api['report']['takes'],
   excerpts: readonly CodedExcerpt[],
 ): Promise<string | Uint8Array | Refused> {
+  const filter = reportFilter(now, { standings, themes });
   switch (format) {
     case 'csv':
       return excerptsCsv(study, excerpts, { guard });
     case 'json':
-      return excerptsJson(study.name, excerpts, standings);
+      return excerptsJson(study.name, excerpts, filter);
     case 'html':
-      return excerptsHtml(study.name, excerpts, standings);
+      return excerptsHtml(study.name, excerpts, filter);
     case 'docx':
-      return excerptsDocx(study.name, excerpts, standings);
+      return excerptsDocx(study.name, excerpts, filter);
     case 'themes csv':
       return themesCsv(desk, { guard });
     case 'methods':
