@@ -66,6 +66,8 @@ export default tseslint.config(
   {
     files: ['**/*.svelte', '**/*.svelte.ts'],
     languageOptions: { parserOptions: { parser: tseslint.parser } },
+    // What a component takes in is declared with one `let`, whether or not it is written to.
+    rules: { 'prefer-const': 'off' },
   },
   { files: ['renderer/**'], languageOptions: { globals: globals.browser } },
   { files: ['**/*.cjs'], rules: { '@typescript-eslint/no-require-imports': 'off' } },

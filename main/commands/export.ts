@@ -65,11 +65,11 @@ async function contentOf(
     case 'csv':
       return excerptsCsv(study, excerpts, { guard });
     case 'json':
-      return excerptsJson(study.name, excerpts, standings);
+      return excerptsJson(study.name, excerpts, { standings, themes: null });
     case 'html':
-      return excerptsHtml(study.name, excerpts, standings);
+      return excerptsHtml(study.name, excerpts, { standings, themes: null });
     case 'docx':
-      return excerptsDocx(study.name, excerpts, standings);
+      return excerptsDocx(study.name, excerpts, { standings, themes: null });
   }
 }
 

@@ -46,7 +46,15 @@ export const bookCautions = [
   'Suggestions come from a model that counts words; they are for reading, never findings.',
 ] as const;
 
+/** What a report was asked to hold; every output states it. */
+export interface ReportFilter {
+  readonly standings: readonly string[];
+  /** Names of the themes asked for; null for all. */
+  readonly themes: readonly string[] | null;
+}
+
 /** What the report holds, in words. */
-export function filterSentence(standings: readonly string[], count: number): string {
-  return `${count} coded ${count === 1 ? 'excerpt' : 'excerpts'}; standing: ${standings.join(', ')}.`;
+export function filterSentence({ standings, themes }: ReportFilter, count: number): string {
+  const chosen = themes === null ? '' : `; themes: ${themes.join(', ') || 'none'}`;
+  return `${count} coded ${count === 1 ? 'excerpt' : 'excerpts'}; standing: ${standings.join(', ')}${chosen}.`;
 }

@@ -1,18 +1,24 @@
 import { Document, HeadingLevel, Packer, Paragraph, TextRun } from 'docx';
-import { attribution, bookCautions, bookParts, filterSentence } from './excerpt-book.ts';
+import {
+  attribution,
+  bookCautions,
+  bookParts,
+  filterSentence,
+  type ReportFilter,
+} from './excerpt-book.ts';
 import type { CodedExcerpt } from './coded-excerpts.ts';
 
 /** Coded excerpts as a word-processor document with a heading for each theme. */
 export async function excerptsDocx(
   study: string,
   excerpts: readonly CodedExcerpt[],
-  standings: readonly string[],
+  filter: ReportFilter,
 ): Promise<Uint8Array> {
   const quiet = { color: '4D5952', size: 19 };
   const children = [
     new Paragraph({ heading: HeadingLevel.TITLE, text: study }),
     new Paragraph({
-      children: [new TextRun({ ...quiet, text: filterSentence(standings, excerpts.length) })],
+      children: [new TextRun({ ...quiet, text: filterSentence(filter, excerpts.length) })],
     }),
     ...bookCautions.map(
       (text) =>

@@ -1,11 +1,17 @@
-import { attribution, bookCautions, bookParts, filterSentence } from './excerpt-book.ts';
+import {
+  attribution,
+  bookCautions,
+  bookParts,
+  filterSentence,
+  type ReportFilter,
+} from './excerpt-book.ts';
 import type { CodedExcerpt } from './coded-excerpts.ts';
 
 /** Coded excerpts as one HTML page that needs nothing else: no script, no picture, no font file. */
 export function excerptsHtml(
   study: string,
   excerpts: readonly CodedExcerpt[],
-  standings: readonly string[],
+  filter: ReportFilter,
 ): string {
   const parts = bookParts(excerpts).map(
     ({ theme, excerpts: own, participants }) => `<section>
@@ -32,7 +38,7 @@ blockquote { margin: 1.5em 0 .3em; padding: 0; white-space: pre-wrap; }
 </head>
 <body>
 <h1>${escaped(study)}</h1>
-<p class="filter">${escaped(filterSentence(standings, excerpts.length))}</p>
+<p class="filter">${escaped(filterSentence(filter, excerpts.length))}</p>
 ${bookCautions.map((caution) => `<p class="caution">${escaped(caution)}</p>`).join('\n')}
 ${parts.join('\n')}
 </body>
