@@ -3,6 +3,7 @@ import {
   methodNumber,
   type Counts,
   type ModelFit,
+  type Priors,
   type Start,
   type Watcher,
 } from '../model/index.ts';
@@ -50,8 +51,25 @@ export interface FitRefused {
   readonly word?: string;
 }
 
+/** A fit with its words counted and its priors set: all that the model takes. */
+export interface FitBegun {
+  readonly ok: true;
+  readonly job: FitJob;
+  readonly words: Prepared;
+  readonly priors: Priors;
+  readonly start: Start;
+}
+
 /** From transcripts and decisions to a fit: counts words, sets priors, fits, packs the result. */
 export function fitStudy(job: FitJob, watcher?: Watcher): FitDone | FitRefused {
+  const begun = beginFit(job);
+  if (!begun.ok) return begun;
+  const { words, priors, start } = begun;
+  return packFit(begun, fitModel(words.counts, priors, start, job.model, watcher));
+}
+
+/** The part of `fitStudy` before the model; `packFit` is the part after it. */
+export function beginFit(job: FitJob): FitBegun | FitRefused {
   const seeds = job.themes.flatMap((theme) => theme.seeds);
   const words = prepare(job.transcripts, job.text, job.lists, seeds);
   const passages = countedPassages(words.counts);
@@ -68,8 +86,12 @@ export function fitStudy(job: FitJob, watcher?: Watcher): FitDone | FitRefused {
     return { ok: false, code: 'word without a theme', ...size, word: homeless };
   }
   const priors = priorsOf(job, words, places);
-  const start = startOf(job, words, places);
-  const fit = fitModel(words.counts, priors, start, job.model, watcher);
+  return { ok: true, job, words, priors, start: startOf(job, words, places) };
+}
+
+/** What a model fitted to a fit's counts, priors and start is kept as. */
+export function packFit({ job, words, priors }: FitBegun, fit: ModelFit): FitDone {
+  const places = placesOf(words, job.text);
   const packedWords = packWords(words);
   const packedResult = packResult(fit);
   return {

@@ -1,7 +1,14 @@
 export { askedOf } from './asked.ts';
 export { decisions, type Decided } from './decided.ts';
 export type { FitJob, PreviousFit } from './fit-job.ts';
-export { fitStudy, type FitDone, type FitRefused } from './fit-study.ts';
+export {
+  beginFit,
+  fitStudy,
+  packFit,
+  type FitBegun,
+  type FitDone,
+  type FitRefused,
+} from './fit-study.ts';
 export { leadingRow, rowOf, shareOf, strengthOf, type Fitted } from './fitted.ts';
 export { modelledThemes, type ModelledTheme } from './modelled-theme.ts';
 export {
