@@ -53,7 +53,7 @@ describe('the main job in a window, on the demo study', () => {
       ['P03 shopkeeper', ['No attributes for Ansel Pike']],
     ]);
     expect(gather.attributes).toContain('village');
-    expect(gather.counted?.passages).toBe(opened.passages);
+    expect((await table.ask('counted', null))?.passages).toBe(opened.passages);
 
     // Shape: name, merge, pin, set aside, seed, shut out.
     const [first, second, third, fourth, fifth] = (await table.ask('shapeView', null)).themes;

@@ -143,11 +143,11 @@ describe('what was understood', () => {
 
   test('what the model would see follows the settings', async () => {
     const table = await newStudy(2);
-    const before = (await table.ask('gatherView', null)).counted!;
+    const before = (await table.ask('counted', null))!;
     await table.ask('changeSettings', {
       settings: { 'text.extraStopWords': ['ferry', 'Teacher'] },
     });
-    const after = (await table.ask('gatherView', null)).counted!;
+    const after = (await table.ask('counted', null))!;
     expect(after.forms).toBe(before.forms - 2);
     expect(after.passages).toBe(before.passages);
     expect(after.words).toBeLessThan(before.words);

@@ -111,15 +111,21 @@ describe('a random draw', () => {
 
   test('of unread passages stays the same while it is gone through', async () => {
     const table = await newStudy(3);
-    const request = { kind: 'random draw', count: 5, unreadOnly: true } as const;
+    const request = { kind: 'random draw', count: 6, unreadOnly: true } as const;
     const draw = await list(table, request);
-    expect(draw).toMatchObject({ name: 'random draw of 5, seed 7, unread', decided: 0 });
+    expect(draw).toMatchObject({ name: 'random draw of 6, seed 7, unread', decided: 0 });
     for (const place of draw.places.slice(0, 3)) {
       await table.ask('markNone', { place, drawnBy: draw.name, seenSuggestion: false });
     }
     const then = await list(table, request);
     expect(then.places).toEqual(draw.places);
     expect(then.decided).toBe(3);
+    // What is decided on in another way leaves the draw; the others keep their places in it.
+    const [, , , fourth, ...rest] = draw.places;
+    await table.ask('markNone', { place: fourth, drawnBy: 'in order', seenSuggestion: false });
+    const left = (await list(table, request)).places.map(key);
+    expect(left).not.toContain(key(fourth));
+    expect(left).toEqual(expect.arrayContaining([...draw.places.slice(0, 3), ...rest].map(key)));
     // What was read on another list is not unread any more.
     const next = await list(table, { ...request, seed: 9 });
     const read = new Set(draw.places.slice(0, 3).map(key));

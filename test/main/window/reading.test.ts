@@ -289,6 +289,30 @@ describe('reading before and after the settings change', () => {
     expect((await passageOf(table)).view).toEqual(before.view);
   });
 
+  test('a transcript that was removed and brought back is the one of the fit', async () => {
+    const table = await newStudy(3, { fitted: true });
+    const before = await passageOf(table);
+    await table.ask('removeTranscript', { transcript: before.place.transcript });
+    expect(await table.ask('overview', null)).toMatchObject({
+      stale: true,
+      waiting: ['1 transcript removed'],
+    });
+    expect((await table.ask('strata', null)).bands).toHaveLength(2);
+    const [theme] = (await table.ask('shapeView', null)).themes;
+    const view = await table.ask('themeView', { theme: theme.id });
+    expect(view.passages.some(({ transcriptName }) => transcriptName === 'P1')).toBe(false);
+    expect((await table.ask('wordView', { form: 'teacher' })).lines.length).toBeGreaterThan(0);
+    await table.ask('report', {
+      standings: ['suggested'],
+      themes: null,
+      guard: true,
+      format: 'csv',
+    });
+    await table.ask('undo', null);
+    expect(await table.ask('overview', null)).toMatchObject({ stale: false, waiting: [] });
+    expect((await passageOf(table)).view).toEqual(before.view);
+  });
+
   test('codings stay where they were put when passages are divided in another way', async () => {
     const table = await newStudy(3, { fitted: true });
     const { place, view } = await passageOf(table);
