@@ -65,7 +65,7 @@ export default {
     'out/renderer/**',
     'resources/demo/**',
     'resources/words/README.md',
-    'resources/icon/icon.png',
+    'resources/icon/icon.{png,ico}',
     'package.json',
     '!node_modules',
     '!**/*.{ts,map}',

@@ -22,22 +22,22 @@ export function openerFor(
   return ['xdg-open', [address]];
 }
 
-/** Opens the address in the person's browser; whether the system's opener took it. */
-export function openInBrowser(
+/**
+ * Hands the address to the person's browser. Settles when the system's opener is known to have
+ * failed, and only then: one that ends well may still have shown nothing, so whether a window came is
+ * for the shell to see.
+ */
+export function openerFailed(
   address: string,
   opener: readonly [string, readonly string[]] = openerFor(address),
-): Promise<boolean> {
+): Promise<void> {
   const [program, words] = opener;
   return new Promise((resolve) => {
     const child = spawn(program, words, { stdio: 'ignore', detached: true });
-    // Some openers stay for as long as the browser does: having started is enough for them.
-    const started = setTimeout(() => resolve(true), 3000);
-    const end = (opened: boolean): void => {
-      clearTimeout(started);
-      resolve(opened);
-    };
-    child.once('error', () => end(false));
-    child.once('exit', (code) => end(code === 0));
+    child.once('error', () => resolve());
+    child.once('exit', (code) => {
+      if (code !== 0) resolve();
+    });
     child.unref();
   });
 }

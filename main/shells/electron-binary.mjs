@@ -1,6 +1,6 @@
 // Electron's program: whether it is there, and fetching it once. Its npm package comes without.
 import { spawn } from 'node:child_process';
-import { existsSync, mkdirSync, readFileSync, writeFileSync } from 'node:fs';
+import { accessSync, constants, existsSync, mkdirSync, readFileSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { top } from './build.mjs';
 
@@ -30,7 +30,7 @@ export function failedToday(note = failure) {
   }
 }
 
-function rememberFailure(note = failure) {
+function rememberFailure(note) {
   try {
     mkdirSync(join(note, '..'), { recursive: true });
     writeFileSync(note, today());
@@ -39,22 +39,41 @@ function rememberFailure(note = failure) {
   }
 }
 
-/** Fetches it in a child with a time limit; whether it is there afterwards. */
-export async function fetchElectron({ installer = join(folder, 'install.js'), ms = limit } = {}) {
+/** Whether it could be put where it belongs: a folder of somebody else's is left alone. */
+export function canBeFetched(into = folder) {
+  try {
+    accessSync(into, constants.W_OK);
+    return existsSync(join(into, 'install.js'));
+  } catch {
+    return false;
+  }
+}
+
+/**
+ * Fetches it in a child with a time limit: 'there', 'not there', or 'stopped' by Ctrl-C. What the
+ * child has to say is for its makers.
+ */
+export async function fetchElectron({ from = folder, note = failure, ms = limit } = {}) {
   const ended = await new Promise((resolve) => {
-    const child = spawn(process.execPath, [installer], { stdio: 'ignore' });
-    const stop = () => child.kill();
-    const timer = setTimeout(stop, ms);
-    process.once('SIGINT', stop);
-    const end = (ok) => {
-      clearTimeout(timer);
-      process.removeListener('SIGINT', stop);
-      resolve(ok);
+    const child = spawn(process.execPath, [join(from, 'install.js')], { stdio: 'ignore' });
+    let end = 'not there';
+    const stop = (reason) => {
+      end = reason;
+      child.kill();
     };
-    child.once('error', () => end(false));
-    child.once('exit', (code) => end(code === 0));
+    const interrupted = () => stop('stopped');
+    const timer = setTimeout(() => stop('not there'), ms);
+    process.once('SIGINT', interrupted);
+    const finish = (result) => {
+      clearTimeout(timer);
+      process.removeListener('SIGINT', interrupted);
+      resolve(result);
+    };
+    child.once('error', () => finish('not there'));
+    child.once('exit', (code) => finish(code === 0 ? 'there' : end));
   });
-  const there = ended && electronBinary() !== null;
-  if (!there) rememberFailure();
-  return there;
+  if (ended === 'stopped') return ended;
+  if (ended === 'there' && electronBinary(from) !== null) return ended;
+  rememberFailure(note);
+  return 'not there';
 }

@@ -45,6 +45,8 @@ export interface Loopback {
   readonly newAddress: () => string;
   /** Windows that are connected now. */
   readonly windows: () => number;
+  /** Settles when the next window connects. */
+  readonly nextWindow: () => Promise<void>;
   readonly close: () => Promise<void>;
 }
 
@@ -85,7 +87,10 @@ export async function startLoopback(options: LoopbackOptions): Promise<Loopback>
       refuse(socket);
       return;
     }
-    sockets.handleUpgrade(request, socket, head, (opened) => connect(opened, session, onFault));
+    sockets.handleUpgrade(request, socket, head, (opened) => {
+      connect(opened, session, onFault);
+      sockets.emit('connection', opened, request);
+    });
   });
 
   const ends = (['changed', 'closed', 'command'] as const).map((event) =>
@@ -147,6 +152,7 @@ export async function startLoopback(options: LoopbackOptions): Promise<Loopback>
     origin,
     newAddress: () => `${origin}/#${admission.mintToken()}`,
     windows: () => sockets.clients.size,
+    nextWindow: () => new Promise((resolve) => sockets.once('connection', () => resolve())),
     close: async () => {
       for (const end of ends) end();
       for (const socket of sockets.clients) socket.close(closedByShell, 'closed');

@@ -5,7 +5,7 @@ import { faultLog } from '../link/index.ts';
 import { createSession } from '../window/session.ts';
 import type { Session, Surroundings } from '../window/session-types.ts';
 import { accountName } from './account-name.ts';
-import { openInBrowser } from './browser.ts';
+import { openerFailed } from './browser.ts';
 import { startLoopback, type Loopback } from './loopback-server.ts';
 import { placesOfApp, settingsFolder, studiesFolder } from './places.ts';
 import { recentPaths } from './recent-paths.ts';
@@ -36,12 +36,12 @@ export async function serve({ study, open, port }: ServeOptions): Promise<number
   try {
     shell = await startLoopback({
       session,
-      files: new StaticFiles(places.window),
+      files: new StaticFiles(places.window, { '/favicon.ico': places.favicon }),
       port,
       onFault: (where, error) => void log(where, error),
     });
     if (study !== null) await openFirst(session, study);
-    await offer(shell, open);
+    await Promise.race([offer(shell, open), stopped]);
     say('Press Enter for another address, or Ctrl-C to close the study and stop.');
     const lines = createInterface({ input: process.stdin });
     lines.on('line', () => shell !== null && say(`\n  ${shell.newAddress()}\n`));
@@ -71,15 +71,31 @@ async function openFirst({ handlers }: Session, path: string): Promise<void> {
   if ('refused' in answer) say(answer.refused);
 }
 
+/** How long a browser may take to come to the address, in milliseconds. */
+const patience = 12_000;
+
 /** Shows a window in the person's browser, or says where one can be opened. */
 async function offer(shell: Loopback, open: boolean): Promise<void> {
   const address = shell.newAddress();
-  if (open && (await openInBrowser(address))) {
+  if (open && (await cameToWindow(shell, address))) {
     say('Understory is open in your browser. It stays on this machine and uses no network.');
     return;
   }
   say(`Open this address in a browser on this machine:\n\n  ${address}\n`);
   say('The address works once and for five minutes.');
+}
+
+/** Whether a browser came to the address: openers report success where nothing was shown. */
+function cameToWindow(shell: Loopback, address: string): Promise<boolean> {
+  return new Promise((resolve) => {
+    const timer = setTimeout(() => resolve(false), patience);
+    const end = (came: boolean): void => {
+      clearTimeout(timer);
+      resolve(came);
+    };
+    void shell.nextWindow().then(() => end(true));
+    void openerFailed(address).then(() => end(false));
+  });
 }
 
 function surroundings(demoFolder: string, settings: string, comeForward: () => void): Surroundings {

@@ -15,6 +15,8 @@ export interface Places {
   readonly preload: string;
   readonly demo: string;
   readonly icon: string;
+  /** The icon as browsers ask for it. */
+  readonly favicon: string;
 }
 
 /** Where the app's own parts lie. `from` is for tests. */
@@ -25,6 +27,7 @@ export function placesOfApp(from: string = import.meta.url): Places {
     preload: join(top, 'out', 'preload', 'preload.cjs'),
     demo: join(top, 'resources', 'demo'),
     icon: join(top, 'resources', 'icon', 'icon.png'),
+    favicon: join(top, 'resources', 'icon', 'icon.ico'),
   };
 }
 

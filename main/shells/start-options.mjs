@@ -8,12 +8,6 @@ export const startUsage = `npm start -- [study.understory] [--no-open] [--port N
   --port N          a port of your choice for the browser window
 `;
 
-/**
- * @param {readonly string[]} words
- * @param {string} folder where paths are meant from
- * @returns {{ study: string | null, open: boolean, port: number, browser: boolean, help: boolean }
- *   | { wrong: string }}
- */
 export function startOptions(words, folder) {
   const options = { study: null, open: true, port: 0, browser: false, help: false };
   for (let at = 0; at < words.length; at++) {

@@ -3,7 +3,7 @@ import { spawn } from 'node:child_process';
 import { join } from 'node:path';
 import { pathToFileURL } from 'node:url';
 import { buildIfNeeded, top } from './build.mjs';
-import { electronBinary, failedToday, fetchElectron } from './electron-binary.mjs';
+import { canBeFetched, electronBinary, failedToday, fetchElectron } from './electron-binary.mjs';
 import { startOptions, startUsage } from './start-options.mjs';
 
 const say = (text) => process.stdout.write(`${text}\n`);
@@ -26,6 +26,7 @@ async function start() {
   );
   const display = hasDisplay();
   const without = options.browser ? null : await withoutElectron(display);
+  if (without === 'stopped') return 0;
   if (without === undefined) {
     const code = await runElectron(options.study);
     if (code !== null) return code;
@@ -36,7 +37,7 @@ async function start() {
   return serve({ study: options.study, open: options.open && display, port: options.port });
 }
 
-/** Why there is no Electron, in a sentence; undefined where it is ready to run. */
+/** Why there is no Electron, in a sentence; undefined where it is ready to run; 'stopped' by Ctrl-C. */
 async function withoutElectron(display) {
   if (!display) return 'There is no display here, so Understory waits for a browser.';
   if (process.getuid?.() === 0) {
@@ -44,9 +45,11 @@ async function withoutElectron(display) {
   }
   if (electronBinary() !== null) return undefined;
   const cannot = 'Electron cannot be had here, so Understory opens in a browser window.';
-  if (failedToday()) return cannot;
+  if (failedToday() || !canBeFetched()) return cannot;
   say('Setting up: fetching Electron, once (about 120 MB; the only step that uses the network) …');
-  return (await fetchElectron()) ? undefined : cannot;
+  const fetched = await fetchElectron();
+  if (fetched === 'stopped') return fetched;
+  return fetched === 'there' ? undefined : cannot;
 }
 
 /** Electron's exit code, or null where it ended before its window was there. */

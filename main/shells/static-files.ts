@@ -4,6 +4,7 @@ import { join } from 'node:path';
 
 const contentTypes: Readonly<Record<string, string>> = {
   css: 'text/css; charset=utf-8',
+  ico: 'image/x-icon',
   html: 'text/html; charset=utf-8',
   js: 'text/javascript; charset=utf-8',
   json: 'application/json; charset=utf-8',
@@ -26,10 +27,15 @@ export interface StaticAnswer {
 export class StaticFiles {
   readonly #paths: ReadonlyMap<string, string>;
 
-  constructor(folder: string) {
-    this.#paths = new Map(
-      [...filesIn(folder, '')].map((name) => [`/${name}`, join(folder, ...name.split('/'))]),
-    );
+  /** `more`: files from elsewhere, by the path at which they are asked for. */
+  constructor(folder: string, more: Readonly<Record<string, string>> = {}) {
+    this.#paths = new Map([
+      ...[...filesIn(folder, '')].map((name): [string, string] => [
+        `/${name}`,
+        join(folder, ...name.split('/')),
+      ]),
+      ...Object.entries(more),
+    ]);
   }
 
   /** `target` as it stands in a request: path and query, still escaped. */
@@ -83,8 +89,6 @@ export function securityHeaders(connect: readonly string[] = []): Record<string,
       "base-uri 'none'",
       "form-action 'none'",
       "frame-ancestors 'none'",
-      // WebRTC is not covered by connect-src.
-      "webrtc 'block'",
       // Text of transcripts can never become markup by mistake: only Svelte's own templates do.
       "require-trusted-types-for 'script'",
       'trusted-types svelte-trusted-html',
@@ -94,7 +98,7 @@ export function securityHeaders(connect: readonly string[] = []): Record<string,
     'Cross-Origin-Embedder-Policy': 'require-corp',
     'Cross-Origin-Resource-Policy': 'same-origin',
     'Permissions-Policy':
-      'camera=(), microphone=(), geolocation=(), display-capture=(), usb=(), serial=(), hid=(), bluetooth=()',
+      'camera=(), microphone=(), geolocation=(), display-capture=(), usb=(), serial=(), hid=()',
     'Referrer-Policy': 'no-referrer',
     'X-Content-Type-Options': 'nosniff',
     'X-DNS-Prefetch-Control': 'off',

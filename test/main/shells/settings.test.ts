@@ -2,7 +2,7 @@ import { mkdtemp, readFile, rm, stat, writeFile } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { afterEach, beforeEach, describe, expect, it } from 'vitest';
-import { hasDisplay, openInBrowser, openerFor } from '../../../main/shells/browser.ts';
+import { hasDisplay, openerFailed, openerFor } from '../../../main/shells/browser.ts';
 import { placesOfApp, settingsFolder } from '../../../main/shells/places.ts';
 import { recentPaths } from '../../../main/shells/recent-paths.ts';
 import {
@@ -111,6 +111,7 @@ describe('folders', () => {
       preload: '/app/out/preload/preload.cjs',
       demo: '/app/resources/demo',
       icon: '/app/resources/icon/icon.png',
+      favicon: '/app/resources/icon/icon.ico',
     };
     expect(placesOfApp('file:///app/main/shells/places.ts')).toEqual(built);
     expect(placesOfApp('file:///app/out/main/electron.js')).toEqual(built);
@@ -136,9 +137,14 @@ describe('the browser', () => {
     expect(openerFor('x', 'win32')[0]).toBe('rundll32');
   });
 
-  it('is known not to have opened where that program is missing or fails', async () => {
-    expect(await openInBrowser('x', [join(folder, 'missing'), []])).toBe(false);
-    expect(await openInBrowser('x', [process.execPath, ['-e', 'process.exit(3)']])).toBe(false);
-    expect(await openInBrowser('x', [process.execPath, ['-e', '']])).toBe(true);
+  it('is known not to open where that program is missing or fails', async () => {
+    await openerFailed('x', [join(folder, 'missing'), []]);
+    await openerFailed('x', [process.execPath, ['-e', 'process.exit(3)']]);
+  });
+
+  it('is not known to have opened because that program ended well', async () => {
+    const failed = openerFailed('x', [process.execPath, ['-e', '']]).then(() => 'failed');
+    const waited = new Promise((resolve) => setTimeout(() => resolve('waited'), 1000));
+    expect(await Promise.race([failed, waited])).toBe('waited');
   });
 });
