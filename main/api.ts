@@ -120,15 +120,17 @@ export interface GatherView {
     readonly passageMaximumWords: number;
     readonly extraStopWords: readonly string[];
   };
-  /** What the model would see with the settings of now; null while nothing is gathered. */
-  readonly counted: {
-    readonly passages: number;
-    readonly words: number;
-    readonly forms: number;
-    readonly tooShort: number;
-  } | null;
   /** Memos on the study as a whole, oldest first. */
   readonly memos: readonly MemoView[];
+}
+
+/** What the model would see with the settings of now. */
+export interface Counted {
+  readonly passages: number;
+  readonly words: number;
+  readonly forms: number;
+  /** Passages with too few counted words to be suggested for. */
+  readonly tooShort: number;
 }
 
 export interface GatherOutcome {
@@ -490,6 +492,8 @@ export interface Api {
   };
   addAttributes: { takes: { name: string; bytes: Uint8Array }; gives: AttributesOutcome };
   gatherView: { takes: null; gives: GatherView };
+  /** Takes a moment in a large study; null while nothing is gathered. */
+  counted: { takes: null; gives: Counted | null };
   transcriptView: { takes: { transcript: string }; gives: TranscriptView };
   renameTranscript: { takes: { transcript: string; name: string }; gives: Overview };
   removeTranscript: { takes: { transcript: string }; gives: Overview };
@@ -605,6 +609,7 @@ export const methods = [
   'addTranscripts',
   'addAttributes',
   'gatherView',
+  'counted',
   'transcriptView',
   'renameTranscript',
   'removeTranscript',

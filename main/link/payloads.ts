@@ -66,6 +66,7 @@ export const payloads = {
   addTranscripts: v.strictObject({ files: v.pipe(v.array(file), v.maxLength(limits.files)) }),
   addAttributes: v.strictObject({ name, bytes }),
   gatherView: nothing,
+  counted: nothing,
   transcriptView: v.strictObject({ transcript: id }),
   renameTranscript: v.strictObject({ transcript: id, name }),
   removeTranscript: v.strictObject({ transcript: id }),

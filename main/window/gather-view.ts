@@ -1,7 +1,7 @@
 import { compareCodeUnits } from '../../engine/numbers/index.ts';
 import type { Transcript } from '../../engine/study/index.ts';
 import { languages, speakerKey, type Language } from '../../engine/text/index.ts';
-import type { GatherView, ParticipantRow, SpeakerView, TranscriptRow } from '../api.ts';
+import type { Counted, GatherView, ParticipantRow, SpeakerView, TranscriptRow } from '../api.ts';
 import { attributeNames } from '../reports/coded-excerpts.ts';
 import { memosOnStudy } from './memos.ts';
 import { needsLook } from './needs-look.ts';
@@ -24,7 +24,6 @@ const languageNames: Readonly<Record<Language, string>> = {
 
 export async function gatherView(open: OpenStudy): Promise<GatherView> {
   const { now } = open;
-  const counted = await countedWords(open);
   const talk = await talkOf(now);
   // Decisions may have been made meanwhile: passages that they changed have to be at hand.
   await now.settled();
@@ -44,12 +43,11 @@ export async function gatherView(open: OpenStudy): Promise<GatherView> {
       passageMaximumWords: settings.text.passageMaximumWords,
       extraStopWords: settings.text.extraStopWords,
     },
-    counted,
     memos: memosOnStudy(study),
   };
 }
 
-async function countedWords({ now }: OpenStudy): Promise<GatherView['counted']> {
+export async function countedWords({ now }: OpenStudy): Promise<Counted | null> {
   if (now.study.transcripts.size === 0) return null;
   const { passages, vocabulary } = await now.prepared();
   const enough = now.settings.suggestions.countedWords;

@@ -1,6 +1,6 @@
 import { readFile } from 'node:fs/promises';
 import type { Study } from '../../engine/study/index.ts';
-import type { AttributesOutcome, GatherOutcome, Refused } from '../api.ts';
+import type { AttributesOutcome, Counted, GatherOutcome, Refused } from '../api.ts';
 import type { Draft } from '../desk.ts';
 import { decode } from '../formats/index.ts';
 import { attributeEdits, readAttributeTable } from '../gather/attributes.ts';
@@ -8,7 +8,7 @@ import { findFiles } from '../gather/find-files.ts';
 import { gather, type HandedFile, type SourceFile } from '../gather/gather.ts';
 import { sentenceForSkipped, type FileRefusal } from '../sentences/sentences.ts';
 import { give, isRefused, refuse } from './answers.ts';
-import { gatherView } from './gather-view.ts';
+import { countedWords, gatherView } from './gather-view.ts';
 import type { OpenStudy } from './open-study.ts';
 import { people } from './people.ts';
 import type { Room } from './room.ts';
@@ -23,6 +23,7 @@ export function gatheringHandlers(
   | 'addTranscripts'
   | 'addAttributes'
   | 'gatherView'
+  | 'counted'
   | 'transcriptView'
   | 'renameTranscript'
   | 'removeTranscript'
@@ -63,6 +64,8 @@ export function gatheringHandlers(
     gatherView: room.look<null, Awaited<ReturnType<typeof gatherView>>>(async (open) =>
       give(await gatherView(open)),
     ),
+
+    counted: room.look<null, Counted | null>(async (open) => give(await countedWords(open))),
 
     transcriptView: room.look((open, { transcript }: { transcript: string }) =>
       transcriptView(open, transcript),

@@ -23,6 +23,7 @@ const samples: { readonly [Name in Method]: Api[Name]['takes'] } = {
   addTranscripts: { files: [{ name: 'a.txt', bytes }] },
   addAttributes: { name: 'a.csv', bytes },
   gatherView: null,
+  counted: null,
   transcriptView: { transcript: 't1' },
   renameTranscript: { transcript: 't1', name: 'One' },
   removeTranscript: { transcript: 't1' },

@@ -253,10 +253,11 @@ export function fakeGather(options: FakeOptions = {}): FakeLink {
         participants: people,
         attributes: [...new Set(people.flatMap(({ attributes }) => Object.keys(attributes)))],
         settings,
-        counted:
-          rows.length === 0 ? null : { passages: 431, words: 9122, forms: 1204, tooShort: 37 },
         memos: [],
       },
+    }),
+    counted: () => ({
+      value: rows.length === 0 ? null : { passages: 431, words: 9122, forms: 1204, tooShort: 37 },
     }),
     transcriptView: ({ transcript }) => {
       const row = rows.find(({ id }) => id === transcript);
