@@ -13,9 +13,13 @@ export function leftOutEach(people: number): number {
 
 /**
  * Who is left out of each of `samples` re-fits, ascending. Everybody is left out as often as anybody
- * else, to within one time: the draws go round the people in a new random order each time.
+ * else, to within one time: the draws go round the people in a new random order each time. Takes at
+ * least two people.
  */
 export function leftOut(people: readonly number[], samples: number, seed: number): number[][] {
+  if (people.length < 2) {
+    throw new Error(`leftOut: people.length is ${people.length}; must be 2 or more`);
+  }
   const chance = createGenerator(seed, 1);
   const each = leftOutEach(people.length);
   const queue: number[] = [];

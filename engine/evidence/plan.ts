@@ -73,8 +73,9 @@ export function planSteadiness(
   seed: number,
 ): SteadinessPlan | EvidenceRefused {
   const people = peopleHeard(material);
-  const outs = leftOut(people.length < fewestPeople ? [] : people, resamples, seed);
-  const fault = faultOf(material, people, outs, material.priors.themes);
+  if (people.length < fewestPeople) return tooFew(people);
+  const outs = leftOut(people, resamples, seed);
+  const fault = tooMany(material, outs, material.priors.themes);
   if (fault !== null) return fault;
   const refits = outs.map((out): Task => ({ kind: 'refit', out }));
   const shuffleSeed = hash32(seed, 1, 0);
@@ -128,8 +129,9 @@ export function planHowMany(
   seed: number,
 ): HowManyPlan | EvidenceRefused {
   const people = peopleHeard(material);
+  if (people.length < fewestPeople) return tooFew(people);
   const groups = dealt(people, Math.min(oneIn, people.length), seed);
-  const fault = faultOf(material, people, groups, Math.max(...numbers));
+  const fault = tooMany(material, groups, Math.max(...numbers));
   if (fault !== null) return fault;
   const shuffle = hash32(seed, 1, 0);
   return {
@@ -167,21 +169,23 @@ export function howManyResult(
   };
 }
 
-function faultOf(
-  { counts, people: whose }: Material,
-  people: readonly number[],
+function tooFew(people: readonly number[]): EvidenceRefused {
+  return { ok: false, code: 'too few participants', people: people.length, least: fewestPeople };
+}
+
+/** Refuses more themes than there are passages with counted words in some part of the study. */
+function tooMany(
+  { counts, people }: Material,
   outs: readonly (readonly number[])[],
   themes: number,
 ): EvidenceRefused | null {
-  if (people.length < fewestPeople) {
-    return { ok: false, code: 'too few participants', people: people.length, least: fewestPeople };
-  }
-  let passages = Infinity;
-  for (const out of outs) {
-    const { offsets, passages: rows } = partWithout(counts, whose, out).counts;
-    let counted = 0;
-    for (let d = 0; d < rows; d++) if (offsets[d + 1] > offsets[d]) counted++;
-    passages = Math.min(passages, counted);
-  }
+  const passages = Math.min(
+    ...outs.map((out) => {
+      const { offsets, passages: rows } = partWithout(counts, people, out).counts;
+      let counted = 0;
+      for (let d = 0; d < rows; d++) if (offsets[d + 1] > offsets[d]) counted++;
+      return counted;
+    }),
+  );
   return themes > passages ? { ok: false, code: 'too many themes', themes, passages } : null;
 }

@@ -7,7 +7,7 @@ import { sentenceFor } from '../sentences/sentences.ts';
 import type { EvidenceOptions } from '../work/run-evidence.ts';
 import { openStudy } from './open.ts';
 import { ProgressLine, Stop, stopIfAsked, type ExitCode, type Terminal } from './terminal.ts';
-import { checkFolder, stageFiles } from './write-files.ts';
+import { stageFiles } from './write-files.ts';
 
 export interface EvidenceCommand<Value> {
   /** The study as it was named, and where the table goes if that was said. */
@@ -37,7 +37,9 @@ export async function evidenceCommand<Value>(
     call: ['evidence', command.ending],
   });
   try {
-    await checkFolder(dirname(out));
+    // Tried first: what cannot be written there must not take minutes to be found out.
+    const trial = await stageFiles(dirname(out), new Map([[basename(out), '']]), [file.path]);
+    await trial.discard();
     const line = new ProgressLine(terminal);
     const made = await command.gather(desk, {
       signal: terminal.signal,
