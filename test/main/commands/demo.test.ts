@@ -93,7 +93,8 @@ describe('the demo study', () => {
   });
 });
 
-describe('through npm, as a person calls it', () => {
+// Each call starts npm and Node anew, which takes its time on a busy machine.
+describe('through npm, as a person calls it', { timeout: 180_000 }, () => {
   test('from another folder, the same bytes as within this process', async () => {
     const elsewhere = temporaryFolder();
     const ended = await runThroughNpm(elsewhere, [...call, '--out', 'out']);
