@@ -59,10 +59,14 @@ export function codedExcerpts(desk: Desk, standings: ReadonlySet<Reportable>): C
   const { study } = desk;
   const fitted = desk.fitted(study.fit);
   const settings = settingsOf(study.settings);
-  const offered =
-    fitted !== null && standings.has('suggested')
-      ? suggestions(study, fitted, settings.suggestions)
-      : [];
+  const offered = new Map<number | null, Suggestion[]>();
+  if (fitted !== null && standings.has('suggested')) {
+    for (const offer of suggestions(study, fitted, settings.suggestions)) {
+      const own = offered.get(offer.passage);
+      if (own === undefined) offered.set(offer.passage, [offer]);
+      else own.push(offer);
+    }
+  }
   const excerpts: CodedExcerpt[] = [];
   for (const transcript of transcriptsInOrder(study)) {
     const passages = passagesIn(desk, transcript, fitted);
@@ -71,10 +75,8 @@ export function codedExcerpts(desk: Desk, standings: ReadonlySet<Reportable>): C
       if (standings.has(coding.standing)) excerpts.push(ofCoding(context, coding));
     }
     for (const passage of passages) {
-      for (const offer of offered) {
-        if (offer.passage === passage.index) {
-          excerpts.push(ofSuggestion(context, passage, offer.theme));
-        }
+      for (const { theme } of offered.get(passage.index) ?? []) {
+        excerpts.push(ofSuggestion(context, passage, theme));
       }
     }
   }
