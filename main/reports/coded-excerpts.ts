@@ -9,7 +9,12 @@ import {
   type Transcript,
 } from '../../engine/study/index.ts';
 import { passagesOf, type Passage } from '../../engine/text/index.ts';
-import { settingsOf, suggestions, type Fitted } from '../../engine/themes/index.ts';
+import {
+  settingsOf,
+  suggestions,
+  type Fitted,
+  type Suggestion,
+} from '../../engine/themes/index.ts';
 import { transcriptsInOrder, type Desk } from '../desk.ts';
 import { hashOf } from '../ids.ts';
 import { printedProportions, toSixDecimals } from './proportions.ts';
