@@ -1,5 +1,9 @@
 import { untrack } from 'svelte';
 import type { Api, FitProgress, Link, Method, Overview } from '../../main/api.ts';
+import type { Connection, WindowLink } from '../link.ts';
+
+/** A link that may tell how it stands with the rest of the program. */
+type Watched = Link & Partial<Pick<WindowLink, 'onConnection'>>;
 
 export type PlaceName = 'gather' | 'read' | 'shape' | 'report';
 
@@ -14,11 +18,12 @@ export interface Message {
  * message. Everything that is decided goes through `ask` or `decide`.
  */
 export class StudyState {
-  readonly link: Link;
+  readonly link: Watched;
   #overview = $state.raw<Overview | null>(null);
   #message = $state.raw<Message | null>(null);
   #progress = $state.raw<readonly FitProgress[] | null>(null);
   #fitting: AbortController | null = null;
+  #lost: string | null = null;
   #busy = $state(0);
   place = $state<PlaceName>('gather');
   /** The theme that Shape and Read have in hand. */
@@ -27,7 +32,7 @@ export class StudyState {
   goal = $state.raw<{ transcript: string; start: number; end: number } | null>(null);
   finding = $state(false);
 
-  constructor(link: Link) {
+  constructor(link: Watched) {
     this.link = link;
   }
 
@@ -36,6 +41,7 @@ export class StudyState {
     const ends = [
       this.link.on('changed', (overview) => this.#take(overview)),
       this.link.on('closed', () => this.#leave()),
+      this.link.onConnection?.((connection) => this.#connected(connection)) ?? (() => {}),
     ];
     void this.ask('overview', null).then((overview) => {
       if (overview !== undefined) this.#overview = overview;
@@ -161,6 +167,13 @@ export class StudyState {
     this.#take(result.overview);
     const verb = method === 'undo' ? 'Taken back' : 'Done again';
     if (result.did !== null) this.say('done', `${verb}: ${result.did}.`);
+  }
+
+  /** A broken connection is said until it is mended. */
+  #connected({ sentence }: Connection): void {
+    if (sentence !== null) this.#message = { kind: 'refused', text: sentence };
+    else if (this.#message?.text === this.#lost) this.#message = null;
+    this.#lost = sentence;
   }
 
   #trace(point: FitProgress): void {
