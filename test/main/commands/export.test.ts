@@ -91,7 +91,7 @@ describe('export writes coded excerpts', () => {
     await exported('json', 'e.json');
     const { study, filter, excerpts } = JSON.parse(readFileSync(join(folder, 'e.json'), 'utf8'));
     expect(study).toBe('s');
-    expect(filter).toEqual({ standings: ['confirmed', 'by hand'] });
+    expect(filter).toEqual({ standings: ['confirmed', 'by hand'], themes: null });
     expect(excerpts.map(({ id }: { id: string }) => id)).toEqual(
       decided().map((row) => row['excerpt_id']),
     );
