@@ -1,0 +1,29 @@
+import { join } from 'node:path';
+import { defineConfig } from 'vite';
+import { assemblyscript } from '../../.config/assemblyscript.ts';
+
+const top = join(import.meta.dirname, '..', '..');
+const workers = ['fit.worker', 'pool.worker', 'evidence.worker'];
+
+/** Benches are bundled as the app is, so that the same code is measured. */
+export default defineConfig({
+  root: top,
+  logLevel: 'warn',
+  plugins: [assemblyscript()],
+  ssr: { noExternal: true },
+  build: {
+    ssr: true,
+    outDir: join(top, 'out', 'bench'),
+    rolldownOptions: {
+      input: {
+        engine: join(top, 'test', 'bench', 'engine.ts'),
+        decisions: join(top, 'test', 'bench', 'decisions.ts'),
+        large: join(top, 'test', 'bench', 'large.ts'),
+        ...Object.fromEntries(
+          workers.map((name) => [name, join(top, 'main', 'work', `${name}.ts`)]),
+        ),
+      },
+      output: { entryFileNames: '[name].js', chunkFileNames: 'chunks/[name]-[hash].js' },
+    },
+  },
+});
