@@ -12,6 +12,7 @@ import {
   decisions,
   modelledThemes,
   recordedSettings,
+  rowOf,
   settingsOf,
   type FitDone,
   type FitJob,
@@ -19,6 +20,7 @@ import {
   type Fitted,
   type ModelledTheme,
   type PreviousFit,
+  type RememberedTheme,
 } from '../engine/themes/index.ts';
 import type { Desk, DeskResult } from './desk.ts';
 import { hashOf } from './ids.ts';
@@ -70,6 +72,7 @@ export async function fit(
     decisions: decisions(before),
     previous: kind === 're-fit' && previous !== null ? asPrevious(previous) : null,
     pinnedFrom: previous === null ? null : asPrevious(previous),
+    remembered: previous === null ? [] : rememberedThemes(desk, kept, previous),
   };
   const basis = basisOf(before, kind);
   const done = await runFit(job, options);
@@ -160,6 +163,24 @@ function asModelled({ id }: Theme): ModelledTheme {
 
 function asPrevious({ fit, words, theta, phi }: Fitted): PreviousFit {
   return { themes: fit.themes, words, theta, phi };
+}
+
+/** Themes that were in the model before, and not in the fit on screen: set aside and brought back. */
+function rememberedThemes(
+  desk: Desk,
+  themes: readonly ModelledTheme[],
+  { fit }: Fitted,
+): RememberedTheme[] {
+  const fits = [...desk.study.fits.values()].reverse();
+  return themes.flatMap(({ id }) => {
+    if (fit.themes.includes(id)) return [];
+    const last = fits.find((one) => one.themes.includes(id));
+    const fitted = last === undefined ? null : desk.fitted(last.id);
+    if (fitted === null) return [];
+    const { vocabulary } = fitted.words;
+    const row = rowOf(fitted, id) * vocabulary.length;
+    return [{ theme: id, vocabulary, phi: fitted.phi.slice(row, row + vocabulary.length) }];
+  });
 }
 
 /** What may not change while a fit runs: the words, and which themes there are. */

@@ -20,6 +20,16 @@ export interface FitJob {
   readonly previous: PreviousFit | null;
   /** Pinned themes keep the words of this fit, also from scratch; null where there is none. */
   readonly pinnedFrom: PreviousFit | null;
+  /** Themes that the fit before does not know and an earlier one did: they were set aside since. */
+  readonly remembered?: readonly RememberedTheme[];
+}
+
+/** The words of a theme in the last fit that had it. */
+export interface RememberedTheme {
+  readonly theme: string;
+  readonly vocabulary: readonly string[];
+  /** A share for each of them. */
+  readonly phi: Float32Array;
 }
 
 export interface PreviousFit {

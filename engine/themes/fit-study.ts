@@ -134,7 +134,7 @@ function startOf(job: FitJob, words: Prepared, places: WordPlaces): Start {
   const leanings = leaningsOf(job, places);
   return job.previous === null
     ? { kind: 'fresh', seed: job.seed, leanings }
-    : warmStart(job.themes, words, job.previous, leanings);
+    : warmStart(job.themes, words, job.previous, leanings, job.remembered);
 }
 
 function countedPassages(counts: Counts): number {
@@ -151,8 +151,10 @@ function sum(numbers: Float32Array): number {
   return all;
 }
 
-function base({ alpha, eta, seed, model, previous }: FitJob): Record<string, unknown> {
-  return { alpha, eta, seed, model, start: previous === null ? 'fresh' : 'warm' };
+function base({ alpha, eta, seed, model, previous, remembered = [] }: FitJob): object {
+  const known = remembered.map(({ phi, ...rest }) => ({ ...rest, phi: [...phi] }));
+  const start = previous === null ? 'fresh' : 'warm';
+  return { alpha, eta, seed, model, start, ...(known.length > 0 ? { remembered: known } : {}) };
 }
 
 /** Typed arrays have no JSON of their own that other readers would agree on. */

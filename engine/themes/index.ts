@@ -1,6 +1,6 @@
 export { askedOf } from './asked.ts';
 export { decisions, type Decided } from './decided.ts';
-export type { FitJob, PreviousFit } from './fit-job.ts';
+export type { FitJob, PreviousFit, RememberedTheme } from './fit-job.ts';
 export {
   beginFit,
   fitStudy,

@@ -2,7 +2,7 @@ import type { Priors } from '../model/index.ts';
 import { belongsTo } from '../spans/index.ts';
 import type { Prepared } from '../text/index.ts';
 import type { FitJob, WordPlaces } from './fit-job.ts';
-import { phiInVocabulary } from './warm-start.ts';
+import { phiInVocabulary, rememberedPhi } from './warm-start.ts';
 
 /**
  * A seed's extra prior counts: measured on two corpora, most of the work is done by where the word
@@ -14,7 +14,10 @@ const seedCap = 20;
 const seedFloor = 3;
 
 /** The part of a job that says what the model is to be. */
-export type Deciding = Pick<FitJob, 'themes' | 'decisions' | 'alpha' | 'eta' | 'pinnedFrom'>;
+export type Deciding = Pick<
+  FitJob,
+  'themes' | 'decisions' | 'alpha' | 'eta' | 'pinnedFrom' | 'remembered'
+>;
 
 /**
  * Decisions as asymmetric Dirichlet priors (seeds as in Jagarlamudi, Daumé & Udupa 2012): seeds raise
@@ -77,11 +80,15 @@ function passagePriors(job: Deciding, words: Prepared): Priors['passagePriors'] 
 }
 
 function frozen(job: Deciding, words: Prepared): Priors['frozen'] {
-  const { pinnedFrom } = job;
+  const { pinnedFrom, remembered = [] } = job;
   if (pinnedFrom === null) return [];
   return job.themes.flatMap(({ id, pinned }, theme) => {
+    if (!pinned) return [];
     const row = pinnedFrom.themes.indexOf(id);
-    if (!pinned || row < 0) return [];
+    if (row < 0) {
+      const known = remembered.find((one) => one.theme === id);
+      return known === undefined ? [] : [{ theme, phi: rememberedPhi(known, words.vocabulary) }];
+    }
     return [{ theme, phi: phiInVocabulary(pinnedFrom, row, words.vocabulary) }];
   });
 }

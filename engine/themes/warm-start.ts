@@ -1,6 +1,6 @@
 import type { Start } from '../model/index.ts';
 import type { Prepared } from '../text/index.ts';
-import type { PreviousFit } from './fit-job.ts';
+import type { PreviousFit, RememberedTheme } from './fit-job.ts';
 import type { ModelledTheme } from './modelled-theme.ts';
 
 /**
@@ -12,24 +12,30 @@ const held = 1;
 /**
  * Carries a stored fit over to a new set of themes, words and passages: rows follow ids, merged ones
  * are added up, columns follow word forms, passages follow their places in the text. A theme that
- * the fit did not know starts as the average of all words; so does a passage that it did not know.
+ * the fit did not know starts as the average of all words, with an even part of each passage; so does
+ * a passage that it did not know. One that was set aside meanwhile starts from the words that are
+ * remembered of it and is held to them: from the average it came back as another theme (README.md
+ * of the model).
  */
 export function warmStart(
   themes: readonly ModelledTheme[],
   words: Prepared,
   previous: PreviousFit,
   leanings: readonly { readonly theme: number; readonly word: number }[],
+  remembered: readonly RememberedTheme[] = [],
 ): Start {
   const sources = themes.map(({ id, absorbed }) =>
     [id, ...absorbed].map((each) => previous.themes.indexOf(each)).filter((row) => row >= 0),
   );
+  const known = themes.map(({ id }) => remembered.find(({ theme }) => theme === id));
   const sizes = expectedWords(previous);
   const average = averageWords(words);
   const size = words.vocabulary.length;
   const phi = new Float32Array(themes.length * size);
   sources.forEach((rows, theme) => {
     const into = phi.subarray(theme * size, (theme + 1) * size);
-    if (rows.length === 0) into.set(average);
+    const own = known[theme];
+    if (rows.length === 0) into.set(own ? rememberedPhi(own, words.vocabulary) : average);
     else mixRows(previous, rows, sizes, words.vocabulary, into);
   });
   return {
@@ -37,7 +43,9 @@ export function warmStart(
     theta: proportions(sources, words, previous),
     phi,
     leanings,
-    hold: Float32Array.from(sources, (rows) => (rows.length === 0 ? 0 : held)),
+    hold: Float32Array.from(sources, (rows, theme) =>
+      rows.length === 0 && known[theme] === undefined ? 0 : held,
+    ),
   };
 }
 
@@ -56,8 +64,20 @@ export function phiInVocabulary(
   return into;
 }
 
+/** What is remembered of a theme, over another vocabulary; sums to 1. */
+export function rememberedPhi(
+  { theme, vocabulary, phi }: RememberedTheme,
+  now: readonly string[],
+): Float32Array {
+  const into = new Float32Array(now.length);
+  mixRows({ themes: [theme], words: { vocabulary }, phi }, [0], [1], now, into);
+  return into;
+}
+
 function mixRows(
-  previous: PreviousFit,
+  previous: Pick<PreviousFit, 'themes' | 'phi'> & {
+    readonly words: Pick<Prepared, 'vocabulary'>;
+  },
   rows: readonly number[],
   sizes: ArrayLike<number>,
   vocabulary: readonly string[],

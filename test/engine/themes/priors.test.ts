@@ -117,7 +117,7 @@ describe('decisions become priors', () => {
     expect(passagePriors).toEqual([]);
   });
 
-  test('a pinned theme keeps the words of the fit that is given, and only that', () => {
+  test('a pinned theme keeps the words of the fit that is given, or those that are remembered of it', () => {
     const pinnedFrom = previousOf(
       ['b', 'a'],
       words,
@@ -139,6 +139,11 @@ describe('decisions become priors', () => {
       { theme: 0, phi: Float32Array.of(0.5, 0.25, 0.25) },
     ]);
     expect(priors(themes).frozen).toEqual([]);
+    const remembered = [{ theme: 'c', vocabulary: ['school'], phi: Float32Array.of(1) }];
+    expect(priors(themes, { pinnedFrom, remembered }).frozen[1]).toEqual({
+      theme: 2,
+      phi: Float32Array.of(0, 0, 1),
+    });
     expect(school).toBe(2);
   });
 });

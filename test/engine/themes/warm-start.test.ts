@@ -57,6 +57,28 @@ describe('a re-fit starts where the last fit ended', () => {
     expect(two[0]).toBeCloseTo(1 / 2, 6);
   });
 
+  test('a theme that was set aside starts from the words remembered of it, and is held to them', () => {
+    const remembered = [
+      {
+        theme: 'back',
+        vocabulary: ['net', 'oar', 'school'],
+        phi: Float32Array.of(0.25, 0.5, 0.25),
+      },
+    ];
+    const started = warmStart([modelled('sea'), modelled('back')], words, previous, [], remembered);
+    if (started.kind !== 'warm') throw new Error(started.kind);
+    // Nobody says "oar" any more; what is left sums to 1. The vocabulary: boat, net, school.
+    expect(rows(started.phi, 3)[1]).toEqual([0, 0.5, 0.5]);
+    expect(started.hold).toEqual(Float32Array.of(1, 1));
+  });
+
+  test('what is remembered of a theme that the last fit knows is not used', () => {
+    const remembered = [{ theme: 'sea', vocabulary: ['net'], phi: Float32Array.of(1) }];
+    const started = warmStart([modelled('sea')], words, previous, [], remembered);
+    if (started.kind !== 'warm') throw new Error(started.kind);
+    expect(started.phi).toEqual(previous.phi.slice(0, 3));
+  });
+
   test('a new theme starts as the average of all words, with an even part, held by nothing', () => {
     const { theta, phi, hold } = start([
       modelled('sea'),
