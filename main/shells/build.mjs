@@ -2,7 +2,7 @@
 // before anything is built.
 import { spawnSync } from 'node:child_process';
 import { createHash } from 'node:crypto';
-import { mkdirSync, readdirSync, readFileSync, statSync, writeFileSync } from 'node:fs';
+import { existsSync, mkdirSync, readdirSync, readFileSync, statSync, writeFileSync } from 'node:fs';
 import { dirname, join, relative } from 'node:path';
 import { fileURLToPath } from 'node:url';
 
@@ -42,8 +42,12 @@ function isFresh(print) {
 export function buildIfNeeded({ announce = true } = {}) {
   const print = fingerprint();
   if (isFresh(print)) return true;
-  if (announce) process.stderr.write('Building once; this takes a few seconds …\n');
   const builder = join(top, 'node_modules', 'electron-vite', 'bin', 'electron-vite.js');
+  if (!existsSync(builder)) {
+    process.stderr.write('What Understory is built with is not installed; run npm ci first.\n');
+    return false;
+  }
+  if (announce) process.stderr.write('Building once; this takes a few seconds …\n');
   const { status } = spawnSync(
     process.execPath,
     [builder, 'build', '-c', 'electron.config.ts', '--logLevel', 'warn'],
