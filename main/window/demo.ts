@@ -12,6 +12,7 @@ import { BufferedStore } from '../store.ts';
 import { refuse, give, isRefused } from './answers.ts';
 import { fitForWindow } from './fit-for-window.ts';
 import { startGroup } from './open-study.ts';
+import { firstEdits } from './first-edits.ts';
 import type { CallContext, Surroundings } from './session-types.ts';
 import { folderFailure } from './write-file.ts';
 
@@ -42,8 +43,7 @@ export async function buildDemo(
   const steps = [
     desk.make(
       [
-        { edit: { kind: 'studyStarted', study: id, name: demoName } },
-        { edit: { kind: 'readerAdded', reader } },
+        ...firstEdits(id, demoName, reader),
         {
           edit: {
             kind: 'settingsChanged',

@@ -17,6 +17,7 @@ import { sentenceFor } from '../sentences/sentences.ts';
 import { give, isRefused, refuse } from './answers.ts';
 import { buildDemo, demoName } from './demo.ts';
 import { safeFileName } from './file-names.ts';
+import { firstEdits } from './first-edits.ts';
 import { OpenStudy, startGroup } from './open-study.ts';
 import { overview } from './overview.ts';
 import { faultInWords, type Room } from './room.ts';
@@ -132,13 +133,7 @@ async function startStudy(room: Room, name: string, path: string): Promise<Answe
   const created = await createStudyFile(path, { studyId: id }, knock(room));
   if (!created.ok) return { code: created.code, refused: sentenceFor(created) };
   const open = new OpenStudy(created.value, { accountName: readerName, now });
-  const made = open.desk.make(
-    [
-      { edit: { kind: 'studyStarted', study: id, name } },
-      { edit: { kind: 'readerAdded', reader: open.reader } },
-    ],
-    { group: startGroup },
-  );
+  const made = open.desk.make(firstEdits(id, name, open.reader), { group: startGroup });
   if (!made.ok) {
     open.close();
     return open.refusal(made);
