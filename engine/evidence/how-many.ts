@@ -1,7 +1,8 @@
+import { matchThemes } from '../model/index.ts';
 import { coherence } from './coherence.ts';
 import type { Material } from './material.ts';
 import { mean, standardError } from './quantile.ts';
-import { fitAnew, refitWithout, type Refit } from './refit.ts';
+import { heldOutOf, themesWithout } from './refit.ts';
 import { shuffled } from './shuffled.ts';
 import { perplexityOf } from './perplexity.ts';
 
@@ -14,15 +15,16 @@ export interface NumberAsked {
   readonly shuffle: number | null;
 }
 
-/** How a number of themes fares: means over its themes. Plain JSON. */
+/** How a number of themes fares, over the fits to everybody and to everybody but each group. */
 export type NumberScores = {
   readonly themes: number;
   /** Held-out perplexity over all groups. */
   readonly perplexity: number;
-  /** Over the themes of all the fits: one fit's alone jump from number to number. */
+  /** NPMI, mean over the themes of all the fits: those of one alone jump from number to number. */
   readonly coherence: number;
-  /** Standard errors, over the fits without each group. */
+  /** Standard errors over the fits. */
   readonly coherenceError: number;
+  /** Mean matched cosine between every two of the fits, 0 to 1. */
   readonly steadiness: number;
   readonly steadinessError: number;
 };
@@ -48,23 +50,36 @@ export function scoreNumber(
   const part = (done: number) => ({
     progress: (_point: unknown, fraction: number) => progress((done + fraction) / fits),
   });
-  const fit = fitAnew(plain, part(0));
-  if (fit === null) return null;
-  const found: Material = { ...plain, phi: fit.phi };
-  const refits: Refit[] = [];
-  for (const [done, group] of groups.entries()) {
-    const refit = refitWithout(found, group, part(1 + done));
-    if (refit === null) return null;
-    refits.push(refit);
+  const outs = [[], ...groups];
+  const found: Float32Array[] = [];
+  for (const [done, out] of outs.entries()) {
+    const phi = themesWithout(plain, out, part(done));
+    if (phi === null) return null;
+    found.push(phi);
   }
-  const steadiness = refits.map(({ cosines }) => mean(cosines));
-  const coherences = [mean(coherence(counts, fit.phi)), ...refits.map((refit) => refit.coherence)];
+  const held = groups.map((group, i) => heldOutOf(plain, found[1 + i], group));
+  const coherences = found.map((phi) => mean(coherence(counts, phi)));
+  const likeness = likenesses(found, counts.words);
   return {
     themes,
-    perplexity: perplexityOf(refits.map(({ heldOut }) => heldOut)).perplexity,
+    perplexity: perplexityOf(held).perplexity,
     coherence: mean(coherences),
     coherenceError: standardError(coherences),
-    steadiness: mean(steadiness),
-    steadinessError: standardError(steadiness),
+    steadiness: mean(likeness),
+    steadinessError: standardError(likeness),
   };
+}
+
+/** How much each set of themes resembles the others: its mean matched cosine to them. */
+function likenesses(found: readonly Float32Array[], words: number): number[] {
+  const n = found.length;
+  const sums = new Float64Array(n);
+  for (let i = 0; i < n; i++) {
+    for (let j = i + 1; j < n; j++) {
+      const alike = mean(matchThemes(found[i], found[j], words).cosines);
+      sums[i] += alike;
+      sums[j] += alike;
+    }
+  }
+  return Array.from(sums, (sum) => sum / (n - 1));
 }

@@ -1,4 +1,5 @@
 import type { NumberScores } from './how-many.ts';
+import { mean } from './quantile.ts';
 
 /** One number of themes, and what it reaches on shuffled words. */
 export type NumberPoint = NumberScores & {
@@ -13,6 +14,10 @@ export type NumberPoint = NumberScores & {
 const coherenceShare = 0.1;
 /** "Near" the smallest good number: up to half as many again. */
 const nearness = 1.5;
+/** So many numbers on either side smooth a coherence … */
+const coherenceReach = 1;
+/** … and a floor, which is one chance among many. */
+const floorReach = 2;
 /** A difference of up to so many of its standard errors is none. */
 const errors = 2;
 /**
@@ -39,16 +44,30 @@ export type Recommendation =
  *    on both sides as long as they cannot be told from it.
  *
  * Two numbers cannot be told apart where they differ by no more than two standard errors of their
- * difference. Takes points in ascending order of themes.
+ * difference. Chance is smoothed away first: a coherence that cannot be told from the mean of itself
+ * and its two neighbours is taken for that mean, and a floor of steadiness is the mean over two
+ * numbers on either side. Takes points in ascending order of themes.
  */
 export function recommend(points: readonly NumberPoint[]): Recommendation {
   const coherent = points.filter((point) => point.coherence > point.floor.coherence);
   if (coherent.length === 0) return { kind: 'none' };
-  const best = largest(coherent, (point) => point.coherence);
+  const around = (point: NumberPoint, reach: number): readonly NumberPoint[] => {
+    const at = points.indexOf(point);
+    return points.slice(Math.max(0, at - reach), at + reach + 1);
+  };
+  const coherenceOf = (point: NumberPoint): number => {
+    const smooth = mean(around(point, coherenceReach).map(({ coherence }) => coherence));
+    const apart = Math.abs(smooth - point.coherence) > errors * point.coherenceError;
+    return apart ? point.coherence : smooth;
+  };
+  const above = (point: NumberPoint): number =>
+    point.steadiness - mean(around(point, floorReach).map(({ floor }) => floor.steadiness));
+
+  const best = largest(coherent, coherenceOf);
   const good = coherent.filter((point) => {
-    const short = best.coherence - point.coherence;
+    const short = coherenceOf(best) - coherenceOf(point);
     return (
-      short <= coherenceShare * Math.abs(best.coherence) ||
+      short <= coherenceShare * Math.abs(coherenceOf(best)) ||
       short <= errors * ofDifference(best.coherenceError, point.coherenceError)
     );
   });
@@ -65,10 +84,6 @@ export function recommend(points: readonly NumberPoint[]): Recommendation {
   return from === to
     ? { kind: 'one', themes: points[from].themes }
     : { kind: 'range', from: points[from].themes, to: points[to].themes };
-}
-
-function above({ steadiness, floor }: NumberPoint): number {
-  return steadiness - floor.steadiness;
 }
 
 function errorOf({ steadinessError }: NumberPoint): number {

@@ -6,11 +6,9 @@ import {
   type ModelFit,
   type Watcher,
 } from '../model/index.ts';
-import { coherence } from './coherence.ts';
 import { leads } from './leads.ts';
 import type { Material } from './material.ts';
 import type { HeldOutWords } from './perplexity.ts';
-import { mean } from './quantile.ts';
 import { partOfPeople, partWithout, priorsOfPart, undecided } from './part.ts';
 
 /** Mixed into the seed that halves held-out passages: always the same halves. */
@@ -22,8 +20,6 @@ export interface Refit {
   readonly cosines: readonly number[];
   /** The theme that leads each passage now, by the fit's own rows; -1 where nothing was counted. */
   readonly leads: Int32Array;
-  /** Mean NPMI of the themes found anew, over the passages of everybody. */
-  readonly coherence: number;
   /** Half of the words of those who were left out, predicted from the other half. */
   readonly heldOut: HeldOutWords;
 }
@@ -36,6 +32,29 @@ export function fitAnew(material: Material, watcher?: Watcher): ModelFit | null 
   );
 }
 
+/** Themes looked for anew without the people in `out`, K x V by rows; null where it was stopped. */
+export function themesWithout(
+  material: Material,
+  out: readonly number[],
+  watcher?: Watcher,
+): Float32Array | null {
+  const { counts, people, priors } = material;
+  const part = partWithout(counts, people, out);
+  const heard = { ...material, counts: part.counts, priors: priorsOfPart(priors, part) };
+  return fitAnew(heard, watcher)?.phi ?? null;
+}
+
+/** Scores half of the words of the people in `out` under themes that were found without them. */
+export function heldOutOf(
+  { counts, people, priors, settings }: Material,
+  phi: Float32Array,
+  out: readonly number[],
+): HeldOutWords {
+  const unheard = partOfPeople(counts, people, out).counts;
+  const score = heldOut(unheard, undecided(priors), phi, settings.foldPasses, halvesSeed);
+  return { total: score.likelihood * score.words, words: score.words };
+}
+
 /**
  * Looks for the themes anew without the people in `out`, pairs them with those of the fit so that
  * the cosines are largest in sum, and asks where every passage goes now by its words alone, also the
@@ -46,23 +65,16 @@ export function refitWithout(
   out: readonly number[],
   watcher?: Watcher,
 ): Refit | null {
-  const { counts, people, priors, settings } = material;
-  const part = partWithout(counts, people, out);
-  const fit = fitAnew(
-    { ...material, counts: part.counts, priors: priorsOfPart(priors, part) },
-    watcher,
-  );
-  if (fit === null) return null;
-  const { partner, cosines } = matchThemes(material.phi, fit.phi, counts.words);
+  const phi = themesWithout(material, out, watcher);
+  if (phi === null) return null;
+  const { counts, priors, settings } = material;
+  const { partner, cosines } = matchThemes(material.phi, phi, counts.words);
   const rowOf = new Map(Array.from(partner, (anew, row) => [anew, row]));
-  const theta = folded(counts, undecided(priors), fit.phi, settings.foldPasses);
-  const unheard = partOfPeople(counts, people, out).counts;
-  const score = heldOut(unheard, undecided(priors), fit.phi, settings.foldPasses, halvesSeed);
+  const theta = folded(counts, undecided(priors), phi, settings.foldPasses);
   return {
     cosines: [...cosines],
     leads: leads(counts, priors.themes, theta).map((anew) => rowOf.get(anew) ?? -1),
-    coherence: mean(coherence(counts, fit.phi)),
-    heldOut: { total: score.likelihood * score.words, words: score.words },
+    heldOut: heldOutOf(material, phi, out),
   };
 }
 

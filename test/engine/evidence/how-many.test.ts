@@ -76,13 +76,44 @@ describe('recommend', () => {
 
   it('weighs steadiness above its floor: few themes are steady in anything', () => {
     const points = curves([
-      [6, 0.3, 0.9],
-      [8, 0.3, 0.85],
+      [4, 0.15, 0.95],
+      [5, 0.15, 0.95],
+      [6, 0.15, 0.95],
+      [7, 0.15, 0.95],
+      [8, 0.3, 0.92],
+      [9, 0.3, 0.85],
+      [10, 0.3, 0.85],
+      [11, 0.3, 0.85],
+      [12, 0.3, 0.85],
     ]).map((point) => ({
       ...point,
-      floor: { ...point.floor, steadiness: point.themes === 6 ? 0.88 : 0.6 },
+      floor: { ...point.floor, steadiness: point.themes <= 8 ? 0.9 : 0.5 },
     }));
-    expect(recommend(points)).toEqual({ kind: 'one', themes: 8 });
+    expect(recommend(points)).toEqual({ kind: 'range', from: 11, to: 12 });
+  });
+
+  it('takes the mean of neighbouring floors: one that chance left low makes no number stand out', () => {
+    const points = curves([
+      [8, 0.3, 0.8],
+      [9, 0.3, 0.8],
+      [10, 0.3, 0.8],
+      [11, 0.3, 0.8],
+      [12, 0.3, 0.8],
+    ]).map((point) => ({
+      ...point,
+      floor: { ...point.floor, steadiness: point.themes === 10 ? 0.45 : 0.5 },
+    }));
+    expect(recommend(points)).toEqual({ kind: 'range', from: 8, to: 12 });
+  });
+
+  it('lets no dip end a range that chance explains', () => {
+    const curve = [
+      [8, 0.3, 0.8],
+      [9, 0.26, 0.8],
+      [10, 0.3, 0.8],
+    ] as const;
+    expect(recommend(curves(curve, 0.001))).toEqual({ kind: 'one', themes: 8 });
+    expect(recommend(curves(curve, 0.014))).toEqual({ kind: 'range', from: 8, to: 10 });
   });
 
   it('says nothing where shuffled words are as coherent, or nothing was tried', () => {

@@ -154,7 +154,7 @@ describe('steadinessOf', () => {
   const refit = (leads: number[], cosines: number[]): Refit => ({
     cosines,
     leads: Int32Array.from(leads),
-    coherence: 0,
+
     heldOut: { total: -8 * Math.log(8), words: 8 },
   });
   const refits = [
