@@ -189,15 +189,102 @@ export const scenes: readonly Scene[] = [
     },
   },
   {
+    name: 'gather-rename',
+    reach: async (page) => {
+      await page.getByRole('button', { name: 'Rename', exact: true }).click();
+      await page.getByRole('dialog').waitFor();
+    },
+  },
+  {
+    name: 'gather-remove',
+    reach: async (page) => {
+      await closeDialog(page);
+      await page.getByRole('button', { name: 'Remove', exact: true }).click();
+      await page.getByRole('dialog').waitFor();
+    },
+  },
+  {
     name: 'gather-participants',
-    reach: (page) => page.getByRole('tab', { name: /Participants/u }).click(),
+    reach: async (page) => {
+      await closeDialog(page);
+      await page.getByRole('tab', { name: /Participants/u }).click();
+    },
+  },
+  {
+    name: 'gather-attribute',
+    reach: async (page) => {
+      await button(page, 'Add an attribute').click();
+      await page.getByRole('dialog').waitFor();
+    },
   },
   {
     name: 'gather-words',
-    reach: (page) => page.getByRole('tab', { name: 'What is counted' }).click(),
+    reach: async (page) => {
+      await closeDialog(page);
+      await page.getByRole('tab', { name: 'What is counted' }).click();
+    },
   },
-  { name: 'read', reach: (page) => place(page, 'Read') },
-  { name: 'report', reach: (page) => place(page, 'Report') },
+  {
+    name: 'read',
+    reach: async (page) => {
+      await place(page, 'Read');
+      await page.locator('[role=article][aria-current=true]').waitFor();
+    },
+  },
+  {
+    name: 'read-list',
+    reach: async (page) => {
+      await button(page, /Reading list/u).click();
+      await page.getByRole('dialog').waitFor();
+    },
+  },
+  {
+    name: 'read-one-at-a-time',
+    reach: async (page) => {
+      await page.getByRole('radio', { name: /Strongest first/iu }).check();
+      await button(page, 'Read this list').click();
+      await page.getByRole('dialog').waitFor({ state: 'detached' });
+      await page.locator('[role=article][aria-current=true]').waitFor();
+    },
+  },
+  {
+    name: 'read-theme',
+    reach: async (page) => {
+      await page.keyboard.press('t');
+      await page.getByRole('dialog').waitFor();
+    },
+  },
+  {
+    name: 'read-memo',
+    reach: async (page) => {
+      await closeDialog(page);
+      await page.keyboard.press('m');
+      await page.getByRole('dialog').waitFor();
+    },
+  },
+  {
+    name: 'read-keys',
+    reach: async (page) => {
+      await closeDialog(page);
+      await page.keyboard.press('?');
+      await page.getByRole('dialog').waitFor();
+    },
+  },
+  {
+    name: 'report',
+    reach: async (page) => {
+      await closeDialog(page);
+      await place(page, 'Report');
+      await page.getByText('Nothing was confirmed yet').waitFor();
+    },
+  },
+  {
+    name: 'report-suggested',
+    reach: async (page) => {
+      await button(page, 'Take suggestions in').click();
+      await page.getByText('Nothing was confirmed yet').waitFor({ state: 'detached' });
+    },
+  },
 ];
 
 /** The window sizes that every screen must hold at. */
