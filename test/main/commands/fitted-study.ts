@@ -3,8 +3,13 @@ import { join } from 'node:path';
 import { topicNames, Talk, write } from './material.ts';
 import { run, type Ended } from './run.ts';
 
-/** Makes `name` in the folder: six people on four topics, four themes, fitted by the quick recipe. */
-export async function fittedStudy(folder: string, name: string, people = 6): Promise<void> {
+/** Makes `name` in the folder: people on four topics, four themes, fitted by the quick recipe. */
+export async function fittedStudy(
+  folder: string,
+  name: string,
+  people = 6,
+  themes: readonly object[] = [],
+): Promise<void> {
   const talk = new Talk(5);
   const files = Array.from({ length: people }, (_, i): [string, string] => [
     `in ${name}/P0${i + 1}.txt`,
@@ -15,7 +20,7 @@ export async function fittedStudy(folder: string, name: string, people = 6): Pro
   ]);
   write(folder, {
     ...Object.fromEntries(files),
-    'plan.json': JSON.stringify({ settings: { answer: 'quick' } }),
+    'plan.json': JSON.stringify({ themes, settings: { answer: 'quick' } }),
   });
   const ended = await run(folder, [
     ...['theme', `in ${name}`, '--themes', '4', '--seed', '1', '--plan', 'plan.json'],

@@ -1,9 +1,12 @@
 import { existsSync, readFileSync, readdirSync } from 'node:fs';
 import { join } from 'node:path';
 import { beforeAll, describe, expect, test } from 'vitest';
+import { Desk } from '../../../main/desk.ts';
+import { materialFor } from '../../../main/evidence.ts';
+import { randomIds } from '../../../main/ids.ts';
 import { openStudyFile } from '../../../main/project/index.ts';
 import { runEvidence } from '../../../main/work/run-evidence.ts';
-import { planSteadiness } from '../../../engine/evidence/index.ts';
+import { fitAnew, planSteadiness } from '../../../engine/evidence/index.ts';
 import { planted, told } from '../../engine/evidence/spoken.ts';
 import { copyOf, fittedStudy, interrupted } from './fitted-study.ts';
 import { contents, heading, oneSentence, run, table, temporaryFolder, type Ended } from './run.ts';
@@ -139,6 +142,25 @@ describe('steady refuses, in one sentence and without a trace', () => {
     expect(code).toBe(1);
     expect(err.trim()).toMatch(/^3 participants say counted words, and at least 4 are needed/u);
     expect(existsSync(join(folder, 'few.steady.csv'))).toBe(false);
+  });
+});
+
+describe('the material of a fit', () => {
+  test('is what the fit was made from: the same themes come out of it, bit for bit', async () => {
+    const decided = { seed: ['nurse', 'doctor'], shutOut: ['garden'] };
+    await fittedStudy(folder, 'decided.understory', 5, [
+      { name: 'Being seen', ...decided },
+      { name: 'Getting about', seed: ['bus'] },
+    ]);
+    const opened = await openStudyFile(join(folder, 'decided.understory'), { readOnly: true });
+    if (!opened.ok) throw new Error(opened.code);
+    const desk = new Desk(opened.value, { by: 'test', now: () => '', mintId: randomIds });
+    desk.load(opened.value.edits());
+    const fitted = desk.fitted(desk.study.fit)!;
+    const material = materialFor(desk, fitted);
+    expect(material.leanings).toHaveLength(3);
+    expect(fitAnew(material)!.phi).toEqual(fitted.phi);
+    opened.value.close();
   });
 });
 
