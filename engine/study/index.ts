@@ -12,4 +12,11 @@ export { apply, editKinds, fold, inverse } from './apply.ts';
 export { takingBack, type TakingBack } from './undo.ts';
 export { spansLost } from './edits/transcripts.ts';
 export { spanFault } from './edits/codings.ts';
-export { isModelled, nameKey, resolveTheme, themesWithDecisions, visibleThemes } from './themes.ts';
+export {
+  fittedThemes,
+  isModelled,
+  nameKey,
+  resolveTheme,
+  themesWithDecisions,
+  visibleThemes,
+} from './themes.ts';

@@ -15,11 +15,27 @@ export function isModelled(theme: Theme): boolean {
 }
 
 /**
+ * The themes of the fit on screen and of the fits that it was warmed up from. A re-fit drops a theme
+ * only where a person set it aside or merged it, so that one brought back is still known by this.
+ */
+export function fittedThemes(study: Study): ReadonlySet<ThemeId> {
+  const themes = new Set<ThemeId>();
+  let id = study.fit;
+  while (id !== null) {
+    const fit = study.fits.get(id);
+    if (fit === undefined) break;
+    for (const theme of fit.themes) themes.add(theme);
+    id = fit.start.kind === 'warm' ? fit.start.from : null;
+  }
+  return themes;
+}
+
+/**
  * The themes that a person sees, in codebook order: merged ones are gone, and so are unnamed
  * candidates of fits other than the one on screen unless a decision refers to them.
  */
 export function visibleThemes(study: Study): Theme[] {
-  const fitted = new Set(study.fit === null ? [] : study.fits.get(study.fit)?.themes);
+  const fitted = fittedThemes(study);
   const decided = themesWithDecisions(study);
   return [...study.themes.values()].filter(
     (theme) =>

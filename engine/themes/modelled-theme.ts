@@ -1,5 +1,12 @@
 import { compareCodeUnits } from '../numbers/index.ts';
-import { isModelled, resolveTheme, type Study, type Theme, type ThemeId } from '../study/index.ts';
+import {
+  fittedThemes,
+  isModelled,
+  resolveTheme,
+  type Study,
+  type Theme,
+  type ThemeId,
+} from '../study/index.ts';
 
 /** A row of the model to be fitted and the decisions that shape it. */
 export interface ModelledTheme {
@@ -18,7 +25,7 @@ export interface ModelledTheme {
  * either side shut out stays out only where the theme that remains says so.
  */
 export function modelledThemes(study: Study): ModelledTheme[] {
-  const fitted = new Set(study.fit === null ? [] : study.fits.get(study.fit)?.themes);
+  const fitted = fittedThemes(study);
   const absorbed = new Map<ThemeId, Theme[]>();
   for (const theme of study.themes.values()) {
     if (theme.mergedInto === null) continue;

@@ -28,6 +28,18 @@ describe('which themes a fit models', () => {
     expect(idsOf(themes, fits)).toEqual(['new']);
   });
 
+  test('a candidate that was set aside, fitted without and brought back', () => {
+    const fitted = { name: null, origin: 'fitted' } as const;
+    const start = { kind: 'warm', seed: 1, from: 'one' } as const;
+    const fits = [
+      fit('one', { themes: ['back', 'stays'] }),
+      fit('two', { themes: ['stays'], start }),
+    ];
+    expect(idsOf([theme('back', fitted), theme('stays', fitted)], fits)).toEqual(['back', 'stays']);
+    const aside = theme('back', { ...fitted, setAside: true });
+    expect(idsOf([aside, theme('stays', fitted)], fits)).toEqual(['stays']);
+  });
+
   test('a candidate of another fit stays where a person named or pinned it', () => {
     const themes = [
       theme('named', { origin: 'fitted' }),
