@@ -1,5 +1,6 @@
 import { matchThemes } from '../model/index.ts';
 import { coherence } from './coherence.ts';
+import { departures } from './departures.ts';
 import type { Material } from './material.ts';
 import { mean, standardError } from './quantile.ts';
 import { heldOutOf, themesWithout } from './refit.ts';
@@ -24,7 +25,7 @@ export type NumberScores = {
   readonly coherence: number;
   /** Standard errors over the fits. */
   readonly coherenceError: number;
-  /** Mean matched cosine between every two of the fits, 0 to 1. */
+  /** Mean matched cosine of what sets themes apart, between every two of the fits. */
   readonly steadiness: number;
   readonly steadinessError: number;
 };
@@ -59,7 +60,10 @@ export function scoreNumber(
   }
   const held = groups.map((group, i) => heldOutOf(plain, found[1 + i], group));
   const coherences = found.map((phi) => mean(coherence(counts, phi)));
-  const likeness = likenesses(found, counts.words);
+  const likeness = likenesses(
+    found.map((phi) => departures(phi, counts)),
+    counts.words,
+  );
   return {
     themes,
     perplexity: perplexityOf(held).perplexity,

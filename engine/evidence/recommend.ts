@@ -24,7 +24,7 @@ const errors = 2;
  * The least standard error of a steadiness above its floor: what another seed changes was measured,
  * and the spread over groups of one seed alone says too little of it.
  */
-const leastError = 0.015;
+const leastError = 0.02;
 
 export type Recommendation =
   /** These numbers of themes (two or more, `from` to `to`) cannot be told apart. */

@@ -1,4 +1,5 @@
 import {
+  cosine,
   fitModel,
   folded,
   heldOut,
@@ -6,6 +7,7 @@ import {
   type ModelFit,
   type Watcher,
 } from '../model/index.ts';
+import { departures } from './departures.ts';
 import { leads } from './leads.ts';
 import type { Material } from './material.ts';
 import type { HeldOutWords } from './perplexity.ts';
@@ -16,7 +18,9 @@ const halvesSeed = 1;
 
 /** How the themes of a fit fared in a fit without some of the people. Plain data. */
 export interface Refit {
-  /** The cosine of each theme to its partner among the themes found anew, K values from 0 to 1. */
+  /** The cosine of what sets each theme apart to the same of its partner found anew, K values. */
+  readonly steadiness: readonly number[];
+  /** The cosine of the two distributions themselves, K values from 0 to 1. */
   readonly cosines: readonly number[];
   /** The theme that leads each passage now, by the fit's own rows; -1 where nothing was counted. */
   readonly leads: Int32Array;
@@ -57,7 +61,7 @@ export function heldOutOf(
 
 /**
  * Looks for the themes anew without the people in `out`, pairs them with those of the fit so that
- * the cosines are largest in sum, and asks where every passage goes now by its words alone, also the
+ * they are most alike in what sets them apart, and asks where every passage goes now by its words alone, also the
  * passages of those who were left out. Null where it was stopped.
  */
 export function refitWithout(
@@ -68,11 +72,18 @@ export function refitWithout(
   const phi = themesWithout(material, out, watcher);
   if (phi === null) return null;
   const { counts, priors, settings } = material;
-  const { partner, cosines } = matchThemes(material.phi, phi, counts.words);
+  const { partner, cosines: steadiness } = matchThemes(
+    departures(material.phi, counts),
+    departures(phi, counts),
+    counts.words,
+  );
   const rowOf = new Map(Array.from(partner, (anew, row) => [anew, row]));
   const theta = folded(counts, undecided(priors), phi, settings.foldPasses);
   return {
-    cosines: [...cosines],
+    steadiness: [...steadiness],
+    cosines: Array.from(partner, (anew, row) =>
+      cosine(material.phi, phi, counts.words, row * counts.words, anew * counts.words),
+    ),
     leads: leads(counts, priors.themes, theta).map((anew) => rowOf.get(anew) ?? -1),
     heldOut: heldOutOf(material, phi, out),
   };

@@ -11,8 +11,10 @@ const floorShare = 0.95;
 
 /** Evidence about one theme. All of it plain JSON. */
 export type ThemeEvidence = {
-  /** Mean cosine to its partners in the re-fits, 0 to 1. */
+  /** Mean cosine of what sets it apart to the same of its partners in the re-fits, -1 to 1. */
   readonly steadiness: number;
+  /** Mean cosine to its partners as they are, common words and all, 0 to 1. */
+  readonly cosine: number;
   /** Passages that it leads by their words alone … */
   readonly passages: number;
   /** … and how many of them it led again in at least `refitsAtLeast` re-fits. */
@@ -36,6 +38,7 @@ export type FitNumbers = {
 export type Floor = {
   /** 95th percentiles over the themes found there … */
   readonly steadiness: number;
+  readonly cosine: number;
   readonly coherence: number;
   /** … and over the leading strengths there, of passages with enough counted words. */
   readonly strength: number;
@@ -59,7 +62,8 @@ export function steadinessOf(base: Base, refits: readonly Refit[]): FitNumbers {
   });
   return {
     themes: base.coherence.map((value, row) => ({
-      steadiness: mean(refits.map(({ cosines }) => cosines[row])),
+      steadiness: mean(refits.map((refit) => refit.steadiness[row])),
+      cosine: mean(refits.map(({ cosines }) => cosines[row])),
       passages: passages[row],
       stayed: stayed[row],
       coherence: value,
@@ -78,6 +82,10 @@ export function floorOf(base: Base, refits: readonly Refit[]): Floor {
   const stayed = themes.reduce((all, theme) => all + theme.stayed, 0);
   return {
     steadiness: quantile(steadiness, floorShare),
+    cosine: quantile(
+      themes.map(({ cosine }) => cosine),
+      floorShare,
+    ),
     coherence: quantile(base.coherence, floorShare),
     strength: quantile(base.strengths, floorShare),
     meanSteadiness: mean(steadiness),

@@ -66,6 +66,8 @@ export function steadinessText(desk: Desk, fitted: Fitted, result: SteadinessRes
   return [
     `Each of ${refits} re-fits leaves out ${leftOut} of ${people} participants. A passage has stayed ` +
       `where its theme leads it again, by its words alone, in at least ${refitsAtLeast} of ${refits}.`,
+    'Steadiness is the mean cosine between what sets a theme apart from the words of the study as a ' +
+      'whole, and the same in the re-fits; 1 at most.',
     'The floor is what the same study reaches with its words shuffled among the passages.',
     '',
     ...table,
@@ -113,6 +115,8 @@ export function steadinessCsv(
     'theme',
     'steadiness',
     'steadiness_floor',
+    'cosine',
+    'cosine_floor',
     'passages',
     'stayed',
     'stayed_share_floor',
@@ -134,6 +138,8 @@ export function steadinessCsv(
     row.name,
     decimals(measured.steadiness),
     decimals(floor.steadiness),
+    decimals(measured.cosine),
+    decimals(floor.cosine),
     measured.passages,
     measured.stayed,
     decimals(floor.stayed),

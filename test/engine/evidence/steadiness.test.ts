@@ -43,7 +43,7 @@ describe('planted themes', () => {
   });
 
   it('are found again without some of the people, each with a cosine above .95', () => {
-    for (const { steadiness } of result.themes) expect(steadiness).toBeGreaterThan(0.95);
+    for (const { cosine } of result.themes) expect(cosine).toBeGreaterThan(0.95);
   });
 
   it('keep nine in ten of the passages that they lead', () => {
@@ -57,7 +57,7 @@ describe('planted themes', () => {
   it('lie above the floor in everything', () => {
     const { floor, themes, perplexity } = result;
     for (const { steadiness, coherence, stayed, passages } of themes) {
-      expect(steadiness).toBeGreaterThan(floor.steadiness);
+      expect(steadiness).toBeGreaterThan(floor.steadiness + 0.15);
       expect(coherence).toBeGreaterThan(floor.coherence);
       expect(stayed / passages).toBeGreaterThan(floor.stayed + 0.3);
     }
@@ -96,7 +96,9 @@ describe('a re-fit', () => {
     const fit = fitAnew(material)!;
     const again = { ...material, phi: fit.phi };
     const refit = refitWithout(again, [])!;
-    for (const cosine of refit.cosines) expect(cosine).toBeCloseTo(1, 12);
+    for (const cosine of [...refit.cosines, ...refit.steadiness]) {
+      expect(cosine).toBeCloseTo(1, 12);
+    }
     const base = runTask(again, { kind: 'base' }, onward) as Base;
     expect(refit.leads).toEqual(base.leads);
     const { themes } = steadinessOf(base, [refit, refit]);
@@ -151,8 +153,9 @@ describe('a re-fit', () => {
 
 describe('steadinessOf', () => {
   const base: Base = { coherence: [0.3, 0.1], leads: Int32Array.of(0, 0, 1, -1, 1), strengths: [] };
-  const refit = (leads: number[], cosines: number[]): Refit => ({
-    cosines,
+  const refit = (leads: number[], steadiness: number[]): Refit => ({
+    steadiness,
+    cosines: steadiness.map(() => 0.5),
     leads: Int32Array.from(leads),
 
     heldOut: { total: -8 * Math.log(8), words: 8 },

@@ -13,7 +13,7 @@ import { contents, heading, oneSentence, run, table, temporaryFolder, type Ended
 
 const folder = temporaryFolder();
 const columns =
-  'theme_id, theme, steadiness, steadiness_floor, passages, stayed, stayed_share_floor, refits, refits_at_least, coherence, coherence_floor, strength_floor, people, most_from_person, person_share, most_after_question, question_share, perplexity, perplexity_floor';
+  'theme_id, theme, steadiness, steadiness_floor, cosine, cosine_floor, passages, stayed, stayed_share_floor, refits, refits_at_least, coherence, coherence_floor, strength_floor, people, most_from_person, person_share, most_after_question, question_share, perplexity, perplexity_floor';
 const command = 'steady study.understory --resamples 5'.split(' ');
 
 let ended: Ended;
