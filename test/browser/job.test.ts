@@ -43,7 +43,11 @@ const button = (name: string | RegExp) => page.getByRole('button', { name });
 const go = (name: string) =>
   page.getByRole('navigation', { name: 'Places' }).getByRole('button', { name }).click();
 const dialogGone = () => page.getByRole('dialog').waitFor({ state: 'detached' });
-const current = () => page.locator('[role=article][aria-current=true]');
+/** Waits until the passage at a place of the reading list has the keys. */
+const inHand = async (place: number): Promise<void> => {
+  await page.getByText(new RegExp(`^${place} of \\d+`, 'u')).waitFor();
+  await page.locator('[role=article][aria-current=true]:focus').waitFor();
+};
 
 beforeAll(async () => {
   app = await startApp({ home });
@@ -136,14 +140,13 @@ it('confirms, rejects, finds none, codes a stretch and writes a memo by keys alo
   await page.getByRole('radio', { name: /Strongest first/iu }).check();
   await page.getByRole('dialog').getByRole('button', { name: 'Read this list' }).click();
   await dialogGone();
-  await current().waitFor();
-
+  await inHand(1);
   await page.keyboard.press('Enter');
-  await page.waitForTimeout(400);
+  await inHand(2);
   await page.keyboard.press('n');
-  await page.waitForTimeout(400);
+  await inHand(3);
   await page.keyboard.press('o');
-  await page.waitForTimeout(400);
+  await inHand(4);
 
   await page.keyboard.press('v');
   await page.keyboard.press('ArrowRight');
