@@ -1,6 +1,7 @@
 import type { Edit, EditKind, Entry } from './edit.ts';
 import { codingRules } from './edits/codings.ts';
 import { fitRules } from './edits/fits.ts';
+import { headingRules } from './edits/headings.ts';
 import { memoRules } from './edits/memos.ts';
 import { participantRules } from './edits/participants.ts';
 import type { Rule, Rules } from './edits/rule.ts';
@@ -17,6 +18,7 @@ const rules: Rules<EditKind> = {
   ...transcriptRules,
   ...participantRules,
   ...themeRules,
+  ...headingRules,
   ...wordRules,
   ...codingRules,
   ...memoRules,

@@ -7,6 +7,8 @@ import type {
   EvidenceKind,
   Fit,
   FitId,
+  Heading,
+  HeadingId,
   Memo,
   MemoId,
   None,
@@ -127,6 +129,30 @@ export type Edit =
       readonly from: readonly ThemeId[];
       readonly to: readonly ThemeId[];
     }
+  | {
+      readonly kind: 'headingAdded';
+      readonly heading: Heading;
+      /** Its place among the headings, counted from 0; null for the last. */
+      readonly place: number | null;
+    }
+  | {
+      readonly kind: 'headingRemoved';
+      readonly heading: Heading;
+      readonly place: number | null;
+    }
+  | {
+      readonly kind: 'headingRenamed';
+      readonly heading: HeadingId;
+      readonly from: string;
+      readonly to: string;
+    }
+  | {
+      readonly kind: 'themePutUnder';
+      readonly theme: ThemeId;
+      /** Null stands for no heading. */
+      readonly from: HeadingId | null;
+      readonly to: HeadingId | null;
+    }
   | { readonly kind: 'wordSeeded'; readonly theme: ThemeId; readonly word: string }
   | { readonly kind: 'wordUnseeded'; readonly theme: ThemeId; readonly word: string }
   | { readonly kind: 'wordShutOut'; readonly theme: ThemeId; readonly word: string }
@@ -139,6 +165,15 @@ export type Edit =
       readonly coding: CodingId;
       readonly from: CodingState;
       readonly to: CodingState;
+    }
+  | {
+      /** A coding of an earlier wording stands under a later one as well. */
+      readonly kind: 'codingLookedAtAgain';
+      readonly transcript: TranscriptId;
+      readonly coding: CodingId;
+      /** Versions of the theme's codebook entry. */
+      readonly from: number;
+      readonly to: number;
     }
   | { readonly kind: 'noneMarked'; readonly none: None }
   | { readonly kind: 'noneCleared'; readonly none: None }

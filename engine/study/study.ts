@@ -9,6 +9,7 @@ export type CodingId = string;
 export type NoneId = string;
 export type MemoId = string;
 export type FitId = string;
+export type HeadingId = string;
 
 /** Bytes kept in the study file, addressed by the sequence number of their record. */
 export interface BlobRef {
@@ -65,6 +66,8 @@ export interface Transcript {
 
 /** A codebook entry (MacQueen, McLellan, Kay & Milstein 1998), without its name. */
 export interface Definition {
+  /** A short mark for the theme in tables and margins; absent or empty where there is none. */
+  readonly code?: string;
   readonly brief: string;
   readonly full: string;
   readonly whenToUse: string;
@@ -96,6 +99,12 @@ export interface Theme {
   /** Word forms in code-unit order. */
   readonly seeds: readonly string[];
   readonly shutOut: readonly string[];
+}
+
+/** A name over several themes; it is no model. */
+export interface Heading {
+  readonly id: HeadingId;
+  readonly name: string;
 }
 
 export type Standing = 'confirmed' | 'rejected' | 'by hand';
@@ -217,7 +226,7 @@ export interface HistoryStep {
 
 /**
  * A study: the fold of its trail. Immutable; holds lengths and references, no texts and no arrays.
- * Only the order of themes has a meaning: an undone removal puts anything else back at the end of
+ * Only the order of themes and of headings has a meaning: an undone removal puts anything else back at the end of
  * its map, so what depends on an order has to sort.
  * Codings and nones are kept by transcript so that one decision replaces one small map.
  */
@@ -232,6 +241,10 @@ export interface Study {
   readonly participants: ReadonlyMap<ParticipantId, Participant>;
   /** In codebook order. */
   readonly themes: ReadonlyMap<ThemeId, Theme>;
+  /** In the order in which they are shown. */
+  readonly headings: ReadonlyMap<HeadingId, Heading>;
+  /** Themes that stand under a heading, and which. */
+  readonly under: ReadonlyMap<ThemeId, HeadingId>;
   readonly codings: ReadonlyMap<TranscriptId, ReadonlyMap<CodingId, Coding>>;
   readonly nones: ReadonlyMap<TranscriptId, ReadonlyMap<NoneId, None>>;
   readonly memos: ReadonlyMap<MemoId, Memo>;
@@ -251,6 +264,8 @@ export const emptyStudy: Study = {
   transcripts: new Map(),
   participants: new Map(),
   themes: new Map(),
+  headings: new Map(),
+  under: new Map(),
   codings: new Map(),
   nones: new Map(),
   memos: new Map(),

@@ -67,6 +67,10 @@ export function themesWithDecisions(study: Study): ReadonlySet<ThemeId> {
       if (target !== undefined) decided.add(target.id);
     }
   }
+  for (const id of study.under.keys()) {
+    const theme = resolveTheme(study, id);
+    if (theme !== undefined) decided.add(theme.id);
+  }
   for (const { subject } of study.memos.values()) {
     if (subject.kind === 'theme') {
       const theme = resolveTheme(study, subject.theme);

@@ -39,6 +39,13 @@ const phrases: Phrases = {
   themesMerged: ({ into }, names) => `merge into ${names.theme(into)}`,
   themesUnmerged: ({ into }, names) => `taking apart of ${names.theme(into)}`,
   themesOrdered: () => 'order of the themes',
+  headingAdded: ({ heading }) => `heading ${heading.name}`,
+  headingRemoved: ({ heading }) => `removal of the heading ${heading.name}`,
+  headingRenamed: ({ to }) => `rename of the heading ${to}`,
+  themePutUnder: ({ theme, to }, names) =>
+    to === null
+      ? `taking of ${names.theme(theme)} out from under its heading`
+      : `putting of ${names.theme(theme)} under a heading`,
   wordSeeded: ({ theme, word }, names) => `seed “${word}” in ${names.theme(theme)}`,
   wordUnseeded: ({ theme, word }, names) => `unseeding of “${word}” in ${names.theme(theme)}`,
   wordShutOut: ({ theme, word }, names) => `shutting out of “${word}” from ${names.theme(theme)}`,
@@ -53,6 +60,7 @@ const phrases: Phrases = {
     from.memo === to.memo
       ? `change of a coding with ${names.theme(to.theme)}`
       : `memo on a coding with ${names.theme(to.theme)}`,
+  codingLookedAtAgain: ({ to }) => `keeping of a coding under wording ${to}`,
   noneMarked: () => 'mark that no theme applies',
   noneCleared: () => 'clearing of a mark that no theme applies',
   memoWritten: () => 'memo',
@@ -73,6 +81,7 @@ const several: Partial<Record<EditKind, (count: number) => string>> = {
   speakersAssigned: (count) => `speakers of ${count} transcripts`,
   participantDescribed: (count) => `attributes of ${count} participants`,
   wordSeeded: (count) => `${count} seed words`,
+  themePutUnder: (count) => `move of ${count} themes`,
   codingMade: (count) => `${count} codings`,
   codingRemoved: (count) => `removal of ${count} codings`,
 };
@@ -88,6 +97,7 @@ const alongside: readonly EditKind[] = [
   'participantAdded',
   'participantDescribed',
   'settingsChanged',
+  'themePutUnder',
   'noneCleared',
   'codingRemoved',
   'wordSeeded',

@@ -9,10 +9,13 @@ export const studySentences: Record<RefusalCode, Say> = {
   'already there': (s) => `${quoted(s)} is in the study already; use the one that is there.`,
   'changed since': (s) =>
     `${s === '' ? 'This' : quoted(s)} was changed in the meantime; look at it again, then decide.`,
+  'code taken': (s) => `The code ${quoted(s)} is another theme’s; choose another one.`,
   'codings remain': (s) =>
     `${quoted(s)} still carries codings; remove them first, or keep the transcript.`,
   'empty name': () => 'A name may not be empty; type at least one letter.',
   'fit is in use': () => 'This fit is on screen; choose another one first.',
+  'heading in use': (s) =>
+    `Themes still stand under ${quoted(s)}; take them out from under it first.`,
   'memos remain': (s) => `${quoted(s)} still carries memos; erase them first, or keep it.`,
   'merged theme': (s) =>
     `${quoted(s)} was merged into another theme; change that one, or undo the merge.`,
@@ -44,6 +47,7 @@ export const studySentences: Record<RefusalCode, Say> = {
   'theme set aside': (s) => `${quoted(s)} is set aside; bring it back first.`,
   'unknown coding': () => 'That coding is not in the study any more; look at the passage again.',
   'unknown fit': () => 'That fit is not in the study; choose one from the list of fits.',
+  'unknown heading': () => 'That heading is not in the study any more; choose another one.',
   'unknown memo': () => 'That memo is not in the study any more; write a new one.',
   'unknown participant': (s) =>
     `${quoted(s)} is no participant of the study; choose one from the list, or add the person first.`,

@@ -1,11 +1,17 @@
 import { sameSpan, type Span } from '../../spans/index.ts';
 import { done, refused, type Refusal } from '../refusal.ts';
 import type { Coding, DecidedUnder, None, Study, ThemeId } from '../study.ts';
+import { resolveTheme } from '../themes.ts';
 import { label } from './themes.ts';
 import { sameJson, withEntry, withInner, withoutEntry, type Rules } from './rule.ts';
 
 export const codingRules: Rules<
-  'codingMade' | 'codingRemoved' | 'codingRevised' | 'noneMarked' | 'noneCleared'
+  | 'codingMade'
+  | 'codingRemoved'
+  | 'codingRevised'
+  | 'codingLookedAtAgain'
+  | 'noneMarked'
+  | 'noneCleared'
 > = {
   codingMade: {
     apply(study, { coding }, restoring) {
@@ -46,6 +52,32 @@ export const codingRules: Rules<
     },
     inverse: ({ transcript, coding, from, to }) => ({
       kind: 'codingRevised',
+      transcript,
+      coding,
+      from: to,
+      to: from,
+    }),
+  },
+
+  codingLookedAtAgain: {
+    apply(study, { transcript, coding: id, from, to }, restoring) {
+      const here = study.codings.get(transcript);
+      const current = here?.get(id);
+      if (here === undefined || current === undefined) return refused('unknown coding', id);
+      if (current.codebookVersion !== from) return refused('changed since', id);
+      if (!restoring) {
+        if (to === from) return refused('same as before', id);
+        const theme = resolveTheme(study, current.theme);
+        // Only wordings that there were.
+        if (theme === undefined || !Number.isInteger(to) || to < 1 || to > theme.version) {
+          return refused('unusable value', id);
+        }
+      }
+      const changed = withEntry(here, id, { ...current, codebookVersion: to });
+      return done(withCodings(study, transcript, changed));
+    },
+    inverse: ({ transcript, coding, from, to }) => ({
+      kind: 'codingLookedAtAgain',
       transcript,
       coding,
       from: to,

@@ -65,6 +65,8 @@ export const themeRules: Rules<
       return change(study, id, (theme) => {
         const { version, definition } = theme;
         if (!sameJson({ version, definition }, from)) return refused('changed since', label(theme));
+        const fault = codeFault(study, to.definition.code ?? '', id);
+        if (fault !== null) return fault;
         return done({ ...theme, ...to });
       });
     },
@@ -209,8 +211,19 @@ export function nameFault(study: Study, name: string, except: ThemeId): Refusal 
   return null;
 }
 
-/** Whether a merge, a fit, a coding or a memo would lose its theme. */
+/** Refuses a code that is another visible theme's. */
+function codeFault(study: Study, code: string, except: ThemeId): Refusal | null {
+  const key = nameKey(code);
+  if (key === '') return null;
+  const taken = visibleThemes(study).some(
+    (other) => other.id !== except && nameKey(other.definition.code ?? '') === key,
+  );
+  return taken ? refused('code taken', code) : null;
+}
+
+/** Whether a merge, a fit, a heading, a coding or a memo would lose its theme. */
 export function isReferredTo(study: Study, id: ThemeId): boolean {
+  if (study.under.has(id)) return true;
   for (const theme of study.themes.values()) if (theme.mergedInto === id) return true;
   for (const fit of study.fits.values()) if (fit.themes.includes(id)) return true;
   for (const byId of study.codings.values()) {

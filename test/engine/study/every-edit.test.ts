@@ -35,6 +35,21 @@ import {
   work,
 } from './scene.ts';
 
+const living = { id: 'living', name: 'Living' };
+const leaving = { id: 'leaving', name: 'Leaving' };
+const underHeadings = after(
+  island,
+  { kind: 'headingAdded', heading: living, place: null },
+  { kind: 'headingAdded', heading: leaving, place: null },
+  { kind: 'themePutUnder', theme: 'sea', from: null, to: 'living' },
+);
+const reworded = after(island, {
+  kind: 'themeDefined',
+  theme: 'sea',
+  from: { version: 1, definition: emptyDefinition },
+  to: { version: 2, definition: { ...emptyDefinition, brief: 'Living by the sea' } },
+});
+
 interface Case<Kind extends EditKind> {
   /** Completes "<kind> …". */
   readonly does: string;
@@ -463,6 +478,66 @@ const cases: { readonly [Kind in EditKind]: readonly Case<Kind>[] } = {
       }),
     },
   ],
+  headingAdded: [
+    {
+      does: 'adds a name over themes, with nothing under it',
+      edit: { kind: 'headingAdded', heading: living, place: null },
+      expected: { headings: new Map([['living', living]]) },
+    },
+    {
+      does: 'puts it at its place among the others',
+      before: underHeadings,
+      edit: { kind: 'headingAdded', heading: { id: 'time', name: 'Time' }, place: 1 },
+      expected: {
+        headings: new Map([
+          ['living', living],
+          ['time', { id: 'time', name: 'Time' }],
+          ['leaving', leaving],
+        ]),
+      },
+    },
+  ],
+  headingRemoved: [
+    {
+      does: 'takes a heading out that no theme stands under',
+      before: underHeadings,
+      edit: { kind: 'headingRemoved', heading: leaving, place: 1 },
+      expected: { headings: new Map([['living', living]]) },
+    },
+  ],
+  headingRenamed: [
+    {
+      does: 'gives another name and keeps the place',
+      before: underHeadings,
+      edit: { kind: 'headingRenamed', heading: 'living', from: 'Living', to: 'Living here' },
+      expected: {
+        headings: new Map([
+          ['living', { id: 'living', name: 'Living here' }],
+          ['leaving', leaving],
+        ]),
+      },
+    },
+  ],
+  themePutUnder: [
+    {
+      does: 'puts a theme under a heading',
+      before: underHeadings,
+      edit: { kind: 'themePutUnder', theme: 'silence', from: null, to: 'living' },
+      expected: { under: having(underHeadings.under, 'silence', 'living') },
+    },
+    {
+      does: 'moves a theme from one heading to another',
+      before: underHeadings,
+      edit: { kind: 'themePutUnder', theme: 'sea', from: 'living', to: 'leaving' },
+      expected: { under: new Map([['sea', 'leaving']]) },
+    },
+    {
+      does: 'takes a theme out from under its heading, merged away or not',
+      before: after(underHeadings, { kind: 'themesMerged', into: 'work', from: ['sea'] }),
+      edit: { kind: 'themePutUnder', theme: 'sea', from: 'living', to: null },
+      expected: { under: new Map() },
+    },
+  ],
   themePinned: [
     {
       does: 'pins a theme',
@@ -679,6 +754,25 @@ const cases: { readonly [Kind in EditKind]: readonly Case<Kind>[] } = {
       before: emptied,
       edit: { kind: 'codingRemoved', coding: emptyCoding },
       expected: codings('harbour', 'on-harbour', undefined, emptied),
+    },
+  ],
+  codingLookedAtAgain: [
+    {
+      does: 'keeps a coding under a later wording, with all that was known when it was made',
+      before: reworded,
+      edit: {
+        kind: 'codingLookedAtAgain',
+        transcript: 'harbour',
+        coding: 'on-harbour',
+        from: 1,
+        to: 2,
+      },
+      expected: codings(
+        'harbour',
+        'on-harbour',
+        coding('on-harbour', { codebookVersion: 2 }),
+        reworded,
+      ),
     },
   ],
   codingRevised: [

@@ -1,8 +1,19 @@
 import type { Study } from '../../../engine/study/index.ts';
 
-/** A study as plain JSON values, to be compared and printed. Only themes keep their order. */
+/** A study as plain JSON values, to be compared and printed. Only themes and headings keep their order. */
 export function plain(study: Study) {
-  const { themes, readers, transcripts, participants, memos, fits, codings, nones } = study;
+  const {
+    themes,
+    headings,
+    under,
+    readers,
+    transcripts,
+    participants,
+    memos,
+    fits,
+    codings,
+    nones,
+  } = study;
   return {
     id: study.id,
     name: study.name,
@@ -11,6 +22,8 @@ export function plain(study: Study) {
     transcripts: sorted(transcripts),
     participants: sorted(participants),
     themes: [...themes],
+    headings: [...headings],
+    under: sorted(under),
     codings: sorted(codings).map(([id, inner]) => [id, sorted(inner)] as const),
     nones: sorted(nones).map(([id, inner]) => [id, sorted(inner)] as const),
     memos: sorted(memos),

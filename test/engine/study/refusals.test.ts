@@ -33,6 +33,25 @@ import {
   work,
 } from './scene.ts';
 
+const living = { id: 'living', name: 'Living' };
+const headed = after(
+  island,
+  { kind: 'headingAdded', heading: living, place: null },
+  { kind: 'headingAdded', heading: { id: 'leaving', name: 'Leaving' }, place: null },
+  { kind: 'themePutUnder', theme: 'silence', from: null, to: 'living' },
+);
+const coded = after(island, {
+  kind: 'themeDefined',
+  theme: 'sea',
+  from: { version: 1, definition: emptyDefinition },
+  to: { version: 2, definition: { ...emptyDefinition, code: 'SEA' } },
+});
+const lookedAt = {
+  kind: 'codingLookedAtAgain',
+  transcript: 'harbour',
+  coding: 'on-harbour',
+} as const;
+
 interface Case {
   /** Completes "refuses …". */
   readonly what: string;
@@ -70,6 +89,12 @@ function made(changes: Parameters<typeof coding>[1]): Edit {
 
 const refusals: { readonly [Code in RefusalCode]: readonly Case[] } = {
   'already there': [
+    {
+      what: 'a heading twice',
+      before: headed,
+      edit: { kind: 'headingAdded', heading: { ...living, name: 'Other' }, place: null },
+      subject: 'Other',
+    },
     { what: 'a reader twice', edit: { kind: 'readerAdded', reader: ada }, subject: 'Ada' },
     {
       what: 'a transcript twice',
@@ -119,6 +144,35 @@ const refusals: { readonly [Code in RefusalCode]: readonly Case[] } = {
     },
   ],
   'changed since': [
+    {
+      what: 'to put a heading where there is no place',
+      edit: { kind: 'headingAdded', heading: living, place: 1 },
+      subject: 'Living',
+    },
+    {
+      what: 'to remove a heading that is named otherwise by now',
+      before: headed,
+      edit: { kind: 'headingRemoved', heading: { id: 'leaving', name: 'Gone' }, place: 1 },
+      subject: 'Leaving',
+    },
+    {
+      what: 'to rename a heading that is named otherwise by now',
+      before: headed,
+      edit: { kind: 'headingRenamed', heading: 'living', from: 'Life', to: 'Lives' },
+      subject: 'Living',
+    },
+    {
+      what: 'to move a theme that stands elsewhere by now',
+      before: headed,
+      edit: { kind: 'themePutUnder', theme: 'silence', from: null, to: 'leaving' },
+      subject: 'silence',
+    },
+    {
+      what: 'to keep a coding of another wording',
+      before: coded,
+      edit: { ...lookedAt, from: 2, to: 1 },
+      subject: 'on-harbour',
+    },
     {
       what: 'to rename a study that has another name',
       edit: { kind: 'studyRenamed', from: 'Isle', to: 'Skarvoy' },
@@ -310,6 +364,19 @@ const refusals: { readonly [Code in RefusalCode]: readonly Case[] } = {
       subject: 'first-fit',
     },
   ],
+  'code taken': [
+    {
+      what: 'a code that is another theme’s',
+      before: coded,
+      edit: {
+        kind: 'themeDefined',
+        theme: 'work',
+        from: { version: 1, definition: emptyDefinition },
+        to: { version: 2, definition: { ...emptyDefinition, code: 'sea' } },
+      },
+      subject: 'sea',
+    },
+  ],
   'codings remain': [
     {
       what: 'to remove a transcript with codings',
@@ -324,6 +391,11 @@ const refusals: { readonly [Code in RefusalCode]: readonly Case[] } = {
     },
   ],
   'empty name': [
+    {
+      what: 'a heading without a name',
+      edit: { kind: 'headingAdded', heading: { id: 'living', name: ' ' }, place: null },
+      subject: 'living',
+    },
     {
       what: 'to start a study without a name',
       before: emptyStudy,
@@ -406,6 +478,14 @@ const refusals: { readonly [Code in RefusalCode]: readonly Case[] } = {
       subject: 'first-fit',
     },
   ],
+  'heading in use': [
+    {
+      what: 'to remove a heading that a theme stands under',
+      before: headed,
+      edit: { kind: 'headingRemoved', heading: living, place: 0 },
+      subject: 'Living',
+    },
+  ],
   'memos remain': [
     {
       what: 'to remove a transcript that a memo is about',
@@ -441,6 +521,12 @@ const refusals: { readonly [Code in RefusalCode]: readonly Case[] } = {
     },
   ],
   'merged theme': [
+    {
+      what: 'to put a merged theme under a heading',
+      before: after(headed, { kind: 'themesMerged', into: 'sea', from: ['work'] }),
+      edit: { kind: 'themePutUnder', theme: 'work', from: null, to: 'living' },
+      subject: 'work',
+    },
     {
       what: 'to merge into a theme that was merged away',
       before: merged,
@@ -495,6 +581,12 @@ const refusals: { readonly [Code in RefusalCode]: readonly Case[] } = {
     },
   ],
   'name taken': [
+    {
+      what: 'a heading by the name of another',
+      before: headed,
+      edit: { kind: 'headingRenamed', heading: 'leaving', from: 'Leaving', to: ' living' },
+      subject: ' living',
+    },
     {
       what: 'two transcripts of one name',
       edit: { kind: 'transcriptGathered', transcript: { ...mill, id: 'm' } },
@@ -701,6 +793,18 @@ const refusals: { readonly [Code in RefusalCode]: readonly Case[] } = {
   ],
   'same as before': [
     {
+      what: 'to put a theme where it stands',
+      before: headed,
+      edit: { kind: 'themePutUnder', theme: 'silence', from: 'living', to: 'living' },
+      subject: 'silence',
+    },
+    {
+      what: 'to keep a coding under its own wording',
+      before: coded,
+      edit: { ...lookedAt, from: 1, to: 1 },
+      subject: 'on-harbour',
+    },
+    {
       what: 'to pin a pinned theme',
       before: after(island, { kind: 'themePinned', theme: 'sea' }),
       edit: { kind: 'themePinned', theme: 'sea' },
@@ -784,6 +888,12 @@ const refusals: { readonly [Code in RefusalCode]: readonly Case[] } = {
   ],
   'theme in use': [
     {
+      what: 'to remove a theme that stands under a heading',
+      before: headed,
+      edit: { kind: 'themeRemoved', theme: silence, place: 1 },
+      subject: 'silence',
+    },
+    {
       what: 'to remove a theme of a fit',
       edit: { kind: 'themeRemoved', theme: work, place: 2 },
       subject: 'work',
@@ -861,6 +971,12 @@ const refusals: { readonly [Code in RefusalCode]: readonly Case[] } = {
   ],
   'unknown coding': [
     {
+      what: 'to keep a coding that is not there',
+      before: coded,
+      edit: { ...lookedAt, coding: 'gone', from: 1, to: 2 },
+      subject: 'gone',
+    },
+    {
       what: 'to remove a coding that is not there',
       edit: { kind: 'codingRemoved', coding: coding('gone') },
       subject: 'gone',
@@ -928,6 +1044,23 @@ const refusals: { readonly [Code in RefusalCode]: readonly Case[] } = {
       what: 'a coding decided under a fit that is not there',
       edit: made({ under: { ...onHarbour.under, fit: 'gone' } }),
       subject: 'gone',
+    },
+  ],
+  'unknown heading': [
+    {
+      what: 'to remove a heading that is not there',
+      edit: { kind: 'headingRemoved', heading: living, place: null },
+      subject: 'Living',
+    },
+    {
+      what: 'to rename a heading that is not there',
+      edit: { kind: 'headingRenamed', heading: 'living', from: 'a', to: 'b' },
+      subject: 'living',
+    },
+    {
+      what: 'to put a theme under a heading that is not there',
+      edit: { kind: 'themePutUnder', theme: 'sea', from: null, to: 'living' },
+      subject: 'living',
     },
   ],
   'unknown memo': [
@@ -1005,6 +1138,12 @@ const refusals: { readonly [Code in RefusalCode]: readonly Case[] } = {
     },
   ],
   'unknown theme': [
+    {
+      what: 'to put a theme under a heading that is not there',
+      before: headed,
+      edit: { kind: 'themePutUnder', theme: 'gone', from: null, to: 'living' },
+      subject: 'gone',
+    },
     {
       what: 'to remove a theme that is not there',
       edit: { kind: 'themeRemoved', theme: theme('gone'), place: null },
@@ -1113,6 +1252,12 @@ const refusals: { readonly [Code in RefusalCode]: readonly Case[] } = {
     },
   ],
   'unusable value': [
+    {
+      what: 'to keep a coding under a wording to come',
+      before: coded,
+      edit: { ...lookedAt, from: 1, to: 3 },
+      subject: 'on-harbour',
+    },
     {
       what: 'evidence that JSON would not bring back',
       edit: {
