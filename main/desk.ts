@@ -2,6 +2,7 @@ import { compareCodeUnits } from '../engine/numbers/index.ts';
 import {
   apply,
   emptyStudy,
+  fold,
   takingBack,
   type BlobRef,
   type Edit,
@@ -130,6 +131,13 @@ export class Desk {
     return this.#takeBack(this.#study.redo);
   }
 
+  /** The study as it was after this sequence number. */
+  studyAt(sequence: number): Study {
+    const then = fold([...this.entries].filter((entry) => entry.sequence <= sequence));
+    if (!then.ok) throw new Error(`Desk.studyAt: an entry cannot be applied: ${then.code}`);
+    return then.value;
+  }
+
   /** The canonical text of a transcript. */
   text(transcript: TranscriptId): string {
     const { sequence } = this.#transcript(transcript).text;
@@ -162,6 +170,8 @@ export class Desk {
   }
 
   /** A stored fit, unpacked; null for null. */
+  fitted(id: FitId): Fitted;
+  fitted(id: FitId | null): Fitted | null;
   fitted(id: FitId | null): Fitted | null {
     if (id === null) return null;
     const known = this.#fitted.get(id);

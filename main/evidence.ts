@@ -12,15 +12,8 @@ import {
   type Refit,
   type SteadinessResult,
 } from '../engine/evidence/index.ts';
-import { fold, type EvidenceKind, type PlainValue, type Study } from '../engine/study/index.ts';
-import {
-  askedOf,
-  decisions,
-  modelledThemes,
-  settingsOf,
-  type Fitted,
-  type ModelledTheme,
-} from '../engine/themes/index.ts';
+import type { EvidenceKind, PlainValue } from '../engine/study/index.ts';
+import { askedOf, storedJob, type Fitted } from '../engine/themes/index.ts';
 import type { Desk, DeskResult } from './desk.ts';
 import { runEvidence, type EvidenceOptions } from './work/run-evidence.ts';
 
@@ -95,37 +88,16 @@ export async function gatherHowMany(
 }
 
 /** What a fit was a function of, from the study as it was when the fit was begun. */
-export function materialFor(desk: Desk, { fit, words, phi }: Fitted): Material {
-  const then = studyAt(desk, fit.basis);
-  const known = new Map(modelledThemes(then).map((theme) => [theme.id, theme]));
-  const settings = settingsOf(fit.settings);
-  const asked = askedOf(
-    {
-      themes: fit.themes.map((id) => known.get(id) ?? foundTheme(id)),
-      decisions: decisions(then),
-      alpha: settings.alpha,
-      eta: settings.eta,
-      text: settings.text,
-      pinnedFrom: null,
-    },
-    words,
+export function materialFor(desk: Desk, fitted: Fitted): Material {
+  const { fit, words, phi } = fitted;
+  const job = storedJob(desk.studyAt(fit.basis), fit, { words, hash: fit.hashes.words }, (id) =>
+    desk.fitted(id),
   );
+  const asked = askedOf({ ...job, pinnedFrom: null }, words);
   return materialOf(
-    { ...asked, seed: fit.start.seed, settings: settings.model, counts: words.counts, phi },
+    { ...asked, seed: job.seed, settings: job.model, counts: words.counts, phi },
     words.passages.map(({ participant }) => participant),
   );
-}
-
-/** A candidate that the fit itself brought: nothing was decided about it before. */
-function foundTheme(id: string): ModelledTheme {
-  return { id, pinned: false, seeds: [], shutOut: [], absorbed: [] };
-}
-
-function studyAt(desk: Desk, sequence: number): Study {
-  const entries = [...desk.entries].filter((entry) => entry.sequence <= sequence);
-  const then = fold(entries);
-  if (!then.ok) throw new Error(`studyAt: entry after ${sequence} cannot be applied: ${then.code}`);
-  return then.value;
 }
 
 function keep<Value extends PlainValue>(

@@ -9,18 +9,17 @@ import {
 } from '../engine/study/index.ts';
 import type { WordLists } from '../engine/text/index.ts';
 import {
+  asPrevious,
   decisions,
+  foundTheme,
   modelledThemes,
   recordedSettings,
-  rowOf,
+  rememberedThemes,
   settingsOf,
   type FitDone,
   type FitJob,
   type FitRefused,
-  type Fitted,
   type ModelledTheme,
-  type PreviousFit,
-  type RememberedTheme,
 } from '../engine/themes/index.ts';
 import type { Desk, DeskResult } from './desk.ts';
 import { hashOf } from './ids.ts';
@@ -68,11 +67,14 @@ export async function fit(
     alpha: settings.alpha,
     eta: settings.eta,
     seed: settings.seed,
-    themes: [...kept, ...found.map(asModelled)],
+    themes: [...kept, ...found.map(({ id }) => foundTheme(id))],
     decisions: decisions(before),
     previous: kind === 're-fit' && previous !== null ? asPrevious(previous) : null,
     pinnedFrom: previous === null ? null : asPrevious(previous),
-    remembered: previous === null ? [] : rememberedThemes(desk, kept, previous),
+    remembered:
+      previous === null
+        ? []
+        : rememberedThemes(before, kept, previous.fit, (id) => desk.fitted(id)),
   };
   const basis = basisOf(before, kind);
   const done = await runFit(job, options);
@@ -115,7 +117,8 @@ export async function fit(
     const [words, result] = sameWords === null ? refs : [sameWords, ...refs];
     return { kind: 'modelFitted', fit: record(words, result), found, before: before.fit };
   };
-  const blobs = sameWords === null ? [done.words, done.result] : [done.result];
+  const blobs =
+    sameWords === null && done.words !== null ? [done.words, done.result] : [done.result];
   const { themes = null } = desk.study.settings;
   const setting: Edit = {
     kind: 'settingsChanged',
@@ -155,32 +158,6 @@ function newThemes(desk: Desk, themes: number): Theme[] {
     seeds: [],
     shutOut: [],
   }));
-}
-
-function asModelled({ id }: Theme): ModelledTheme {
-  return { id, pinned: false, seeds: [], shutOut: [], absorbed: [] };
-}
-
-function asPrevious({ fit, words, theta, phi }: Fitted): PreviousFit {
-  return { themes: fit.themes, words, theta, phi };
-}
-
-/** Themes that were in the model before, and not in the fit on screen: set aside and brought back. */
-function rememberedThemes(
-  desk: Desk,
-  themes: readonly ModelledTheme[],
-  { fit }: Fitted,
-): RememberedTheme[] {
-  const fits = [...desk.study.fits.values()].reverse();
-  return themes.flatMap(({ id }) => {
-    if (fit.themes.includes(id)) return [];
-    const last = fits.find((one) => one.themes.includes(id));
-    const fitted = last === undefined ? null : desk.fitted(last.id);
-    if (fitted === null) return [];
-    const { vocabulary } = fitted.words;
-    const row = rowOf(fitted, id) * vocabulary.length;
-    return [{ theme: id, vocabulary, phi: fitted.phi.slice(row, row + vocabulary.length) }];
-  });
 }
 
 /** What may not change while a fit runs: the words, and which themes there are. */

@@ -8,6 +8,8 @@ export interface FitJob {
   readonly transcripts: readonly TranscriptText[];
   readonly text: TextSettings;
   readonly lists: WordLists;
+  /** Words counted before from all of the above, with the hash of their blob: not counted again. */
+  readonly counted?: { readonly words: Prepared; readonly hash: string };
   readonly model: FitSettings;
   /** Base values of the priors. */
   readonly alpha: number;

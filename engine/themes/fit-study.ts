@@ -18,8 +18,9 @@ import { placesOf } from './word-places.ts';
 
 export interface FitDone {
   readonly ok: true;
-  /** Packed words and result, as they go into the study file. */
-  readonly words: Uint8Array;
+  /** Packed words, as they go into the study file; null where the job brought them counted. */
+  readonly words: Uint8Array | null;
+  /** Packed result. */
   readonly result: Uint8Array;
   readonly hashes: {
     readonly words: string;
@@ -71,7 +72,7 @@ export function fitStudy(job: FitJob, watcher?: Watcher): FitDone | FitRefused {
 /** The part of `fitStudy` before the model; `packFit` is the part after it. */
 export function beginFit(job: FitJob): FitBegun | FitRefused {
   const seeds = job.themes.flatMap((theme) => theme.seeds);
-  const words = prepare(job.transcripts, job.text, job.lists, seeds);
+  const words = job.counted?.words ?? prepare(job.transcripts, job.text, job.lists, seeds);
   const passages = countedPassages(words.counts);
   const size = { themes: job.themes.length, passages };
   if (job.themes.length === 0) return { ok: false, code: 'no themes', ...size };
@@ -92,14 +93,14 @@ export function beginFit(job: FitJob): FitBegun | FitRefused {
 /** What a model fitted to a fit's counts, priors and start is kept as. */
 export function packFit({ job, words, priors }: FitBegun, fit: ModelFit): FitDone {
   const places = placesOf(words, job.text);
-  const packedWords = packWords(words);
+  const packedWords = job.counted === undefined ? packWords(words) : null;
   const packedResult = packResult(fit);
   return {
     ok: true,
     words: packedWords,
     result: packedResult,
     hashes: {
-      words: sha256(packedWords),
+      words: packedWords === null ? (job.counted?.hash ?? '') : sha256(packedWords),
       priors: sha256(
         new TextEncoder().encode(JSON.stringify({ priors: hashed(priors), ...base(job) })),
       ),

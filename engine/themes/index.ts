@@ -30,5 +30,12 @@ export {
   type StudySettings,
 } from './settings.ts';
 export { packResult, packWords, unpackFitted, unpackWords } from './stored.ts';
+export {
+  asPrevious,
+  foundTheme,
+  refitFromStored,
+  rememberedThemes,
+  storedJob,
+} from './stored-job.ts';
 export { passagesLed, suggestions, type Suggestion, type SuggestionLimits } from './suggestions.ts';
 export { candidateWords, topWords, type ThemeWord } from './top-words.ts';

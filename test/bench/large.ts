@@ -73,7 +73,7 @@ const full = await seconds(async () => {
   done = (await runFit(job(defaultFitSettings, null))) as FitDone;
 });
 const { words: packed, result, passages, countedWords } = done as unknown as FitDone;
-const words = unpackWords(packed);
+const words = unpackWords(packed as Uint8Array);
 const { theta, phi } = unpackFitted({ themes: ids } as unknown as Fit, words, result);
 const previous: PreviousFit = { themes: ids, words, theta, phi };
 const refitJob = job(defaultFitSettings, previous);

@@ -64,7 +64,7 @@ describe('a fit in workers', () => {
   });
 
   it('gives the same bits where it goes on from a fit before', async () => {
-    const words = unpackWords(serial.words);
+    const words = unpackWords(serial.words as Uint8Array);
     const record = fitRecord('before', { themes: ids });
     const { theta, phi } = unpackFitted(record, words, serial.result);
     const previous = { themes: ids, words, theta, phi };
