@@ -15,8 +15,16 @@ export type StudyFileCode =
   | 'newer version'
   /** Not whole: `reason`, `offset` and `sequence` say where. Recovery goes into a new file. */
   | 'damaged'
-  /** It needs a password. */
+  /** It needs a password, and none was given. */
   | 'locked'
+  /** The password given is not that of the study. */
+  | 'wrong password'
+  /** Deriving its key would take more memory or time than a study of ours does. */
+  | 'asks too much'
+  /** A password to be set has fewer than 8 characters. */
+  | 'password too short'
+  /** A password to be set has more than 1,024 characters. */
+  | 'password too long'
   /** Another window or command on this machine has it open for writing: `owner`, where known. */
   | 'open elsewhere'
   /** A note beside it says that another machine has it open: `owner`. */

@@ -1,5 +1,6 @@
 import { createHash } from 'node:crypto';
-import { sha256 } from './chain.ts';
+import { sameBytes, sha256 } from './chain.ts';
+import { NONCE_BYTES, TAG_BYTES, type PayloadCipher } from './cipher.ts';
 import { FRAME_MAGIC, HEAD_BYTES, decodeHead, type FrameHead } from './frame.ts';
 import { readWhole, type Handle, type Storage } from './storage.ts';
 
@@ -100,4 +101,32 @@ export class FileWindow {
     const start = Math.max(0, Math.min(sector, this.size - 16));
     return this.bytes(start, this.size - start).every((byte) => byte === 0);
   }
+}
+
+/**
+ * Whether a payload is what its head commits to, looked at piece by piece; in a locked study also
+ * whether somebody with the key wrote it. Throws what the storage throws.
+ */
+export function holdsContent(
+  window: FileWindow,
+  offset: number,
+  head: FrameHead,
+  cipher: PayloadCipher | null,
+): boolean {
+  if (!head.encrypted) {
+    return sameBytes(window.commitment(head.salt, offset, head.length), head.commitment);
+  }
+  const opened = cipher?.opening(head, Buffer.from(window.bytes(offset, NONCE_BYTES))) ?? null;
+  if (opened === null) return false;
+  const end = head.length - TAG_BYTES;
+  const hash = createHash('sha256');
+  for (let done = NONCE_BYTES; done < end;) {
+    const piece = window.bytes(offset + done, Math.min(WINDOW_BYTES, end - done));
+    if (piece.length === 0) return false;
+    // The salt comes first in what is encrypted, as it does in the commitment.
+    hash.update(opened.update(piece));
+    done += piece.length;
+  }
+  const holds = opened.holds(window.bytes(offset + end, TAG_BYTES));
+  return holds && sameBytes(hash.digest(), head.commitment);
 }

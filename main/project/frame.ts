@@ -18,6 +18,7 @@ export const FRAME_MAGIC = Buffer.from([0xf7, 0x66, 0x72, 0x0a]);
 
 const ENCRYPTED = 1;
 const REMOVED = 2;
+const BOUND_BYTES = 24 + SALT_BYTES + HASH_BYTES;
 const CHECKED_BYTES = 104;
 
 const numberOfKind: Record<Kind, number> = { edit: 1, blob: 2, seal: 3, note: 4 };
@@ -52,13 +53,16 @@ export function lastingHead(kind: Kind, sequence: number): Buffer {
 
 export function encodeHead(head: FrameHead): Buffer {
   const bytes = Buffer.alloc(HEAD_BYTES);
-  bytes.set(lastingHead(head.kind, head.sequence), 0);
-  bytes.writeUInt32LE((head.encrypted ? ENCRYPTED : 0) | (head.removed ? REMOVED : 0), 16);
-  bytes.writeUInt32LE(head.length, 20);
-  bytes.set(head.salt, 24);
-  bytes.set(head.commitment, 24 + SALT_BYTES);
-  bytes.set(head.link, 24 + SALT_BYTES + HASH_BYTES);
+  writeBound(bytes, head);
+  bytes.set(head.link, BOUND_BYTES);
   bytes.set(headCheck(bytes), CHECKED_BYTES);
+  return bytes;
+}
+
+/** The part of a head that a locked payload is bound to: all before the chain. */
+export function boundHead(head: FrameHead): Buffer {
+  const bytes = Buffer.alloc(BOUND_BYTES);
+  writeBound(bytes, head);
   return bytes;
 }
 
@@ -113,6 +117,14 @@ export function decodeHead(from: Uint8Array): FrameHead | null {
 export function holdsItsCommitment(frame: Uint8Array): boolean {
   const commitment = commitmentOf(frame.subarray(24, 40), frame.subarray(HEAD_BYTES));
   return sameBytes(commitment, frame.subarray(40, 72));
+}
+
+function writeBound(bytes: Buffer, head: FrameHead): void {
+  bytes.set(lastingHead(head.kind, head.sequence), 0);
+  bytes.writeUInt32LE((head.encrypted ? ENCRYPTED : 0) | (head.removed ? REMOVED : 0), 16);
+  bytes.writeUInt32LE(head.length, 20);
+  bytes.set(head.salt, 24);
+  bytes.set(head.commitment, 24 + SALT_BYTES);
 }
 
 function headCheck(head: Uint8Array): Uint8Array {

@@ -1,9 +1,11 @@
 // The study file: what the rest of main uses of it. The format is in FORMAT.md.
-export { bringForward, createStudyFile, openStudyFile } from './open-study-file.ts';
+export { bringForward, createStudyFile, isLocked, openStudyFile } from './open-study-file.ts';
 export type { OpenOptions, StudyFileOptions } from './open-study-file.ts';
 export type { Act, ReadOnlyBecause, StudyFile } from './study-file.ts';
 export type { StudyRecord } from './scan.ts';
 export type { Kind } from './frame.ts';
+export { LONGEST_PASSWORD, passwordFault, SHORTEST_PASSWORD } from './password.ts';
+export type { DerivationWork } from './password.ts';
 export { recoverStudyFile } from './recover-study-file.ts';
 export type { MissingPart, Recovery } from './recover-study-file.ts';
 export { StudyFileFault } from './failure.ts';

@@ -5,10 +5,13 @@ import { causeOf, failure, failureOf, success } from './failure.ts';
 import type { Result, StudyFileFailure } from './failure.ts';
 import { FileWindow } from './file-window.ts';
 import { chainStart } from './chain.ts';
+import type { PayloadCipher } from './cipher.ts';
+import { cipherOf, keyFor } from './file-key.ts';
 import { decodeHeader, encodeHeader, MOST_HEADER_BYTES, type Header } from './header.ts';
 import { nameBeside } from './name-beside.ts';
 import { nodeStorage } from './node-storage.ts';
 import { leaveOwnerNote, readOwnerNote, type OwnerNote } from './owner-note.ts';
+import type { DerivationWork } from './password.ts';
 import { scan, type Scan } from './scan.ts';
 import { closeQuietly, removeQuietly, sameFile, writeWhole } from './storage.ts';
 import type { FileIdentity, Handle, Storage } from './storage.ts';
@@ -25,9 +28,13 @@ export interface StudyFileOptions {
   readonly randomBytes?: (size: number) => Uint8Array;
   readonly storage?: Storage;
   readonly lockPlace?: LockPlace;
+  /** How dear a key is made when a password is set; the usual unless told, for tests. */
+  readonly work?: DerivationWork;
 }
 
 export interface OpenOptions extends StudyFileOptions {
+  /** Of a locked study; an unlocked one opens whatever is given. */
+  readonly password?: string | undefined;
   /** Takes no lock, leaves no note, changes no byte. */
   readonly readOnly?: boolean;
   /** Open although a note says that another machine has the study open. */
@@ -39,17 +46,23 @@ export interface OpenOptions extends StudyFileOptions {
 /**
  * A new study of no records, open for writing and already on the drive. Failures: 'already there',
  * 'not found' (its folder), 'not allowed', 'name too long', 'no space', 'cannot write', 'cannot
- * lock', 'not certain'. Nothing stays of the file where it fails.
+ * lock', 'not certain'; with a password 'password too short', 'password too long' and 'asks too much'
+ * (this machine has not the memory). Nothing stays of the file where it fails.
  *
- * @param studyId 1 to 255 bytes of UTF-8; the same in every copy of the study
+ * @param studyId 1 to 255 bytes of UTF-8; the same in every copy of the study, and readable in a
+ *   locked one
+ * @param password 8 to 1,024 characters; without it nobody can open the study again
  */
 export async function createStudyFile(
   filePath: string,
-  { studyId }: { readonly studyId: string },
+  { studyId, password }: { readonly studyId: string; readonly password?: string | undefined },
   options: StudyFileOptions = {},
 ): Promise<Result<StudyFile>> {
   const storage = options.storage ?? nodeStorage;
-  const bytes = encodeHeader(studyId);
+  const key = await keyFor(password ?? null, filePath, options.work);
+  if (!key.ok) return key;
+  const { cipher, keyRegion } = key.value;
+  const bytes = encodeHeader(studyId, cipher !== null, keyRegion);
   let handle: Handle;
   try {
     handle = storage.open(filePath, 'create');
@@ -76,9 +89,9 @@ export async function createStudyFile(
     } catch (error) {
       return giveUp(failure('not certain', filePath, causeOf(error, filePath)));
     }
-    const header = { studyId, locked: false, keyRegion: new Uint8Array(0), length: bytes.length };
+    const header = { studyId, locked: cipher !== null, keyRegion, length: bytes.length };
     const found = { records: [], end: bytes.length, head: chainStart(studyId), damage: null };
-    return assemble(real, storage, handle, header, found, 0, held, options);
+    return assemble(real, storage, handle, header, cipher, found, 0, held, options);
   } catch (error) {
     return giveUp(failureOf(error, filePath, 'cannot write'));
   }
@@ -86,8 +99,8 @@ export async function createStudyFile(
 
 /**
  * Opens a study and checks every byte of it. Failures: 'not found', 'not allowed', 'cannot read',
- * 'not a study', 'empty', 'newer version', 'locked', 'damaged' (with offset, sequence and reason; see
- * `recoverStudyFile`); and for writing also 'open elsewhere', 'noted elsewhere', 'cannot lock',
+ * 'not a study', 'empty', 'newer version', 'damaged' (with offset, sequence and reason; see
+ * `recoverStudyFile`); 'locked' without a password, 'wrong password', 'asks too much'; and for writing also 'open elsewhere', 'noted elsewhere', 'cannot lock',
  * 'changed underneath' and 'not certain'.
  *
  * For writing, what an interrupted write left at the end is taken away first.
@@ -132,9 +145,13 @@ export async function openStudyFile(
         return giveUp(failure('changed underneath', filePath, { how: 'replaced' }));
       }
     }
+    // After the lock: whoever has the study open already is told so before a password is asked for.
+    const unlocked = await cipherOf(header.value, options.password, filePath);
+    if (!unlocked.ok) return giveUp(unlocked);
+    const cipher = unlocked.value;
     const size = storage.stat(handle).size;
     const window = new FileWindow(storage, handle, size);
-    const found = await scan(window, header.value, options.onProgress);
+    const found = await scan(window, header.value, cipher, options.onProgress);
     if (found.damage !== null) return giveUp(failure('damaged', filePath, found.damage));
     if (held !== null && found.end < size) {
       try {
@@ -145,7 +162,7 @@ export async function openStudyFile(
       }
     }
     const leftOver = size - found.end;
-    return assemble(real, storage, handle, header.value, found, leftOver, held, options);
+    return assemble(real, storage, handle, header.value, cipher, found, leftOver, held, options);
   } catch (error) {
     return giveUp(failureOf(error, filePath, 'cannot read'));
   }
@@ -163,14 +180,35 @@ export async function bringForward(
   }
 }
 
-export function readHeader(storage: Storage, handle: Handle, filePath: string): Result<Header> {
+/**
+ * Whether a study is locked, by its header alone; null where the file is none, or cannot be read.
+ */
+export function isLocked(filePath: string, storage: Storage = nodeStorage): boolean | null {
+  let handle: Handle;
+  try {
+    if (!storage.statPath(filePath).regular) return null;
+    handle = storage.open(filePath, 'read');
+  } catch {
+    return null;
+  }
+  try {
+    const header = readHeader(storage, handle, filePath);
+    return header.ok ? header.value.locked : null;
+  } catch {
+    return null;
+  } finally {
+    closeQuietly(storage, handle);
+  }
+}
+
+function readHeader(storage: Storage, handle: Handle, filePath: string): Result<Header> {
   const window = new FileWindow(storage, handle, storage.stat(handle).size);
   const decoded = decodeHeader(window.bytes(0, MOST_HEADER_BYTES));
   if (!decoded.ok) {
     if (decoded.why !== 'damaged') return failure(decoded.why, filePath);
     return failure('damaged', filePath, { offset: 0, sequence: 0, reason: 'header' });
   }
-  return decoded.header.locked ? failure('locked', filePath) : success(decoded.header);
+  return success(decoded.header);
 }
 
 interface Held {
@@ -202,6 +240,7 @@ function assemble(
   storage: Storage,
   handle: Handle,
   header: Header,
+  cipher: PayloadCipher | null,
   found: Scan,
   leftOver: number,
   held: Held | null,
@@ -221,6 +260,7 @@ function assemble(
         storage,
         handle,
         header,
+        cipher,
         records: found.records,
         end: found.end,
         head: found.head,
@@ -230,6 +270,7 @@ function assemble(
         randomBytes: options.randomBytes ?? randomBytes,
         onKnock: held?.onKnock ?? (() => {}),
         lockPlace: held?.lockPlace ?? usualLockPlace(),
+        work: options.work,
       }),
     );
   } catch (error) {

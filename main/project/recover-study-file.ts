@@ -1,13 +1,17 @@
 import { randomBytes } from 'node:crypto';
-import { chainStart, hex, nextLink, SALT_BYTES, sameBytes } from './chain.ts';
+import { chainStart, commitmentOf, hex, nextLink, SALT_BYTES, sameBytes } from './chain.ts';
+import type { PayloadCipher } from './cipher.ts';
 import { failure, failureOf, success, type Result } from './failure.ts';
-import { FileWindow } from './file-window.ts';
+import { cipherOf } from './file-key.ts';
+import { FileWindow, holdsContent } from './file-window.ts';
 import { endsAnAct, HEAD_BYTES, headFor, lastingHead, removedHead } from './frame.ts';
 import type { FrameHead, Kind } from './frame.ts';
 import { CHECK_BYTES, decodeHeader, encodeHeader } from './header.ts';
 import { FIXED_HEADER_BYTES, MOST_HEADER_BYTES } from './header.ts';
 import { nodeStorage } from './node-storage.ts';
-import { closeQuietly, type Storage } from './storage.ts';
+import type { OpenOptions } from './open-study-file.ts';
+import { KEY_BEGINNING, KEY_HALF_BYTES, newKey } from './password.ts';
+import { closeQuietly } from './storage.ts';
 import { place, writeBeside } from './write-beside.ts';
 
 /** A record of the damaged file whose content is not in the new one. */
@@ -54,13 +58,16 @@ const MOST_MISSING = 1_000_000;
  * removed, with its commitment, so the chain goes on as it was; one of which nothing is left becomes
  * a note, and the chain is another from there.
  *
- * Failures: those of reading, 'empty', 'not a study' (no frame found), 'newer version', 'locked';
+ * A locked study needs its password, and the new file is locked with the same.
+ *
+ * Failures: those of reading, 'empty', 'not a study' (no frame found), 'newer version', 'locked',
+ * 'wrong password', 'asks too much'; 'damaged' where both copies of a locked study's key are;
  * 'already there' and those of writing for the new file.
  */
 export async function recoverStudyFile(
   filePath: string,
   newPath: string,
-  options: { readonly storage?: Storage; readonly randomBytes?: (size: number) => Uint8Array } = {},
+  options: Pick<OpenOptions, 'password' | 'randomBytes' | 'storage' | 'work'> = {},
 ): Promise<Result<Recovery>> {
   const storage = options.storage ?? nodeStorage;
   const random = options.randomBytes ?? randomBytes;
@@ -73,31 +80,42 @@ export async function recoverStudyFile(
   }
   try {
     const window = new FileWindow(storage, handle, storage.stat(handle).size);
-    const start = findStart(window, filePath);
+    const start = await findStart(window, filePath, options.password);
     if (!start.ok) return start;
-    const { offset } = start.value;
+    const { offset, cipher } = start.value;
     const studyIdLost = start.value.studyId === null;
     const studyId = start.value.studyId ?? hex(random(16));
-    const gathered = gather(window, offset, chainStart(studyId));
+    const gathered = gather(window, offset, chainStart(studyId), cipher);
     if (gathered === null) return failure('not a study', filePath);
     const { pieces, rebuilt, end, lastLink } = gathered;
+    const key = cipher === null ? null : await newKey(options.password ?? '', options.work);
 
     let link = chainStart(studyId);
     const written = writeBeside(storage, newPath, false, (target) => {
-      target.add(encodeHeader(studyId));
+      target.add(encodeHeader(studyId, key !== null, key?.keyRegion));
+      const add = (head: FrameHead, body: Uint8Array): void => {
+        const stored = key?.cipher.lock(head, body) ?? { head, payload: body };
+        target.frame(stored.head, stored.payload);
+      };
       for (const piece of pieces) {
         if (piece.head === null) {
           const body = Buffer.from(JSON.stringify({ missing: { offset: piece.offset } }), 'utf8');
           const head = headFor('note', piece.sequence, random(SALT_BYTES), body, link);
           link = head.link;
-          target.frame(head, body);
+          add(head, body);
           continue;
         }
         const lasting = lastingHead(piece.kind, piece.sequence);
         link = nextLink(link, lasting, piece.head.commitment);
         const { payload } = piece;
-        if (payload === null) target.frame({ ...removedHead(piece.head), link }, new Uint8Array(0));
-        else target.frame({ ...piece.head, link }, window.copy(payload.offset, payload.length));
+        const stored = payload === null ? null : window.copy(payload.offset, payload.length);
+        const content = stored === null ? null : contentOf(piece.head, stored, cipher);
+        if (content === null) {
+          target.frame({ ...removedHead(piece.head), link }, new Uint8Array(0));
+        } else {
+          const { salt, body } = content;
+          add({ ...piece.head, encrypted: false, length: body.length, salt, link }, body);
+        }
       }
     });
     if (!written.ok) return written;
@@ -125,40 +143,87 @@ export async function recoverStudyFile(
   }
 }
 
-/** Where frames begin and whose they are, also where the header is damaged. */
-function findStart(
+interface Start {
+  readonly offset: number;
+  readonly studyId: string | null;
+  readonly cipher: PayloadCipher | null;
+}
+
+/** Where frames begin, whose they are and how they are read, also where the header is damaged. */
+async function findStart(
   window: FileWindow,
   filePath: string,
-): Result<{ readonly offset: number; readonly studyId: string | null }> {
+  password: string | undefined,
+): Promise<Result<Start>> {
   const bytes = Buffer.from(window.bytes(0, MOST_HEADER_BYTES));
   const decoded = decodeHeader(bytes);
   if (decoded.ok) {
-    const { locked, length, studyId } = decoded.header;
-    return locked ? failure('locked', filePath) : success({ offset: length, studyId });
+    const { length, studyId } = decoded.header;
+    const cipher = await cipherOf(decoded.header, password, filePath);
+    return cipher.ok ? success({ offset: length, studyId, cipher: cipher.value }) : cipher;
   }
   if (decoded.why === 'empty' || decoded.why === 'newer version') {
     return failure(decoded.why, filePath);
   }
   const first = window.findHead(0);
   if (first === null) return failure('not a study', filePath);
-  if (first.head.encrypted) return failure('locked', filePath);
+  let cipher: PayloadCipher | null = null;
+  if (isEncrypted(window)) {
+    const found = await cipherFromDamagedHeader(bytes, password, filePath);
+    if (!found.ok) return found;
+    cipher = found.value;
+  }
 
-  // An unlocked header holds nothing but the id between its fixed part and its check. The chain's
-  // first hash tells whether these bytes are the id.
-  const idEnd = first.offset - CHECK_BYTES;
+  // A header of ours holds nothing but the id, and the keys of a locked study, between its fixed part
+  // and its check. The chain's first hash tells whether these bytes are the id.
+  const idEnd = first.offset - CHECK_BYTES - (cipher === null ? 0 : 2 * KEY_HALF_BYTES);
   if (idEnd > FIXED_HEADER_BYTES && idEnd <= FIXED_HEADER_BYTES + 255) {
     const studyId = bytes.toString('utf8', FIXED_HEADER_BYTES, idEnd);
     const { kind, sequence, commitment, link } = first.head;
     const expected = nextLink(chainStart(studyId), lastingHead(kind, sequence), commitment);
     if (sequence === 1 && sameBytes(expected, link)) {
-      return success({ offset: first.offset, studyId });
+      return success({ offset: first.offset, studyId, cipher });
     }
   }
-  return success({ offset: first.offset, studyId: null });
+  return success({ offset: first.offset, studyId: null, cipher });
+}
+
+/** By the first record that has content. */
+function isEncrypted(window: FileWindow): boolean {
+  let next = window.findHead(0);
+  while (next?.head.removed === true) next = window.findHead(next.offset + HEAD_BYTES);
+  return next?.head.encrypted ?? false;
+}
+
+/** From either copy of the key, wherever in the header it stands. */
+async function cipherFromDamagedHeader(
+  bytes: Buffer,
+  password: string | undefined,
+  filePath: string,
+): Promise<Result<PayloadCipher | null>> {
+  let why = failure('damaged', filePath, { offset: 0, sequence: 0, reason: 'header' });
+  let at = bytes.indexOf(KEY_BEGINNING);
+  for (let copy = 0; copy < 2 && at >= 0; copy++) {
+    const keyRegion = bytes.subarray(at, at + KEY_HALF_BYTES);
+    const found = await cipherOf({ locked: true, keyRegion }, password, filePath);
+    if (found.ok) return found;
+    why = found;
+    at = bytes.indexOf(KEY_BEGINNING, at + 1);
+  }
+  return why;
+}
+
+function contentOf(head: FrameHead, payload: Uint8Array, cipher: PayloadCipher | null) {
+  return cipher === null ? { salt: head.salt, body: payload } : cipher.unlock(head, payload);
 }
 
 /** All pieces up to the last edit, seal or note, in sequence; null for a file that is made up. */
-function gather(window: FileWindow, start: number, chainAtStart: Uint8Array) {
+function gather(
+  window: FileWindow,
+  start: number,
+  chainAtStart: Uint8Array,
+  cipher: PayloadCipher | null,
+) {
   const pieces: Piece[] = [];
   let offset = start;
   let rebuilt = 0;
@@ -178,7 +243,7 @@ function gather(window: FileWindow, start: number, chainAtStart: Uint8Array) {
     if (next === null) {
       // A whole head here means a frame cut short: what an interrupted write leaves.
       if (window.head(offset) !== null) break;
-      const last = rebuild(window, offset, window.size, sequence, link, null);
+      const last = rebuild(window, offset, window.size, sequence, link, null, cipher);
       if (last !== null) {
         rebuilt += 1;
         take(last.piece, last.end, last.link);
@@ -187,14 +252,15 @@ function gather(window: FileWindow, start: number, chainAtStart: Uint8Array) {
     }
     const { head } = next;
     if (next.offset > offset && head.sequence === sequence + 1) {
-      const lost = rebuild(window, offset, next.offset, sequence, link, head);
+      const lost = rebuild(window, offset, next.offset, sequence, link, head, cipher);
       if (lost !== null) {
         rebuilt += 1;
         take(lost.piece, lost.end, lost.link);
         continue;
       }
     }
-    if (head.sequence < sequence || head.encrypted) {
+    const readable = head.removed || head.encrypted === (cipher !== null);
+    if (head.sequence < sequence || !readable) {
       // A second copy of what we have, or nothing that we can read.
       offset = next.offset + HEAD_BYTES + head.length;
       continue;
@@ -205,7 +271,7 @@ function gather(window: FileWindow, start: number, chainAtStart: Uint8Array) {
     }
     const payloadStart = next.offset + HEAD_BYTES;
     const { kind, length } = head;
-    const intact = sameBytes(window.commitment(head.salt, payloadStart, length), head.commitment);
+    const intact = holdsContent(window, payloadStart, head, cipher);
     const end = payloadStart + length;
     const payload = intact && !head.removed ? { offset: payloadStart, length } : null;
     const piece = { sequence: head.sequence, kind, offset: next.offset, head, payload };
@@ -240,17 +306,22 @@ function rebuild(
   sequence: number,
   previous: Uint8Array | null,
   next: FrameHead | null,
+  cipher: PayloadCipher | null,
 ): { readonly piece: Piece; readonly end: number; readonly link: Uint8Array } | null {
   const payloadStart = offset + HEAD_BYTES;
   const length = end - payloadStart;
   if (previous === null || length < 0) return null;
   const old = Buffer.from(window.bytes(offset, HEAD_BYTES));
-  const salt = Uint8Array.from(old.subarray(24, 40));
+  const headSalt = Uint8Array.from(old.subarray(24, 40));
   const storedCommitment = Uint8Array.from(old.subarray(40, 72));
   const storedLink = old.subarray(72, 104);
-  const commitment = window.commitment(salt, payloadStart, length);
+  const commitment =
+    cipher === null
+      ? window.commitment(headSalt, payloadStart, length)
+      : peekedCommitment(window.copy(payloadStart, length), cipher);
   // With a damaged salt the content can't be proved; the commitment still can.
   for (const candidate of [commitment, storedCommitment]) {
+    if (candidate === null) continue;
     for (const kind of ['edit', 'blob', 'note', 'seal'] as const) {
       const link = nextLink(previous, lastingHead(kind, sequence), candidate);
       const proved =
@@ -262,13 +333,15 @@ function rebuild(
             );
       if (!proved) continue;
       const kept = candidate === commitment;
+      const noSalt = headSalt.every((byte) => byte === 0);
+      const removed = !kept && length === 0 && noSalt;
       const head: FrameHead = {
         kind,
         sequence,
-        encrypted: false,
-        removed: !kept && length === 0 && salt.every((byte) => byte === 0),
+        encrypted: cipher !== null && !removed,
+        removed,
         length,
-        salt,
+        salt: cipher === null ? headSalt : new Uint8Array(SALT_BYTES),
         commitment: candidate,
         link,
       };
@@ -277,4 +350,9 @@ function rebuild(
     }
   }
   return null;
+}
+
+function peekedCommitment(payload: Uint8Array, cipher: PayloadCipher): Uint8Array | null {
+  const peeked = cipher.peek(payload);
+  return peeked === null ? null : commitmentOf(peeked.salt, peeked.body);
 }

@@ -1,6 +1,7 @@
 import { chainStart, nextLink, sameBytes } from './chain.ts';
+import type { PayloadCipher } from './cipher.ts';
 import type { DamageReason } from './failure.ts';
-import type { FileWindow } from './file-window.ts';
+import { holdsContent, type FileWindow } from './file-window.ts';
 import { endsAnAct, HEAD_BYTES, lastingHead, type FrameHead, type Kind } from './frame.ts';
 import type { Header } from './header.ts';
 
@@ -44,6 +45,7 @@ const BYTES_BETWEEN_PAUSES = 32 * 1024 * 1024;
 export async function scan(
   window: FileWindow,
   header: Header,
+  cipher: PayloadCipher | null,
   onProgress?: (fraction: number) => void,
 ): Promise<Scan> {
   const records: StudyRecord[] = [];
@@ -56,7 +58,7 @@ export async function scan(
   while (offset < window.size) {
     const sequence = records.length + 1;
     const frame = window.head(offset);
-    const reason = frame === null ? null : faultOf(frame, sequence, link, window, offset);
+    const reason = frame === null ? null : faultOf(frame, sequence, link, window, offset, cipher);
     if (frame === null || reason !== null) {
       const why = reason ?? 'head';
       if (!isInterruptedWrite(window, offset, frame, why)) {
@@ -87,14 +89,17 @@ function faultOf(
   previous: Uint8Array,
   window: FileWindow,
   offset: number,
+  cipher: PayloadCipher | null,
 ): FrameFault | null {
   if (frame.sequence !== sequence) return 'order';
   const lasting = lastingHead(frame.kind, frame.sequence);
   if (!sameBytes(frame.link, nextLink(previous, lasting, frame.commitment))) return 'chain';
   if (offset + HEAD_BYTES + frame.length > window.size) return 'cut';
   if (frame.removed) return null;
-  const found = window.commitment(frame.salt, offset + HEAD_BYTES, frame.length);
-  return sameBytes(found, frame.commitment) ? null : 'content';
+  // A plain record in a locked study was put there by somebody without the key, and the other way
+  // round it could not be read.
+  if (frame.encrypted !== (cipher !== null)) return 'content';
+  return holdsContent(window, offset + HEAD_BYTES, frame, cipher) ? null : 'content';
 }
 
 function isInterruptedWrite(

@@ -11,10 +11,13 @@ import {
   removedHead,
 } from './frame.ts';
 import { MOST_EDIT_BYTES, MOST_PAYLOAD_BYTES, type FrameHead, type Kind } from './frame.ts';
+import { LOCKED_EXTRA_BYTES, type PayloadCipher } from './cipher.ts';
+import { cipherOf, keyFor, type FileKey } from './file-key.ts';
 import { FrameWriter } from './frame-writer.ts';
 import { encodeHeader, type Header } from './header.ts';
 import { nameBeside } from './name-beside.ts';
 import type { OwnerNote } from './owner-note.ts';
+import type { DerivationWork } from './password.ts';
 import { scan, type Scan, type StudyRecord } from './scan.ts';
 import { closeQuietly, readWhole, removeQuietly, sameFile } from './storage.ts';
 import type { FileState, Handle, Storage } from './storage.ts';
@@ -45,6 +48,7 @@ export interface OpenParts {
   readonly storage: Storage;
   readonly handle: Handle;
   readonly header: Header;
+  readonly cipher: PayloadCipher | null;
   readonly records: StudyRecord[];
   readonly end: number;
   readonly head: Uint8Array;
@@ -54,8 +58,11 @@ export interface OpenParts {
   readonly randomBytes: (size: number) => Uint8Array;
   readonly onKnock: () => void;
   readonly lockPlace: LockPlace;
+  readonly work: DerivationWork | undefined;
 }
 
+/** Of a plain study too, so that it can be locked. */
+const MOST_BODY_BYTES = MOST_PAYLOAD_BYTES - LOCKED_EXTRA_BYTES;
 const TAIL_BYTES = 64 * 1024;
 const COPY_BYTES = 1024 * 1024;
 
@@ -77,7 +84,9 @@ export class StudyFile {
   readonly #onKnock: () => void;
   readonly #lockPlace: LockPlace;
   readonly #note: OwnerNote | null;
-  readonly #header: Header;
+  readonly #work: DerivationWork | undefined;
+  #header: Header;
+  #cipher: PayloadCipher | null;
   #records: StudyRecord[];
   #handle: Handle | null;
   #lock: WritersLock | null;
@@ -96,7 +105,9 @@ export class StudyFile {
     this.#randomBytes = parts.randomBytes;
     this.#onKnock = parts.onKnock;
     this.#lockPlace = parts.lockPlace;
+    this.#work = parts.work;
     this.#header = parts.header;
+    this.#cipher = parts.cipher;
     this.#records = parts.records;
     this.#handle = parts.handle;
     this.#lock = parts.lock;
@@ -125,6 +136,11 @@ export class StudyFile {
   /** In bytes, up to the end of the last record. */
   get size(): number {
     return this.#size;
+  }
+
+  /** Whether it has a password. */
+  get locked(): boolean {
+    return this.#header.locked;
   }
 
   get readOnly(): boolean {
@@ -196,10 +212,10 @@ export class StudyFile {
     const records: StudyRecord[] = [];
     const writer = new FrameWriter(this.#storage, handle, this.#size);
     try {
-      for (const { head, body } of frames) {
+      for (const { head, payload } of frames) {
         const { kind, sequence, length } = head;
         records.push({ sequence, kind, offset: writer.position, length, removed: false });
-        writer.frame(head, body);
+        writer.frame(head, payload);
       }
       writer.flush();
     } catch (error) {
@@ -217,7 +233,7 @@ export class StudyFile {
     const last = frames[frames.length - 1];
     if (last !== undefined) {
       this.#link = last.head.link;
-      this.#tail = lastBytes(encodeHead(last.head), last.body);
+      this.#tail = lastBytes(encodeHead(last.head), last.payload);
     }
     return success(edits);
   }
@@ -256,20 +272,48 @@ export class StudyFile {
   async compact(
     unused: Iterable<number>,
   ): Promise<Result<{ readonly before: number; readonly after: number }>> {
-    const handle = this.#openHandle('compact');
-    if (this.readOnly) return failure('read only', this.path);
-    if (this.#compacting) throw new Error('StudyFile.compact: must wait for the other compact');
     const gone = new Set(unused);
     for (const sequence of gone) {
       if (this.#records[sequence - 1] === undefined) {
         throw new Error(`StudyFile.compact: unused holds ${sequence}, must be a record's number`);
       }
     }
+    const { keyRegion } = this.#header;
+    return this.#anew('compact', gone, async () => success({ cipher: this.#cipher, keyRegion }));
+  }
+
+  /**
+   * Sets, changes or (null) removes the password: writes the file anew under a new data key, and puts
+   * it in place of the old one, as `compact` does. Numbers, chain and head stay. Sizes in bytes.
+   * Failures: as of `compact`; 'password too short', 'password too long', 'asks too much'.
+   *
+   * @param password 8 to 1,024 characters; without it nobody can open the study again
+   */
+  async setPassword(
+    password: string | null,
+  ): Promise<Result<{ readonly before: number; readonly after: number }>> {
+    return this.#anew('setPassword', new Set(), () => keyFor(password, this.path, this.#work));
+  }
+
+  /** Whether this is the study's password; false where it has none. Takes as long as opening. */
+  async isPassword(password: string): Promise<boolean> {
+    return this.locked && (await cipherOf(this.#header, password, this.path)).ok;
+  }
+
+  async #anew(
+    asker: string,
+    gone: ReadonlySet<number>,
+    keyFor: () => Promise<Result<FileKey>>,
+  ): Promise<Result<{ readonly before: number; readonly after: number }>> {
+    const handle = this.#openHandle(asker);
+    if (this.readOnly) return failure('read only', this.path);
+    if (this.#compacting) throw new Error(`StudyFile.${asker}: must wait for the other compact`);
     const changed = this.#changedUnderneath(handle);
     if (changed !== null) return changed;
     this.#compacting = true;
     try {
-      return await this.#compact(handle, gone);
+      const key = await keyFor();
+      return key.ok ? await this.#compact(handle, gone, key.value) : key;
     } finally {
       this.#compacting = false;
     }
@@ -296,15 +340,24 @@ export class StudyFile {
   async #compact(
     handle: Handle,
     gone: ReadonlySet<number>,
+    key: FileKey,
   ): Promise<Result<{ before: number; after: number }>> {
     const before = this.#size;
     const storage = this.#storage;
+    const { studyId } = this;
+    const { cipher, keyRegion } = key;
+    const locked = cipher !== null;
+    const start = encodeHeader(studyId, locked, keyRegion);
+    const header: Header = { studyId, locked, keyRegion, length: start.length };
     let beside: string;
     let next: Handle;
     let identity: FileState;
     try {
       const { mode } = storage.stat(handle);
-      const fill = (target: FrameWriter) => this.#writeWithout(gone, handle, target);
+      const fill = (target: FrameWriter): void => {
+        target.add(start);
+        this.#writeWithout(gone, handle, cipher, target);
+      };
       const written = writeBeside(storage, this.path, true, fill, mode);
       if (!written.ok) return written;
       beside = written.value;
@@ -323,7 +376,7 @@ export class StudyFile {
     let fresh: Scan;
     try {
       identity = storage.stat(next);
-      fresh = await scan(new FileWindow(storage, next, identity.size), this.#header);
+      fresh = await scan(new FileWindow(storage, next, identity.size), header, cipher);
     } catch (error) {
       return giveUp(failureOf(error, this.path, 'cannot write'));
     }
@@ -353,6 +406,8 @@ export class StudyFile {
     }
     this.#lock?.release();
     this.#lock = taken.lock;
+    this.#header = header;
+    this.#cipher = cipher;
     this.#records = fresh.records;
     this.#size = fresh.end;
     if (closeFirst) {
@@ -376,15 +431,26 @@ export class StudyFile {
     return success({ before, after: this.#size });
   }
 
-  #writeWithout(gone: ReadonlySet<number>, from: Handle, target: FrameWriter): void {
+  #writeWithout(
+    gone: ReadonlySet<number>,
+    from: Handle,
+    cipher: PayloadCipher | null,
+    target: FrameWriter,
+  ): void {
     const window = new FileWindow(this.#storage, from, this.#size);
-    target.add(encodeHeader(this.studyId, this.#header.locked, this.#header.keyRegion));
     for (const record of this.#records) {
       const head = this.#headAt(record, window.bytes(record.offset, HEAD_BYTES));
-      if (gone.has(record.sequence)) {
+      if (record.removed || gone.has(record.sequence)) {
         target.frame(removedHead(head), new Uint8Array(0));
+        continue;
+      }
+      const { salt, body } = this.#content(record, window);
+      const plain = { ...head, encrypted: false, length: body.length, salt };
+      if (cipher === null) {
+        target.frame(plain, body);
       } else {
-        target.frame(head, this.#body(record, window));
+        const locked = cipher.lock(plain, body);
+        target.frame(locked.head, locked.payload);
       }
     }
   }
@@ -403,8 +469,8 @@ export class StudyFile {
 
   #prepare(
     acts: readonly Act[],
-  ): Result<{ frames: { head: FrameHead; body: Uint8Array }[]; edits: number[] }> {
-    const frames: { head: FrameHead; body: Uint8Array }[] = [];
+  ): Result<{ frames: { head: FrameHead; payload: Uint8Array }[]; edits: number[] }> {
+    const frames: { head: FrameHead; payload: Uint8Array }[] = [];
     const edits: number[] = [];
     let link = this.#link;
     const add = (kind: Kind, body: Uint8Array): number => {
@@ -417,11 +483,11 @@ export class StudyFile {
       }
       const head = headFor(kind, sequence, salt, body, link);
       link = head.link;
-      frames.push({ head, body });
+      frames.push(this.#cipher?.lock(head, body) ?? { head, payload: body });
       return sequence;
     };
     for (const { blobs = [], edit } of acts) {
-      if (blobs.some((blob) => blob.length > MOST_PAYLOAD_BYTES)) {
+      if (blobs.some((blob) => blob.length > MOST_BODY_BYTES)) {
         return failure('too large', this.path);
       }
       const blobSequences = blobs.map((blob) => add('blob', blob));
@@ -480,14 +546,24 @@ export class StudyFile {
     return why;
   }
 
-  #body(record: StudyRecord, window?: FileWindow): Uint8Array<ArrayBuffer> {
+  #body(record: StudyRecord, window?: FileWindow): Uint8Array {
+    return this.#content(record, window).body;
+  }
+
+  /** Of a kept record, checked. */
+  #content(record: StudyRecord, window?: FileWindow): { salt: Uint8Array; body: Uint8Array } {
     try {
       const frame = window?.copy(record.offset, HEAD_BYTES + record.length) ?? this.#frame(record);
-      const body = frame.subarray(HEAD_BYTES);
-      if (!record.removed && !holdsItsCommitment(frame)) {
-        throw this.#rotten(record, 'content');
+      const head = this.#headAt(record, frame);
+      const payload = frame.subarray(HEAD_BYTES);
+      const { salt } = head;
+      if (head.encrypted) {
+        const content = this.#cipher?.unlock(head, payload) ?? null;
+        if (content !== null) return content;
+      } else if (this.#cipher === null && holdsItsCommitment(frame)) {
+        return { salt, body: payload };
       }
-      return body;
+      throw this.#rotten(record, 'content');
     } catch (error) {
       if (error instanceof StudyFileFault) throw error;
       throw new StudyFileFault(failureOf(error, this.path, 'cannot read'));
@@ -508,7 +584,7 @@ export class StudyFile {
     return head;
   }
 
-  #parse(record: StudyRecord, body: Uint8Array<ArrayBuffer>): unknown {
+  #parse(record: StudyRecord, body: Uint8Array): unknown {
     try {
       return JSON.parse(new TextDecoder('utf-8', { fatal: true }).decode(body));
     } catch {

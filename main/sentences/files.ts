@@ -20,7 +20,14 @@ export const fileSentences: Record<StudyFileCode, Say> = {
   damaged: (f) =>
     `${file(f)} is damaged${f.sequence === undefined ? '' : ` from record ${f.sequence} on`} and was left as it is; recover what is whole into a new file, or open a backup.`,
   locked: (f) =>
-    `${file(f)} is locked with a password; open it in the window and type the password.`,
+    `${file(f)} is locked with a password; type it, or give the command a file that holds it with --password-file.`,
+  'wrong password': (f) =>
+    `That is not the password of ${file(f)}; check capital letters and the keyboard’s language, then try again.`,
+  'asks too much': (f) =>
+    `Opening ${file(f)} would take more memory or time than a study of ours does, so it was left as it is; if you made it, open it on a machine with more memory, or use a backup.`,
+  'password too short': () =>
+    'A password needs at least 8 characters; four words picked by chance make a good one.',
+  'password too long': () => 'A password may have 1,024 characters; choose a shorter one.',
   'open elsewhere': (f) =>
     `${file(f)} is open in another window or command${owner(f)}; close it there, then try again.`,
   'noted elsewhere': (f) =>

@@ -1,17 +1,23 @@
 #!/usr/bin/env python3
-"""Reads an unlocked .understory file from its format page alone (main/project/FORMAT.md).
+"""Reads an .understory file from its format page alone (main/project/FORMAT.md).
 
-    python3 read-study.py FILE [--head HASH]
+    python3 read-study.py FILE [--head HASH] [--password-file TEXT]
+
+A locked study needs its password, the first line of TEXT, and the Python package "cryptography".
 
 Prints one line a record: sequence, kind, offset, payload length, then an edit's JSON, or of any
 other record the payload's SHA-256. Last comes the chain's hash. Exit 0: every record and the chain
-hold (and the hash is HASH). 1: they do not. 2: this is no unlocked study of version 1.
+hold (and the hash is HASH). 1: they do not. 2: this is no study of version 1, or it is locked and
+the password is missing or wrong. 3: it is locked and "cryptography" is not installed.
 """
 
+import argparse
+import base64
 import hashlib
 import json
 import struct
 import sys
+import unicodedata
 
 KINDS = {1: "edit", 2: "blob", 3: "seal", 4: "note"}
 HEAD = 112
@@ -31,11 +37,50 @@ def header(data):
         sys.exit(quit_with(1, "damaged header"))
     if version != 1 or flags & ~1:
         sys.exit(quit_with(2, "from a newer version"))
-    if flags & 1:
-        sys.exit(quit_with(2, "locked with a password"))
     if length != 32 + id_length + key_length:
         sys.exit(quit_with(1, "damaged header"))
-    return data[24 : 24 + id_length], length
+    key_start = 24 + id_length
+    keys = data[key_start : key_start + key_length] if flags & 1 else None
+    return data[24:key_start], length, keys
+
+
+def data_key(region, password):
+    """The AES-256-GCM of a locked study's payloads."""
+    try:
+        from cryptography.exceptions import InvalidTag
+        from cryptography.hazmat.primitives.ciphers.aead import AESGCM
+    except ImportError:
+        sys.exit(quit_with(3, 'locked, and the Python package "cryptography" is not installed'))
+    wanted = None
+    for half in (region[: len(region) // 2], region[len(region) // 2 :]):
+        try:
+            wanted = wanted or json.loads(half)
+        except ValueError:
+            pass
+    if wanted is None:
+        sys.exit(quit_with(1, "damaged header"))
+    n, r, p = wanted["n"], wanted["r"], wanted["p"]
+    if 128 * n * r > 512 * 1024 * 1024 or n * r * p > 8 * 1024 * 1024:
+        sys.exit(quit_with(2, "its key asks for too much memory or work"))
+    typed = unicodedata.normalize("NFC", password).encode("utf-8")
+    salt, key = base64.b64decode(wanted["salt"]), base64.b64decode(wanted["key"])
+    most = 128 * r * (n + p + 2) + 1024
+    outer = hashlib.scrypt(typed, salt=salt, n=n, r=r, p=p, maxmem=most, dklen=32)
+    try:
+        return AESGCM(AESGCM(outer).decrypt(key[:12], key[12:], b"understory data key"))
+    except InvalidTag:
+        sys.exit(quit_with(2, "wrong password"))
+
+
+def unlocked(aead, payload, bound):
+    """(salt, body) of an encrypted payload, or None."""
+    from cryptography.exceptions import InvalidTag
+
+    try:
+        plain = aead.decrypt(payload[:12], payload[12:], bound)
+    except (InvalidTag, ValueError):
+        return None
+    return plain[:16], plain[16:]
 
 
 def quit_with(code, sentence):
@@ -43,8 +88,8 @@ def quit_with(code, sentence):
     return code
 
 
-def records(data, study_id, at):
-    """Yields (sequence, kind, offset, payload or None when removed, chain)."""
+def records(data, study_id, at, aead):
+    """Yields (sequence, kind, offset, payload length, body or None when removed, chain)."""
     chain = sha(b"understory study\n", study_id)
     expected = 1
     while at < len(data):
@@ -65,9 +110,17 @@ def records(data, study_id, at):
             return
         if flags & 2:
             payload = None
-        elif sha(salt, payload) != commitment:
-            raise ValueError(f"record {sequence} at {at} is not what was written")
-        yield sequence, KINDS[kind], at, payload, chain
+        else:
+            encrypted = bool(flags & 1)
+            content = (salt, payload) if not encrypted else None
+            if encrypted and aead is not None:
+                content = unlocked(aead, payload, head[:72])
+            if encrypted == (aead is None):
+                content = None
+            if content is None or sha(*content) != commitment:
+                raise ValueError(f"record {sequence} at {at} is not what was written")
+            payload = content[1]
+        yield sequence, KINDS[kind], at, length, payload, chain
         at += HEAD + length
         expected += 1
 
@@ -87,30 +140,39 @@ def shown(kind, payload):
 
 
 def main(arguments):
-    if len(arguments) not in (1, 3) or (len(arguments) == 3 and arguments[1] != "--head"):
-        return quit_with(2, __doc__)
-    with open(arguments[0], "rb") as file:
+    parser = argparse.ArgumentParser(usage=__doc__)
+    parser.add_argument("file")
+    parser.add_argument("--head")
+    parser.add_argument("--password-file")
+    given = parser.parse_args(arguments)
+    with open(given.file, "rb") as file:
         data = file.read()
-    study_id, start = header(data)
+    study_id, start, keys = header(data)
+    aead = None
+    if keys is not None:
+        if given.password_file is None:
+            return quit_with(2, "locked with a password")
+        with open(given.password_file, encoding="utf-8", newline="") as file:
+            aead = data_key(keys, file.readline().rstrip("\r\n"))
     print("study", study_id.decode("utf-8"))
     whole, waiting = [], []
     head = sha(b"understory study\n", study_id)
     damage = None
     try:
-        for record in records(data, study_id, start):
+        for record in records(data, study_id, start, aead):
             waiting.append(record)
             if record[1] != "blob":
                 whole += waiting
                 waiting = []
-                head = record[4]
+                head = record[5]
     except ValueError as error:
         damage = None if never_filled(data) else error
-    for sequence, kind, at, payload, _ in whole:
-        print(sequence, kind, at, len(payload or b""), shown(kind, payload))
+    for sequence, kind, at, length, body, _ in whole:
+        print(sequence, kind, at, length, shown(kind, body))
     print("head", head.hex())
     if damage is not None:
         return quit_with(1, str(damage))
-    if len(arguments) == 3 and arguments[2].lower() != head.hex():
+    if given.head is not None and given.head.lower() != head.hex():
         return quit_with(1, "the chain holds, but its hash is another")
     return 0
 

@@ -62,6 +62,29 @@ describe.skipIf(python === undefined)(
       expect(read(at, '--head', '0'.repeat(64)).status).toBe(1);
     });
 
+    it('reads a locked one with its password, and nothing of it without', async (context) => {
+      const at = newPath();
+      const file = await create(at, { work: { n: 1024, r: 8, p: 1 } });
+      const says = 'Anna: „nein“ 🦊';
+      valueOf(file.append([Buffer.from(says)], (blobs) => ({ blobs, memo: 'ä' })));
+      appendSamples(file, 5);
+      valueOf(await file.compact([3]));
+      valueOf(await file.setPassword('Übergänge and moss'));
+      const secret = newPath('password.txt');
+      fs.writeFileSync(secret, 'Übergänge and moss\n');
+      const { lines, status, stderr } = read(at, '--password-file', secret);
+      // The package for AES is no part of Python.
+      context.skip(status === 3, stderr);
+      expect(status).toBe(0);
+      expect(lines.at(-1)).toBe(`head ${file.head}`);
+      expect(lines).toHaveLength(file.records.length + 2);
+      expect(lines[1]).toMatch(new RegExp(`${createHash('sha256').update(says).digest('hex')}$`));
+      expect(lines[3]).toMatch(/removed$/);
+      expect(read(at)).toMatchObject({ status: 2, lines: [''] });
+      fs.writeFileSync(secret, 'another\n');
+      expect(read(at, '--password-file', secret)).toMatchObject({ status: 2, lines: [''] });
+    });
+
     it('agrees about what is cut, what is damaged and what is no study', async () => {
       const at = newPath();
       const file = await create(at);
