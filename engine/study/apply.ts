@@ -1,6 +1,8 @@
 import type { Edit, EditKind, Entry } from './edit.ts';
 import { codingRules } from './edits/codings.ts';
+import { copyRules } from './edits/copies.ts';
 import { fitRules } from './edits/fits.ts';
+import { forgettingRules } from './edits/forgetting.ts';
 import { headingRules } from './edits/headings.ts';
 import { memoRules } from './edits/memos.ts';
 import { participantRules } from './edits/participants.ts';
@@ -23,6 +25,8 @@ const rules: Rules<EditKind> = {
   ...codingRules,
   ...memoRules,
   ...fitRules,
+  ...forgettingRules,
+  ...copyRules,
 };
 
 /** Every kind of edit there is, in the order of the rules. */
@@ -53,7 +57,13 @@ export function apply(study: Study, entry: Entry): Result<Study> {
   if (!history.ok) return history;
   const changed = ruleFor(edit.kind).apply(study, edit, entry.undoes !== undefined);
   if (!changed.ok) return changed;
-  return done({ ...changed.value, ...history.value, sequence });
+  const left = closesTrail(edit.kind) ? { undo: null, redo: null } : history.value;
+  return done({ ...changed.value, ...left, sequence });
+}
+
+/** Whether nothing up to and with an edit of this kind can be taken back: it erased something. */
+export function closesTrail(kind: EditKind): boolean {
+  return ruleFor(kind).closes === true;
 }
 
 /** The edit that takes `edit` back, or null where nothing can (the start of the study). */

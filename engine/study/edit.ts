@@ -5,6 +5,7 @@ import type {
   CodingId,
   Definition,
   EvidenceKind,
+  Exported,
   Fit,
   FitId,
   Heading,
@@ -18,6 +19,7 @@ import type {
   Reader,
   SettingValue,
   Speaker,
+  TakenIn,
   Theme,
   ThemeId,
   Transcript,
@@ -216,7 +218,29 @@ export type Edit =
       readonly result: PlainValue;
       /** What stood there before; null for nothing. */
       readonly before: PlainValue;
-    };
+    }
+  | {
+      /** A person's words, codings, memos and attributes are gone for good. */
+      readonly kind: 'participantWithdrawn';
+      readonly participant: ParticipantId;
+      /** Transcripts that went altogether. */
+      readonly transcripts: readonly TranscriptId[];
+      /** Transcripts with other people, in which the person's turns lost their words. */
+      readonly shared: readonly TranscriptId[];
+    }
+  | {
+      /** The wordings before the one of now are gone for good. */
+      readonly kind: 'originalsSealed';
+      readonly transcripts: readonly TranscriptId[];
+    }
+  | {
+      /** Fits whose stored words held something that was erased. */
+      readonly kind: 'fitsForgotten';
+      readonly fits: readonly FitId[];
+    }
+  | { readonly kind: 'copyTakenIn'; readonly copy: TakenIn }
+  | { readonly kind: 'copyLetGo'; readonly copy: TakenIn }
+  | { readonly kind: 'reportExported'; readonly report: Exported };
 
 export type EditKind = Edit['kind'];
 export type EditOf<Kind extends EditKind> = Extract<Edit, { readonly kind: Kind }>;

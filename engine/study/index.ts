@@ -8,9 +8,10 @@ export {
   type RefusalCode,
   type Result,
 } from './refusal.ts';
-export { apply, editKinds, fold, inverse } from './apply.ts';
+export { apply, closesTrail, editKinds, fold, inverse } from './apply.ts';
 export { takingBack, type TakingBack } from './undo.ts';
 export { spansLost } from './edits/transcripts.ts';
+export { turnsOf } from './edits/forgetting.ts';
 export { spanFault } from './edits/codings.ts';
 export {
   fittedThemes,

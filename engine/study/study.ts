@@ -216,6 +216,40 @@ export interface Fit {
   readonly evidence?: { readonly [Kind in EvidenceKind]?: PlainValue };
 }
 
+/** A report that left the study, and whose words it held. */
+export interface Exported {
+  /** Its format as the reports call it ("docx"). */
+  readonly what: string;
+  readonly fileName: string;
+  readonly transcripts: readonly TranscriptId[];
+  readonly participants: readonly ParticipantId[];
+  /** ISO 8601 in UTC. */
+  readonly at: string;
+  readonly reader: ReaderId;
+}
+
+/** Another copy of this study, up to its last record of then, as it was taken in. */
+export interface TakenIn {
+  /** The chain's hash after that copy's last record, hex. */
+  readonly head: string;
+  /** The last record that both copies share. */
+  readonly shared: number;
+  /** How many records the copy had. */
+  readonly records: number;
+  /** Fits that only the other copy has; codings that came along may have been made under them. */
+  readonly fits: readonly FitId[];
+  /** The other copy's decisions since the shared record, as JSON lines; null where none came. */
+  readonly branch: BlobRef | null;
+}
+
+/** What a withdrawal leaves of a person. */
+export interface Withdrawal {
+  /** Transcripts that went altogether. */
+  readonly transcripts: readonly TranscriptId[];
+  /** Transcripts with other people, in which the person's turns lost their words. */
+  readonly shared: readonly TranscriptId[];
+}
+
 /** A chain of units that undo or redo can reach, newest first. */
 export interface HistoryStep {
   /** Sequence numbers in the order in which they were made. */
@@ -251,6 +285,14 @@ export interface Study {
   readonly fits: ReadonlyMap<FitId, Fit>;
   /** The fit on screen. */
   readonly fit: FitId | null;
+  /** Fits that codings may refer to and that are not here: erased, or another copy's. */
+  readonly absentFits: ReadonlySet<FitId>;
+  readonly withdrawn: ReadonlyMap<ParticipantId, Withdrawal>;
+  /** Transcripts whose earlier wordings were erased. */
+  readonly sealed: ReadonlySet<TranscriptId>;
+  /** In order. */
+  readonly exported: readonly Exported[];
+  readonly takenIn: readonly TakenIn[];
   readonly undo: HistoryStep | null;
   readonly redo: HistoryStep | null;
 }
@@ -271,6 +313,11 @@ export const emptyStudy: Study = {
   memos: new Map(),
   fits: new Map(),
   fit: null,
+  absentFits: new Set(),
+  withdrawn: new Map(),
+  sealed: new Set(),
+  exported: [],
+  takenIn: [],
   undo: null,
   redo: null,
 };

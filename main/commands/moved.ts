@@ -64,7 +64,9 @@ export function fitBefore(study: Study): string | null {
   const ids = [...study.fits.keys()];
   const fit = study.fit === null ? undefined : study.fits.get(study.fit);
   if (fit === undefined) return null;
-  return fit.start.from ?? ids[ids.indexOf(fit.id) - 1] ?? null;
+  const from = fit.start.from ?? ids[ids.indexOf(fit.id) - 1] ?? null;
+  // The fit that it began from may have been erased since.
+  return from !== null && study.fits.has(from) ? from : null;
 }
 
 function nameIn(study: Study, id: string, before: Fitted, after: Fitted): string {

@@ -72,6 +72,16 @@ const phrases: Phrases = {
   fitRenamed: () => 'name of a fit',
   evidenceGathered: ({ what }) =>
     what === 'steadiness' ? 'measure of steadiness' : 'trial of numbers of themes',
+  participantWithdrawn: () => 'withdrawal of a participant',
+  originalsSealed: ({ transcripts }) =>
+    `seal of the originals of ${transcripts.length} ${transcripts.length === 1 ? 'transcript' : 'transcripts'}`,
+  fitsForgotten: ({ fits }) =>
+    fits.length === 1
+      ? 'erasing of a fit whose words are gone'
+      : `erasing of ${fits.length} fits whose words are gone`,
+  copyTakenIn: () => 'taking in of another copy',
+  copyLetGo: () => 'letting go of another copy',
+  reportExported: ({ report }) => `export of ${report.fileName}`,
 };
 
 /** Several edits of one kind in one gesture. */

@@ -150,7 +150,9 @@ function codingFault(study: Study, coding: Coding): Refusal | null {
 
 function underFault(study: Study, { reader, fit }: DecidedUnder): Refusal | null {
   if (!study.readers.has(reader)) return refused('unknown reader', reader);
-  if (fit !== null && !study.fits.has(fit)) return refused('unknown fit', fit);
+  if (fit !== null && !study.fits.has(fit) && !study.absentFits.has(fit)) {
+    return refused('unknown fit', fit);
+  }
   return null;
 }
 

@@ -10,6 +10,8 @@ export interface Rule<Kind extends EditKind> {
    * else such an edit could never be undone.
    */
   readonly apply: (study: Study, edit: EditOf<Kind>, restoring: boolean) => Result<Study>;
+  /** Whether nothing before such an edit can be taken back any more. */
+  readonly closes?: true;
   /** The edit that restores what was there before, or null for what cannot be taken back. */
   readonly inverse: (edit: EditOf<Kind>) => Edit | null;
 }

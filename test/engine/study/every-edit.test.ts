@@ -88,6 +88,35 @@ const secondFitting = {
 } as const;
 const fittedTwice = after(island, secondFitting);
 
+const sharedQuay = after(
+  island,
+  { kind: 'transcriptGathered', transcript: quay },
+  {
+    kind: 'speakersAssigned',
+    transcript: 'quay',
+    from: quay.speakers,
+    to: [{ label: 'INT', role: 'participant', participant: 'tove' }, quay.speakers[1]!],
+  },
+  { kind: 'codingMade', coding: coding('of-tove-1', { transcript: 'quay', span: span(2, 9) }) },
+  { kind: 'codingMade', coding: coding('of-both', { transcript: 'quay', span: span(20, 35) }) },
+  { kind: 'codingMade', coding: coding('of-maren', { transcript: 'quay' }) },
+  { kind: 'noneMarked', none: none('none-of-tove', { transcript: 'quay', span: span(31, 40) }) },
+  {
+    kind: 'memoWritten',
+    memo: memo('of-tove', { kind: 'passage', transcript: 'quay', span: span(0, 10) }),
+  },
+);
+
+const otherCopy = { head: 'aa', shared: 12, records: 31, fits: ['their-fit'], branch: null };
+const bookOfHarbour = {
+  what: 'docx',
+  fileName: 'The island excerpts.docx',
+  transcripts: ['harbour'],
+  participants: ['maren'],
+  at: '2031-04-05T06:07:08.000Z',
+  reader: 'reader-ada',
+};
+
 const steady = { themes: [{ steadiness: 0.75, passages: 4 }], floor: 0.5, note: null };
 
 const wordedOnce: TextState = {
@@ -1006,6 +1035,126 @@ const cases: { readonly [Kind in EditKind]: readonly Case<Kind>[] } = {
           evidence: { 'how many': [3, 4], steadiness: { themes: [] } },
         }),
       },
+    },
+  ],
+  participantWithdrawn: [
+    {
+      does: 'takes a person away with their transcripts and all that was decided on these',
+      before: after(island, {
+        kind: 'transcriptRenamed',
+        transcript: 'mill',
+        from: 'Mill',
+        to: 'The mill',
+      }),
+      edit: {
+        kind: 'participantWithdrawn',
+        participant: 'maren',
+        transcripts: ['harbour', 'mill'],
+        shared: [],
+      },
+      expected: {
+        participants: new Map([['tove', tove]]),
+        transcripts: new Map(),
+        codings: new Map(),
+        nones: new Map(),
+        memos: new Map([['on-study', memo('on-study')]]),
+        withdrawn: new Map([['maren', { transcripts: ['harbour', 'mill'], shared: [] }]]),
+      },
+    },
+    {
+      does: 'leaves turns without a person, and nothing decided on them, where others speak as well',
+      before: sharedQuay,
+      edit: {
+        kind: 'participantWithdrawn',
+        participant: 'tove',
+        transcripts: [],
+        shared: ['quay'],
+      },
+      expected: {
+        participants: having(sharedQuay.participants, 'tove', undefined),
+        transcripts: having(sharedQuay.transcripts, 'quay', {
+          ...quay,
+          speakers: [
+            { label: 'INT', role: 'other', participant: null },
+            { label: 'MAREN', role: 'participant', participant: 'maren' },
+          ],
+        }),
+        codings: having(
+          sharedQuay.codings,
+          'quay',
+          new Map([['of-maren', coding('of-maren', { transcript: 'quay' })]]),
+        ),
+        nones: having(sharedQuay.nones, 'quay', undefined),
+        memos: having(sharedQuay.memos, 'of-tove', undefined),
+        withdrawn: new Map([['tove', { transcripts: [], shared: ['quay'] }]]),
+      },
+    },
+    {
+      does: 'folds also where the records of the transcripts are gone',
+      before: after(
+        started,
+        { kind: 'participantAdded', participant: maren },
+        { kind: 'participantAdded', participant: tove },
+      ),
+      edit: {
+        kind: 'participantWithdrawn',
+        participant: 'maren',
+        transcripts: ['harbour', 'mill'],
+        shared: [],
+      },
+      expected: {
+        participants: new Map([['tove', tove]]),
+        withdrawn: new Map([['maren', { transcripts: ['harbour', 'mill'], shared: [] }]]),
+      },
+    },
+  ],
+  originalsSealed: [
+    {
+      does: 'is known of each transcript',
+      edit: { kind: 'originalsSealed', transcripts: ['harbour'] },
+      expected: { sealed: new Set(['harbour']) },
+    },
+  ],
+  fitsForgotten: [
+    {
+      does: 'takes fits away, and off the screen, and leaves codings made under them',
+      edit: { kind: 'fitsForgotten', fits: ['first-fit'] },
+      expected: { fits: new Map(), fit: null, absentFits: new Set(['first-fit']) },
+    },
+    {
+      does: 'leaves a later fit on screen',
+      before: fittedTwice,
+      edit: { kind: 'fitsForgotten', fits: ['first-fit'] },
+      expected: {
+        fits: having(fittedTwice.fits, 'first-fit', undefined),
+        absentFits: new Set(['first-fit']),
+      },
+    },
+  ],
+  copyTakenIn: [
+    {
+      does: 'remembers the copy and the fits that only it has',
+      edit: { kind: 'copyTakenIn', copy: otherCopy },
+      expected: { takenIn: [otherCopy], absentFits: new Set(['their-fit']) },
+    },
+  ],
+  copyLetGo: [
+    {
+      does: 'forgets it',
+      before: after(
+        island,
+        { kind: 'copyTakenIn', copy: { ...otherCopy, head: 'ab', fits: ['their-fit', 'older'] } },
+        { kind: 'copyTakenIn', copy: otherCopy },
+      ),
+      edit: { kind: 'copyLetGo', copy: otherCopy },
+      expected: { takenIn: [{ ...otherCopy, head: 'ab', fits: ['their-fit', 'older'] }] },
+    },
+  ],
+  reportExported: [
+    {
+      does: 'is kept, and undo passes it over',
+      edit: { kind: 'reportExported', report: bookOfHarbour },
+      expected: { exported: [bookOfHarbour] },
     },
   ],
 };

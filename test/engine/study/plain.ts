@@ -29,13 +29,20 @@ export function plain(study: Study) {
     memos: sorted(memos),
     fits: sorted(fits),
     fit: study.fit,
+    absentFits: [...study.absentFits].sort(),
+    withdrawn: sorted(study.withdrawn),
+    sealed: [...study.sealed].sort(),
+    exported: study.exported,
+    takenIn: study.takenIn,
   };
 }
 
 /** With what undo and redo reach, and with every order. */
 export function plainToTheLast(study: Study) {
   return JSON.parse(
-    JSON.stringify(study, (_key, value: unknown) => (value instanceof Map ? [...value] : value)),
+    JSON.stringify(study, (_key, value: unknown) =>
+      value instanceof Map || value instanceof Set ? [...value] : value,
+    ),
   ) as unknown;
 }
 

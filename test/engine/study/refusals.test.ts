@@ -60,6 +60,7 @@ interface Case {
   readonly subject: string;
 }
 
+const otherCopy = { head: 'aa', shared: 12, records: 31, fits: [], branch: null };
 const merged = after(island, { kind: 'themesMerged', into: 'sea', from: ['work'] });
 const aside = after(island, { kind: 'themeSetAside', theme: 'work' });
 const onHarbour = coding('on-harbour');
@@ -94,6 +95,12 @@ const refusals: { readonly [Code in RefusalCode]: readonly Case[] } = {
       before: headed,
       edit: { kind: 'headingAdded', heading: { ...living, name: 'Other' }, place: null },
       subject: 'Other',
+    },
+    {
+      what: 'a copy that was taken in as it is',
+      before: after(island, { kind: 'copyTakenIn', copy: otherCopy }),
+      edit: { kind: 'copyTakenIn', copy: { ...otherCopy, shared: 3 } },
+      subject: 'aa',
     },
     { what: 'a reader twice', edit: { kind: 'readerAdded', reader: ada }, subject: 'Ada' },
     {
@@ -172,6 +179,11 @@ const refusals: { readonly [Code in RefusalCode]: readonly Case[] } = {
       before: coded,
       edit: { ...lookedAt, from: 2, to: 1 },
       subject: 'on-harbour',
+    },
+    {
+      what: 'to let a copy go that was not the last',
+      edit: { kind: 'copyLetGo', copy: otherCopy },
+      subject: 'aa',
     },
     {
       what: 'to rename a study that has another name',
@@ -1000,6 +1012,11 @@ const refusals: { readonly [Code in RefusalCode]: readonly Case[] } = {
   ],
   'unknown fit': [
     {
+      what: 'to erase one twice',
+      edit: { kind: 'fitsForgotten', fits: ['first-fit', 'first-fit'] },
+      subject: 'first-fit',
+    },
+    {
       what: 'to show a fit that is not there',
       edit: { kind: 'fitChosen', from: 'first-fit', to: 'gone' },
       subject: 'gone',
@@ -1076,6 +1093,17 @@ const refusals: { readonly [Code in RefusalCode]: readonly Case[] } = {
     },
   ],
   'unknown participant': [
+    {
+      what: 'to withdraw somebody twice',
+      before: after(island, {
+        kind: 'participantWithdrawn',
+        participant: 'tove',
+        transcripts: [],
+        shared: [],
+      }),
+      edit: { kind: 'participantWithdrawn', participant: 'tove', transcripts: [], shared: [] },
+      subject: 'tove',
+    },
     {
       what: 'to remove a participant who is not there',
       edit: { kind: 'participantRemoved', participant: { ...tove, id: 'gone' } },
@@ -1219,6 +1247,11 @@ const refusals: { readonly [Code in RefusalCode]: readonly Case[] } = {
     },
   ],
   'unknown transcript': [
+    {
+      what: 'to seal one that is not there',
+      edit: { kind: 'originalsSealed', transcripts: ['harbour', 'quay'] },
+      subject: 'quay',
+    },
     {
       what: 'to remove a transcript that is not there',
       edit: { kind: 'transcriptRemoved', transcript: { ...mill, id: 'gone' } },

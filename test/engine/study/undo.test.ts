@@ -157,3 +157,25 @@ describe('the trail', () => {
     }
   });
 });
+
+describe('what erased something for good', () => {
+  it('can neither be taken back nor anything before it', () => {
+    const person = { id: 'maren', name: 'Maren', attributes: {} };
+    const before = [
+      entry(10, { kind: 'participantAdded', participant: person }),
+      entry(11, renamed(first, 'a')),
+    ].reduce(applied, started);
+    const withdrawn: Edit = {
+      kind: 'participantWithdrawn',
+      participant: 'maren',
+      transcripts: [],
+      shared: [],
+    };
+    const study = applied(before, entry(12, withdrawn));
+    expect([study.undo, study.redo]).toEqual([null, null]);
+    expect(inverse(withdrawn)).toBeNull();
+    const back = entry(13, renamed('a', first), { undoes: 11 });
+    expect(apply(study, back)).toMatchObject({ ok: false, code: 'nothing to undo' });
+    expect(applied(study, entry(13, renamed('a', 'b'))).undo?.sequences).toEqual([13]);
+  });
+});
