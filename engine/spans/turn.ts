@@ -10,6 +10,8 @@ export interface Turn extends Span {
   /** Milliseconds from the start of the recording, or null where the source gives no time. */
   readonly startTime: number | null;
   readonly endTime: number | null;
+  /** The question of the interview guide that it asks; absent where nobody said so. */
+  readonly question?: string;
 }
 
 /** A line before the first turn ("Date: 3 May"): kept with the transcript, never taken for speech. */

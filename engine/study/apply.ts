@@ -4,6 +4,8 @@ import { copyRules } from './edits/copies.ts';
 import { fitRules } from './edits/fits.ts';
 import { forgettingRules } from './edits/forgetting.ts';
 import { headingRules } from './edits/headings.ts';
+import { guideRules } from './edits/guide.ts';
+import { identifierRules } from './edits/identifiers.ts';
 import { memoRules } from './edits/memos.ts';
 import { participantRules } from './edits/participants.ts';
 import type { Rule, Rules } from './edits/rule.ts';
@@ -18,6 +20,8 @@ import { emptyStudy, type Study } from './study.ts';
 const rules: Rules<EditKind> = {
   ...studyRules,
   ...transcriptRules,
+  ...guideRules,
+  ...identifierRules,
   ...participantRules,
   ...themeRules,
   ...headingRules,

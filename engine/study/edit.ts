@@ -1,4 +1,4 @@
-import type { Replacement, Span, Turn } from '../spans/index.ts';
+import type { Detail, Replacement, Span, Turn } from '../spans/index.ts';
 import type {
   BlobRef,
   Coding,
@@ -10,12 +10,16 @@ import type {
   FitId,
   Heading,
   HeadingId,
+  GuideQuestion,
+  Identifier,
+  IdentifierId,
   Memo,
   MemoId,
   None,
   Participant,
   ParticipantId,
   PlainValue,
+  QuestionId,
   Reader,
   SettingValue,
   Speaker,
@@ -23,6 +27,7 @@ import type {
   Theme,
   ThemeId,
   Transcript,
+  TranscriptFacts,
   TranscriptId,
 } from './study.ts';
 
@@ -31,6 +36,14 @@ export interface TextState {
   readonly text: BlobRef;
   readonly length: number;
   readonly turns: readonly Turn[];
+}
+
+/** What is said about a transcript besides its words. */
+export interface TranscriptDescription {
+  readonly fileName: string;
+  readonly details: readonly Detail[];
+  /** Null for nothing said. */
+  readonly facts: TranscriptFacts | null;
 }
 
 /** The part of a coding that can be changed afterwards. */
@@ -79,6 +92,35 @@ export type Edit =
       readonly placed: readonly { readonly id: string; readonly span: Span }[];
       /** Spans as they are before, which mapping back would not restore (see `spansLost`). */
       readonly lost: readonly { readonly id: string; readonly span: Span }[];
+    }
+  | {
+      readonly kind: 'transcriptDescribed';
+      readonly transcript: TranscriptId;
+      readonly from: TranscriptDescription;
+      readonly to: TranscriptDescription;
+    }
+  | {
+      readonly kind: 'guideRevised';
+      readonly from: readonly GuideQuestion[];
+      readonly to: readonly GuideQuestion[];
+    }
+  | {
+      /** Which questions of the guide turns ask; null for none. */
+      readonly kind: 'turnsTagged';
+      readonly transcript: TranscriptId;
+      readonly changes: readonly {
+        /** The turn's place among the transcript's, from 0. */
+        readonly turn: number;
+        readonly from: QuestionId | null;
+        readonly to: QuestionId | null;
+      }[];
+    }
+  | {
+      /** What a person decided about something that could tell who somebody is; null for nothing. */
+      readonly kind: 'identifierSettled';
+      readonly identifier: IdentifierId;
+      readonly from: Identifier | null;
+      readonly to: Identifier | null;
     }
   | { readonly kind: 'participantAdded'; readonly participant: Participant }
   | { readonly kind: 'participantRemoved'; readonly participant: Participant }

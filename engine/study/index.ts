@@ -1,5 +1,13 @@
 export * from './study.ts';
-export type { CodingState, Edit, EditKind, EditOf, Entry, TextState } from './edit.ts';
+export type {
+  CodingState,
+  Edit,
+  EditKind,
+  EditOf,
+  Entry,
+  TextState,
+  TranscriptDescription,
+} from './edit.ts';
 export {
   done,
   refusalCodes,
@@ -10,8 +18,8 @@ export {
 } from './refusal.ts';
 export { apply, closesTrail, editKinds, fold, inverse } from './apply.ts';
 export { takingBack, type TakingBack } from './undo.ts';
-export { spansLost } from './edits/transcripts.ts';
 export { turnsOf } from './edits/forgetting.ts';
+export { descriptionOf, spansLost } from './edits/transcripts.ts';
 export { spanFault } from './edits/codings.ts';
 export {
   fittedThemes,

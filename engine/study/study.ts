@@ -10,6 +10,8 @@ export type NoneId = string;
 export type MemoId = string;
 export type FitId = string;
 export type HeadingId = string;
+export type IdentifierId = string;
+export type QuestionId = string;
 
 /** Bytes kept in the study file, addressed by the sequence number of their record. */
 export interface BlobRef {
@@ -45,6 +47,17 @@ export interface Speaker {
   readonly participant: ParticipantId | null;
 }
 
+/** What a person knows about an interview besides its words; what nobody said is absent. */
+export interface TranscriptFacts {
+  /** When it was held: a day, YYYY-MM-DD. */
+  readonly collected?: string;
+  readonly interviewedBy?: string;
+  /** ISO 639-3, where it is another than the study's. */
+  readonly language?: string;
+  /** Whether somebody compared it with the recording. */
+  readonly checked?: boolean;
+}
+
 export interface Transcript {
   readonly id: TranscriptId;
   /** Unique in the study; a path with "/" where folders were gathered. */
@@ -62,6 +75,58 @@ export interface Transcript {
   readonly details: readonly Detail[];
   readonly turns: readonly Turn[];
   readonly speakers: readonly Speaker[];
+  /** Absent where nothing was said. */
+  readonly facts?: TranscriptFacts;
+}
+
+/** A question of the interview guide. */
+export interface GuideQuestion {
+  readonly id: QuestionId;
+  readonly text: string;
+}
+
+export const identifierKinds = [
+  'person',
+  'place',
+  'organisation',
+  'e-mail',
+  'telephone',
+  'web',
+  'date',
+  'age',
+  'postcode',
+  'number',
+] as const;
+
+/** What kind of thing could tell who somebody is. */
+export type IdentifierKind = (typeof identifierKinds)[number];
+
+/** A stretch of one transcript. */
+export interface TranscriptPlace {
+  readonly transcript: TranscriptId;
+  readonly span: Span;
+}
+
+/**
+ * What a person decided about a name, a place, a number: the same over the whole study. The words in
+ * `forms` and nothing else here are originals; sealing leaves them out.
+ */
+export interface Identifier {
+  readonly id: IdentifierId;
+  readonly kind: IdentifierKind;
+  /** The ways in which it stands in the texts, in code-unit order. */
+  readonly forms: readonly string[];
+  /**
+   * A stand-in is another name, a generalisation what it is an instance of ("a village"); what is
+   * left stays in the texts knowingly; what is not identifying was taken for a name by mistake.
+   */
+  readonly decision: 'stand-in' | 'generalised' | 'left' | 'not identifying';
+  /** What was put in its place; null where nothing was. */
+  readonly replacement: string | null;
+  /** Transcripts in which it was put. */
+  readonly putIn: readonly TranscriptId[];
+  /** For what stays: where it stays, or null for everywhere, later transcripts included. */
+  readonly places: readonly TranscriptPlace[] | null;
 }
 
 /** A codebook entry (MacQueen, McLellan, Kay & Milstein 1998), without its name. */
@@ -282,6 +347,9 @@ export interface Study {
   readonly codings: ReadonlyMap<TranscriptId, ReadonlyMap<CodingId, Coding>>;
   readonly nones: ReadonlyMap<TranscriptId, ReadonlyMap<NoneId, None>>;
   readonly memos: ReadonlyMap<MemoId, Memo>;
+  readonly identifiers: ReadonlyMap<IdentifierId, Identifier>;
+  /** The interview guide, in its order. */
+  readonly guide: readonly GuideQuestion[];
   readonly fits: ReadonlyMap<FitId, Fit>;
   /** The fit on screen. */
   readonly fit: FitId | null;
@@ -311,6 +379,8 @@ export const emptyStudy: Study = {
   codings: new Map(),
   nones: new Map(),
   memos: new Map(),
+  identifiers: new Map(),
+  guide: [],
   fits: new Map(),
   fit: null,
   absentFits: new Set(),

@@ -24,6 +24,14 @@ const phrases: Phrases = {
   transcriptRenamed: ({ to }) => `rename of ${to}`,
   speakersAssigned: ({ transcript }, names) => `speakers of ${names.transcript(transcript)}`,
   textRevised: ({ transcript }, names) => `correction of ${names.transcript(transcript)}`,
+  transcriptDescribed: ({ transcript }, names) => `description of ${names.transcript(transcript)}`,
+  guideRevised: () => 'change of the interview guide',
+  turnsTagged: ({ transcript }, names) => `questions tagged in ${names.transcript(transcript)}`,
+  identifierSettled: ({ from, to }) => {
+    if (to === null) return `decision about ${from === null ? 'a name' : 'a name taken back'}`;
+    if (to.replacement !== null) return `stand-in ${to.replacement}`;
+    return to.decision === 'left' ? 'a name left as it is' : 'mark that something is no name';
+  },
   participantAdded: ({ participant }) => `participant ${participant.name}`,
   participantRemoved: ({ participant }) => `removal of participant ${participant.name}`,
   participantDescribed: ({ to }) => `description of ${to.name}`,
@@ -88,6 +96,8 @@ const phrases: Phrases = {
 const several: Partial<Record<EditKind, (count: number) => string>> = {
   transcriptGathered: (count) => `adding of ${count} transcripts`,
   transcriptRemoved: (count) => `removal of ${count} transcripts`,
+  textRevised: (count) => `correction of ${count} transcripts`,
+  identifierSettled: (count) => `decisions on ${count} names`,
   speakersAssigned: (count) => `speakers of ${count} transcripts`,
   participantDescribed: (count) => `attributes of ${count} participants`,
   wordSeeded: (count) => `${count} seed words`,
@@ -111,6 +121,14 @@ const alongside: readonly EditKind[] = [
   'noneCleared',
   'codingRemoved',
   'wordSeeded',
+  'codingRevised',
+  'memoRevised',
+  'transcriptDescribed',
+  'transcriptRenamed',
+  'themeRenamed',
+  'themeDefined',
+  'speakersAssigned',
+  'textRevised',
 ];
 
 export function editInWords(edit: Edit, names: Names): string {

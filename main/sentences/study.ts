@@ -30,6 +30,7 @@ export const studySentences: Record<RefusalCode, Say> = {
     'There is nothing left to take back here; look at the trail for what was decided.',
   'outside the text': (s) =>
     `The place lies outside the text of ${quoted(s)}; choose a start and an end within it.`,
+  'question in use': (s) => `Turns are tagged with “${s}”; take the tags away before the question.`,
   'participant in use': (s) =>
     `${quoted(s)} still speaks in a transcript; assign those words to somebody else first.`,
   'reader in use': (s) =>
@@ -49,6 +50,7 @@ export const studySentences: Record<RefusalCode, Say> = {
   'unknown fit': () => 'That fit is not in the study; choose one from the list of fits.',
   'unknown heading': () => 'That heading is not in the study any more; choose another one.',
   'unknown memo': () => 'That memo is not in the study any more; write a new one.',
+  'unknown question': (s) => `The interview guide has no question “${s}”; look at the guide again.`,
   'unknown participant': (s) =>
     `${quoted(s)} is no participant of the study; choose one from the list, or add the person first.`,
   'unknown reader': (s) => `${quoted(s)} is no reader of the study; add the reader first.`,

@@ -81,6 +81,8 @@ function transcriptOf(edit: Edit): string | null {
     case 'speakersAssigned':
     case 'textRevised':
       return edit.transcript;
+    case 'transcriptDescribed':
+      return edit.from.facts?.language === edit.to.facts?.language ? null : edit.transcript;
     default:
       return null;
   }

@@ -1,7 +1,7 @@
 import { mapSpan, sameSpan, invertReplacements, type Span } from '../../spans/index.ts';
-import type { EditOf } from '../edit.ts';
+import type { EditOf, TranscriptDescription } from '../edit.ts';
 import { done, refused, type Refusal } from '../refusal.ts';
-import type { Memo, MemoId, Study, Transcript } from '../study.ts';
+import type { Identifier, IdentifierId, Memo, MemoId, Study, Transcript } from '../study.ts';
 import { sameJson, withEntry, withInner, withoutEntry, type Rules } from './rule.ts';
 
 interface PlacedSpan {
@@ -15,6 +15,7 @@ export const transcriptRules: Rules<
   | 'transcriptRenamed'
   | 'speakersAssigned'
   | 'textRevised'
+  | 'transcriptDescribed'
 > = {
   transcriptGathered: {
     apply(study, { transcript }) {
@@ -106,7 +107,40 @@ export const transcriptRules: Rules<
       lost: edit.placed,
     }),
   },
+
+  transcriptDescribed: {
+    apply(study, { transcript, from, to }) {
+      const current = study.transcripts.get(transcript);
+      if (current === undefined) return refused('unknown transcript', transcript);
+      if (!sameJson(descriptionOf(current), from)) return refused('changed since', current.name);
+      if (to.fileName.trim() === '') return refused('empty name', current.name);
+      const { collected } = to.facts ?? {};
+      if (collected !== undefined && !/^\d{4}-\d{2}-\d{2}$/.test(collected)) {
+        return refused('unusable value', collected);
+      }
+      const { facts: _facts, ...rest } = current;
+      return done(
+        withTranscript(study, {
+          ...rest,
+          source: { ...current.source, fileName: to.fileName },
+          details: to.details,
+          ...(to.facts === null ? {} : { facts: to.facts }),
+        }),
+      );
+    },
+    inverse: ({ transcript, from, to }) => ({
+      kind: 'transcriptDescribed',
+      transcript,
+      from: to,
+      to: from,
+    }),
+  },
 };
+
+/** What is said about a transcript besides its words, as it stands. */
+export function descriptionOf({ source, details, facts }: Transcript): TranscriptDescription {
+  return { fileName: source.fileName, details, facts: facts ?? null };
+}
 
 /**
  * The spans that mapping back would not restore, as they stand before the edit: what an undo of it
@@ -172,7 +206,19 @@ function spansOn(study: Study, transcript: string): PlacedSpan[] {
     ...[...(study.codings.get(transcript)?.values() ?? [])].map(({ id, span }) => ({ id, span })),
     ...[...(study.nones.get(transcript)?.values() ?? [])].map(({ id, span }) => ({ id, span })),
     ...memos,
+    ...[...study.identifiers.values()].flatMap((identifier) =>
+      (identifier.places ?? []).flatMap((place, index) =>
+        place.transcript === transcript
+          ? [{ id: placeId(identifier, index), span: place.span }]
+          : [],
+      ),
+    ),
   ].map(({ id, span: { start, end } }) => ({ id, span: { start, end } }));
+}
+
+/** What an edit of a text calls the place of something that stays. */
+function placeId({ id }: Identifier, index: number): string {
+  return `${id} ${index}`;
 }
 
 function reviseText(study: Study, revised: Transcript, edit: EditOf<'textRevised'>): Study {
@@ -187,12 +233,38 @@ function reviseText(study: Study, revised: Transcript, edit: EditOf<'textRevised
     const here = subject.kind === 'passage' && subject.transcript === revised.id;
     memos.set(id, here ? { ...memo, subject: { ...subject, span: move(id, subject.span) } } : memo);
   }
+  const staysHere = [...study.identifiers.values()].some(({ places }) =>
+    places?.some(({ transcript }) => transcript === revised.id),
+  );
   return {
     ...withTranscript(study, revised),
     memos,
+    identifiers: staysHere ? movedPlaces(study, revised.id, move) : study.identifiers,
     codings: withInner(study.codings, revised.id, moveAll(study.codings.get(revised.id))),
     nones: withInner(study.nones, revised.id, moveAll(study.nones.get(revised.id))),
   };
+}
+
+function movedPlaces(
+  { identifiers }: Study,
+  transcript: string,
+  move: ReturnType<typeof mover>,
+): ReadonlyMap<IdentifierId, Identifier> {
+  return new Map(
+    [...identifiers].map(([id, identifier]) => [
+      id,
+      identifier.places === null
+        ? identifier
+        : {
+            ...identifier,
+            places: identifier.places.map((place, index) =>
+              place.transcript === transcript
+                ? { ...place, span: move(placeId(identifier, index), place.span) }
+                : place,
+            ),
+          },
+    ]),
+  );
 }
 
 function withTranscript(study: Study, transcript: Transcript): Study {

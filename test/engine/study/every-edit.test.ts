@@ -7,6 +7,7 @@ import {
   type Coding,
   type EditKind,
   type EditOf,
+  type Identifier,
   type Study,
   type TextState,
   type Theme,
@@ -69,6 +70,43 @@ function codings(transcript: string, id: string, value?: Coding, study = island)
   const inner = having(study.codings.get(transcript) ?? new Map<string, Coding>(), id, value);
   return { codings: having(study.codings, transcript, inner.size === 0 ? undefined : inner) };
 }
+
+const theSea = { id: 'q-sea', text: 'What is the sea to you?' };
+const theShop = { id: 'q-shop', text: 'How do you get to the shop?' };
+const asked = after(
+  island,
+  { kind: 'guideRevised', from: [], to: [theSea, theShop] },
+  { kind: 'turnsTagged', transcript: 'harbour', changes: [{ turn: 0, from: null, to: 'q-sea' }] },
+);
+const ruth: Identifier = {
+  id: 'ruth',
+  kind: 'person',
+  forms: ['RUTH', 'Ruth'],
+  decision: 'stand-in',
+  replacement: 'Anna',
+  putIn: ['harbour'],
+  places: null,
+};
+const withRuth = after(island, {
+  kind: 'identifierSettled',
+  identifier: 'ruth',
+  from: null,
+  to: ruth,
+});
+const boat: Identifier = {
+  ...ruth,
+  id: 'boat',
+  decision: 'left',
+  replacement: null,
+  putIn: [],
+  places: [{ transcript: 'harbour', span: span(42, 46) }],
+};
+const withBoat = after(island, {
+  kind: 'identifierSettled',
+  identifier: 'boat',
+  from: null,
+  to: boat,
+});
 
 const lonely = theme('lonely', { name: 'Lonely' });
 const withLonely = after(island, { kind: 'themeAdded', theme: lonely });
@@ -367,6 +405,17 @@ const cases: { readonly [Kind in EditKind]: readonly Case<Kind>[] } = {
       expected: harbourMoved(allRemoved, { coding: [10, 10], none: [10, 10], memo: [10, 10] }),
     },
     {
+      does: 'moves the places of names that stay',
+      before: withBoat,
+      edit: stretchReplaced,
+      expected: {
+        ...harbourMoved(stretchReplaced, { coding: [11, 29], none: [37, 56], memo: [20, 32] }),
+        identifiers: new Map([
+          ['boat', { ...boat, places: [{ transcript: 'harbour', span: span(38, 42) }] }],
+        ]),
+      },
+    },
+    {
       does: 'changes a transcript without decisions',
       before: after(started, {
         kind: 'transcriptGathered',
@@ -399,6 +448,82 @@ const cases: { readonly [Kind in EditKind]: readonly Case<Kind>[] } = {
           ],
         ]),
       },
+    },
+  ],
+  transcriptDescribed: [
+    {
+      does: 'says when it was held, and names file and headings anew',
+      edit: {
+        kind: 'transcriptDescribed',
+        transcript: 'harbour',
+        from: { fileName: 'harbour.txt', details: harbour.details, facts: null },
+        to: { fileName: 'P01.txt', details: [], facts: { collected: '2031-03-02', checked: true } },
+      },
+      expected: {
+        transcripts: having(island.transcripts, 'harbour', {
+          ...harbour,
+          source: { ...harbour.source, fileName: 'P01.txt' },
+          details: [],
+          facts: { collected: '2031-03-02', checked: true },
+        }),
+      },
+    },
+  ],
+  guideRevised: [
+    {
+      does: 'puts the questions of the guide',
+      edit: { kind: 'guideRevised', from: [], to: [theSea, theShop] },
+      expected: { guide: [theSea, theShop] },
+    },
+  ],
+  turnsTagged: [
+    {
+      does: 'says which question a turn asks, and takes it back',
+      before: asked,
+      edit: {
+        kind: 'turnsTagged',
+        transcript: 'harbour',
+        changes: [
+          { turn: 0, from: 'q-sea', to: null },
+          { turn: 2, from: null, to: 'q-shop' },
+        ],
+      },
+      expected: {
+        transcripts: having(asked.transcripts, 'harbour', {
+          ...harbour,
+          turns: harbour.turns.map((turn, index) =>
+            index === 2 ? { ...turn, question: 'q-shop' } : turn,
+          ),
+        }),
+      },
+    },
+  ],
+  identifierSettled: [
+    {
+      does: 'keeps what was decided about a name',
+      edit: { kind: 'identifierSettled', identifier: 'ruth', from: null, to: ruth },
+      expected: { identifiers: new Map([['ruth', ruth]]) },
+    },
+    {
+      does: 'changes it',
+      before: withRuth,
+      edit: {
+        kind: 'identifierSettled',
+        identifier: 'ruth',
+        from: ruth,
+        to: { ...ruth, decision: 'generalised', replacement: 'a neighbour' },
+      },
+      expected: {
+        identifiers: new Map([
+          ['ruth', { ...ruth, decision: 'generalised', replacement: 'a neighbour' }],
+        ]),
+      },
+    },
+    {
+      does: 'takes it out',
+      before: withRuth,
+      edit: { kind: 'identifierSettled', identifier: 'ruth', from: ruth, to: null },
+      expected: { identifiers: new Map() },
     },
   ],
   participantAdded: [

@@ -27,6 +27,8 @@ export function plain(study: Study) {
     codings: sorted(codings).map(([id, inner]) => [id, sorted(inner)] as const),
     nones: sorted(nones).map(([id, inner]) => [id, sorted(inner)] as const),
     memos: sorted(memos),
+    identifiers: sorted(study.identifiers),
+    guide: study.guide,
     fits: sorted(fits),
     fit: study.fit,
     absentFits: [...study.absentFits].sort(),

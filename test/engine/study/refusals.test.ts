@@ -5,6 +5,7 @@ import {
   emptyStudy,
   refusalCodes,
   type Edit,
+  type Identifier,
   type RefusalCode,
   type SettingValue,
   type Study,
@@ -79,6 +80,26 @@ const revised: Extract<Edit, { kind: 'textRevised' }> = {
   placed: [],
   lost: [],
 };
+
+const question = { id: 'q', text: 'What is the sea?' };
+const withQuestion = after(
+  island,
+  { kind: 'guideRevised', from: [], to: [question] },
+  { kind: 'turnsTagged', transcript: 'harbour', changes: [{ turn: 0, from: null, to: 'q' }] },
+);
+const name: Identifier = {
+  id: 'name',
+  kind: 'person',
+  forms: ['Ruth'],
+  decision: 'stand-in',
+  replacement: 'Anna',
+  putIn: [],
+  places: null,
+};
+
+function settled(to: Identifier | null, from: Identifier | null = null): Edit {
+  return { kind: 'identifierSettled', identifier: 'name', from, to };
+}
 
 function setting(value: unknown, key = 'model.themes'): Edit {
   return { kind: 'settingsChanged', changes: [{ key, from: null, to: value as SettingValue }] };
@@ -184,6 +205,36 @@ const refusals: { readonly [Code in RefusalCode]: readonly Case[] } = {
       what: 'to let a copy go that was not the last',
       edit: { kind: 'copyLetGo', copy: otherCopy },
       subject: 'aa',
+    },
+    {
+      what: 'to settle a name that was settled otherwise',
+      edit: settled(name, { ...name, replacement: 'Ida' }),
+      subject: 'Ruth',
+    },
+    {
+      what: 'to revise a guide that reads otherwise',
+      edit: { kind: 'guideRevised', from: [question], to: [] },
+      subject: 'The island',
+    },
+    {
+      what: 'to tag a turn that is tagged otherwise',
+      before: withQuestion,
+      edit: {
+        kind: 'turnsTagged',
+        transcript: 'harbour',
+        changes: [{ turn: 0, from: null, to: 'q' }],
+      },
+      subject: 'Harbour',
+    },
+    {
+      what: 'to describe a transcript that is described otherwise',
+      edit: {
+        kind: 'transcriptDescribed',
+        transcript: 'harbour',
+        from: { fileName: 'x', details: [], facts: null },
+        to: { fileName: 'y', details: [], facts: null },
+      },
+      subject: 'Harbour',
     },
     {
       what: 'to rename a study that has another name',
@@ -407,6 +458,16 @@ const refusals: { readonly [Code in RefusalCode]: readonly Case[] } = {
       what: 'a heading without a name',
       edit: { kind: 'headingAdded', heading: { id: 'living', name: ' ' }, place: null },
       subject: 'living',
+    },
+    {
+      what: 'a stand-in of nothing',
+      edit: settled({ ...name, replacement: ' ' }),
+      subject: 'name',
+    },
+    {
+      what: 'an empty question',
+      edit: { kind: 'guideRevised', from: [], to: [{ id: 'q', text: ' ' }] },
+      subject: 'q',
     },
     {
       what: 'to start a study without a name',
@@ -702,6 +763,26 @@ const refusals: { readonly [Code in RefusalCode]: readonly Case[] } = {
   ],
   'nothing to undo': [],
   'outside the text': [
+    {
+      what: 'a name left behind the end',
+      edit: settled({
+        ...name,
+        decision: 'left',
+        replacement: null,
+        places: [{ transcript: 'harbour', span: span(50, 61) }],
+      }),
+      subject: 'Harbour',
+    },
+    {
+      what: 'to tag a turn that is not there',
+      before: withQuestion,
+      edit: {
+        kind: 'turnsTagged',
+        transcript: 'harbour',
+        changes: [{ turn: 9, from: null, to: 'q' }],
+      },
+      subject: 'Harbour',
+    },
     { what: 'a coding past the end', edit: made({ span: span(50, 61) }), subject: 'Harbour' },
     { what: 'a coding before the start', edit: made({ span: span(-1, 4) }), subject: 'Harbour' },
     { what: 'an empty coding', edit: made({ span: span(4, 4) }), subject: 'Harbour' },
@@ -777,6 +858,14 @@ const refusals: { readonly [Code in RefusalCode]: readonly Case[] } = {
         lost: [{ id: 'on-harbour', span: span(11, 30) }],
       },
       subject: 'Harbour',
+    },
+  ],
+  'question in use': [
+    {
+      what: 'to take a question away that turns are tagged with',
+      before: withQuestion,
+      edit: { kind: 'guideRevised', from: [question], to: [] },
+      subject: 'What is the sea?',
     },
   ],
   'participant in use': [
@@ -1092,6 +1181,17 @@ const refusals: { readonly [Code in RefusalCode]: readonly Case[] } = {
       subject: 'gone',
     },
   ],
+  'unknown question': [
+    {
+      what: 'to tag a turn with a question that the guide does not have',
+      edit: {
+        kind: 'turnsTagged',
+        transcript: 'harbour',
+        changes: [{ turn: 0, from: null, to: 'q' }],
+      },
+      subject: 'q',
+    },
+  ],
   'unknown participant': [
     {
       what: 'to withdraw somebody twice',
@@ -1290,6 +1390,21 @@ const refusals: { readonly [Code in RefusalCode]: readonly Case[] } = {
       before: coded,
       edit: { ...lookedAt, from: 1, to: 3 },
       subject: 'on-harbour',
+    },
+    {
+      what: 'what stays with something in its place',
+      edit: settled({ ...name, decision: 'left' }),
+      subject: 'Anna',
+    },
+    {
+      what: 'a day that is none',
+      edit: {
+        kind: 'transcriptDescribed',
+        transcript: 'harbour',
+        from: { fileName: 'harbour.txt', details: harbour.details, facts: null },
+        to: { fileName: 'harbour.txt', details: [], facts: { collected: 'May' } },
+      },
+      subject: 'May',
     },
     {
       what: 'evidence that JSON would not bring back',
