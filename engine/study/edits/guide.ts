@@ -1,3 +1,4 @@
+import type { Turn } from '../../spans/index.ts';
 import { done, refused } from '../refusal.ts';
 import type { GuideQuestion, QuestionId, Study } from '../study.ts';
 import { sameJson, withEntry, type Rules } from './rule.ts';
@@ -31,8 +32,7 @@ export const guideRules: Rules<'guideRevised' | 'turnsTagged'> = {
         if (turn === undefined) return refused('outside the text', current.name);
         if ((turn.question ?? null) !== from) return refused('changed since', current.name);
         if (to !== null && !known.has(to)) return refused('unknown question', to);
-        const { question: _question, ...rest } = turn;
-        turns[index] = to === null ? rest : { ...rest, question: to };
+        turns[index] = to === null ? untagged(turn) : { ...turn, question: to };
       }
       return done({
         ...study,
@@ -46,6 +46,10 @@ export const guideRules: Rules<'guideRevised' | 'turnsTagged'> = {
     }),
   },
 };
+
+function untagged({ question: _question, ...turn }: Turn): Turn {
+  return turn;
+}
 
 /** Questions of the guide that turns ask. */
 function questionsAsked({ transcripts }: Study): ReadonlySet<GuideQuestion['id']> {

@@ -118,10 +118,9 @@ export const transcriptRules: Rules<
       if (collected !== undefined && !/^\d{4}-\d{2}-\d{2}$/.test(collected)) {
         return refused('unusable value', collected);
       }
-      const { facts: _facts, ...rest } = current;
       return done(
         withTranscript(study, {
-          ...rest,
+          ...withoutFacts(current),
           source: { ...current.source, fileName: to.fileName },
           details: to.details,
           ...(to.facts === null ? {} : { facts: to.facts }),
@@ -136,6 +135,10 @@ export const transcriptRules: Rules<
     }),
   },
 };
+
+function withoutFacts({ facts: _facts, ...transcript }: Transcript): Transcript {
+  return transcript;
+}
 
 /** What is said about a transcript besides its words, as it stands. */
 export function descriptionOf({ source, details, facts }: Transcript): TranscriptDescription {
