@@ -6,6 +6,14 @@ export type { StudyRecord } from './scan.ts';
 export type { Kind } from './frame.ts';
 export { LONGEST_PASSWORD, passwordFault, SHORTEST_PASSWORD } from './password.ts';
 export type { DerivationWork } from './password.ts';
+export {
+  backupFolderBeside,
+  listBackups,
+  makeBackup,
+  removeBackups,
+  rewriteBackups,
+} from './backups.ts';
+export type { Backup, BackupPlaces, BackupsGone, BackupsRewritten } from './backups.ts';
 export { recoverStudyFile } from './recover-study-file.ts';
 export type { MissingPart, Recovery } from './recover-study-file.ts';
 export { StudyFileFault } from './failure.ts';

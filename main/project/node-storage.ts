@@ -35,6 +35,20 @@ export const nodeStorage: Storage = {
   resolve: (path) => fs.realpathSync.native(path),
   rename: (from, to) => fs.renameSync(from, to),
   remove: (path) => fs.unlinkSync(path),
+  list: (path) =>
+    fs
+      .readdirSync(path, { withFileTypes: true })
+      .filter((entry) => entry.isFile())
+      .map(({ name }) => name),
+  makeFolder(path, mode) {
+    try {
+      fs.mkdirSync(path, { mode });
+    } catch (error) {
+      if ((error as { code?: string }).code !== 'EEXIST' || !fs.statSync(path).isDirectory()) {
+        throw error;
+      }
+    }
+  },
   syncFolder(path) {
     // Windows opens no folder for this and needs none: NTFS logs its own entries.
     if (process.platform === 'win32') return;

@@ -44,6 +44,10 @@ export interface Storage {
   /** Takes the place of whatever is at `to`. */
   rename(from: string, to: string): void;
   remove(path: string): void;
+  /** Names of the files in a folder. */
+  list(path: string): readonly string[];
+  /** Makes a folder in one that is there, where there is none of that name yet. */
+  makeFolder(path: string, mode: number): void;
   /** Makes the folder's own entries lasting; does nothing where a system has no such thing. */
   syncFolder(path: string): void;
   close(handle: Handle): void;

@@ -1,3 +1,4 @@
+import * as path from 'node:path';
 import { hex, SALT_BYTES, sameBytes } from './chain.ts';
 import { causeOf, failure, failureOf, StudyFileFault, success } from './failure.ts';
 import type { Result, StudyFileFailure } from './failure.ts';
@@ -262,6 +263,35 @@ export class StudyFile {
     if (!written.ok) return written;
     const placed = await place(this.#storage, written.value, to);
     return placed.ok ? success(this.#size) : placed;
+  }
+
+  /**
+   * Copies the study as it stands to a new name, each record checked on the way and the whole on the
+   * drive before it bears that name. In one go, so that nothing is written in between; `passing` is
+   * what it is called until it is whole. Its size in bytes; failures are those of writing, 'already
+   * there' and 'damaged'.
+   */
+  backUp(to: string, passing: string): Result<number> {
+    const handle = this.#openHandle('backUp');
+    if (this.#compacting) throw new Error('StudyFile.backUp: must wait for compact');
+    const storage = this.#storage;
+    try {
+      const { mode } = storage.stat(handle);
+      const fill = (target: FrameWriter) => this.#writeWithout(new Set(), handle, target);
+      const written = writeBeside(storage, to, false, fill, mode, passing);
+      if (!written.ok) return written;
+      storage.rename(passing, to);
+      storage.syncFolder(path.dirname(to));
+      return success(this.#size);
+    } catch (error) {
+      removeQuietly(storage, passing);
+      return failureOf(error, to, 'cannot write');
+    }
+  }
+
+  /** Whether the file is being written anew, while which it can be neither written nor copied. */
+  get compacting(): boolean {
+    return this.#compacting;
   }
 
   /**

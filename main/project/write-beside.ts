@@ -45,8 +45,8 @@ export function writeBeside(
   replace: boolean,
   fill: (writer: FrameWriter) => void,
   mode?: number,
+  beside = nameBeside(to, 'new'),
 ): Result<string> {
-  const beside = nameBeside(to, 'new');
   try {
     if (!replace && isThere(storage, to)) return failure('already there', to);
     removeQuietly(storage, beside);

@@ -100,6 +100,8 @@ export function faultyStorage(plan: Plan | null = null, mustCloseToReplace = fal
   storage.statPath = around('statPath', quickStorage.statPath);
   storage.rename = around('rename', quickStorage.rename);
   storage.remove = around('remove', quickStorage.remove);
+  storage.list = around('list', quickStorage.list);
+  storage.makeFolder = around('makeFolder', quickStorage.makeFolder);
   storage.syncFolder = around('syncFolder', quickStorage.syncFolder);
   return storage;
 }
