@@ -277,7 +277,15 @@ export class StudyFile {
     const storage = this.#storage;
     try {
       const { mode } = storage.stat(handle);
-      const fill = (target: FrameWriter) => this.#writeWithout(new Set(), handle, target);
+      const fill = (target: FrameWriter): void => {
+        const window = new FileWindow(storage, handle, this.#size);
+        target.add(window.copy(0, this.#header.length));
+        for (const record of this.#records) {
+          // Throws where it is no longer what was written: no backup is better than a rotten one.
+          if (!record.removed) this.#content(record, window);
+          target.add(window.copy(record.offset, HEAD_BYTES + record.length));
+        }
+      };
       const written = writeBeside(storage, to, false, fill, mode, passing);
       if (!written.ok) return written;
       storage.rename(passing, to);

@@ -235,6 +235,19 @@ describe('backups of a study that was written anew', () => {
     expect(await look(path.join(folder, only))).toEqual(contents(file));
   });
 
+  it('are as locked as the study is', async () => {
+    const { at, file } = await withBackups();
+    valueOf(await file.setPassword('a long enough password'));
+    const [before] = listBackups(file, beside(at));
+    expect(fs.readFileSync(before.path).includes('Ottoline')).toBe(true);
+    const { made, removed } = rewriteBackups(file, beside(at));
+    expect(removed).toHaveLength(2);
+    const bytes = fs.readFileSync(made?.path ?? '');
+    expect(bytes.equals(fs.readFileSync(at))).toBe(true);
+    expect(bytes.includes('Ottoline')).toBe(false);
+    expect(valueOf(makeBackup(file, beside(at)))).toBeNull();
+  });
+
   it('go also where the study has been renamed, or a backup is damaged', async () => {
     const { at, file, folder } = await withBackups();
     file.close();
