@@ -212,11 +212,17 @@ export interface TranscriptView {
 }
 
 export type ReadingListKind =
-  'in order' | 'strongest first' | 'nearest the edge' | 'unexplained' | 'random draw' | 'one theme';
+  | 'in order'
+  | 'strongest first'
+  | 'nearest the edge'
+  | 'unexplained'
+  | 'random draw'
+  | 'one theme'
+  | 'earlier wording';
 
 export interface ReadingListRequest {
   readonly kind: ReadingListKind;
-  /** For 'one theme' and, where set, to narrow the others. */
+  /** For 'one theme' and 'earlier wording' and, where set, to narrow the others. */
   readonly theme: string | null;
   /** For 'in order': one transcript, or null for all. */
   readonly transcript: string | null;
@@ -239,6 +245,10 @@ export interface ThemeRowView {
   readonly id: string;
   /** Null for a candidate. */
   readonly name: string | null;
+  /** Its short mark in the codebook; empty where there is none. */
+  readonly code: string;
+  /** The heading that it stands under. */
+  readonly heading: string | null;
   /** What it is called on screen. */
   readonly label: string;
   readonly origin: 'fitted' | 'asked for' | 'by hand';
@@ -258,10 +268,52 @@ export interface ThemeRowView {
 export interface ShapeView {
   /** In codebook order; what is set aside comes last. */
   readonly themes: readonly ThemeRowView[];
+  readonly headings: readonly { readonly id: string; readonly name: string }[];
   readonly people: number;
   readonly fit: FitView | null;
-  readonly fits: readonly { readonly id: string; readonly label: string; readonly at: string }[];
+  /** Oldest first. */
+  readonly fits: readonly FitRow[];
   readonly before: string | null;
+}
+
+/** A fit that is kept. */
+export interface FitRow {
+  readonly id: string;
+  /** Its name, else what it is. */
+  readonly label: string;
+  readonly name: string | null;
+  readonly at: string;
+  readonly kind: 'from scratch' | 're-fit';
+  readonly themes: number;
+  readonly passages: number;
+}
+
+/** Two fits side by side. */
+export interface FitsCompared {
+  readonly first: FitRow;
+  readonly second: FitRow;
+  readonly pairs: readonly {
+    readonly first: FitThemeView;
+    readonly second: FitThemeView;
+    /** Cosine of the two word distributions, 0 to 1. */
+    readonly cosine: number;
+    /** Passages that the one leads, the other leads, and both. */
+    readonly led: { readonly first: number; readonly second: number; readonly both: number };
+  }[];
+  readonly onlyFirst: readonly FitThemeView[];
+  readonly onlySecond: readonly FitThemeView[];
+  /** Passages in both fits, and the share of them whose leading themes are partners. */
+  readonly compared: number;
+  readonly agreement: number;
+  /** The same corrected for chance (Hubert & Arabie 1985). */
+  readonly adjustedRand: number;
+  readonly words: { readonly both: number; readonly either: number };
+}
+
+/** A theme as one fit has it. */
+export interface FitThemeView {
+  readonly label: string;
+  readonly words: readonly string[];
 }
 
 export interface FitView {
@@ -286,6 +338,10 @@ export interface Strata {
     readonly transcript: string;
     readonly name: string;
     readonly participant: string;
+    /** Of whoever says most. */
+    readonly attributes: Readonly<Record<string, string>>;
+    /** Its place in the order in which transcripts came in, from 0. */
+    readonly gathered: number;
     readonly from: number;
     readonly passages: number;
   }[];
@@ -299,6 +355,8 @@ export interface Strata {
   readonly places: Int32Array;
   /** Proportions by rows, passages x K; zeros where nothing was counted. */
   readonly shares: Float32Array;
+  /** Each theme's share of a transcript's counted words, bands x K. */
+  readonly bandShares: Float32Array;
   /** Confirmed codings and codings by hand: pairs (passage row, index in `themes`, or -1). */
   readonly ticks: Int32Array;
 }
@@ -307,23 +365,49 @@ export interface ThemeWordView {
   readonly form: string;
   readonly surface: string;
   readonly probability: number;
+  /** Blei & Lafferty 2009, nats: high where the word sets the theme apart from the others. */
+  readonly termScore: number;
   /** Other ways it is written, where it joins several. */
   readonly joins: readonly string[];
   readonly seeded: boolean;
 }
 
+/** A codebook entry without its name. */
+export interface DefinitionView {
+  readonly code: string;
+  readonly brief: string;
+  readonly full: string;
+  readonly whenToUse: string;
+  readonly whenNotToUse: string;
+  readonly examples: string;
+}
+
+/** One wording of a codebook entry. */
+export interface WordingView {
+  readonly version: number;
+  /** Empty for the first, with which a theme begins. */
+  readonly at: string;
+  readonly reader: string;
+  readonly definition: DefinitionView;
+  /** Codings that were made, or looked at again, under it. */
+  readonly codings: number;
+}
+
 export interface ThemeView {
   readonly row: ThemeRowView;
-  readonly definition: {
-    readonly brief: string;
-    readonly full: string;
-    readonly whenToUse: string;
-    readonly whenNotToUse: string;
-    readonly examples: string;
-  };
+  readonly definition: DefinitionView;
   readonly version: number;
+  /** Every wording that stands, oldest first. */
+  readonly wordings: readonly WordingView[];
+  /** Codings under a wording that told otherwise when to use the theme. */
+  readonly earlierCodings: number;
+  /** By probability. */
   readonly words: readonly ThemeWordView[];
+  /** The same theme's first words by term score. */
+  readonly tellingWords: readonly ThemeWordView[];
   readonly seeds: readonly string[];
+  /** What may go wrong with the seeds, a sentence each. */
+  readonly seedCautions: readonly string[];
   readonly shutOut: readonly string[];
   /** People whose passages it leads, and how much of it comes from one of them or one question. */
   readonly people: number;
@@ -331,18 +415,62 @@ export interface ThemeView {
   readonly mostFromOnePerson: { readonly name: string; readonly share: number } | null;
   readonly mostAfterOneQuestion: { readonly question: string; readonly share: number } | null;
   /** Strongest passages, one a participant before a second from anyone. */
-  readonly passages: readonly (PassagePlace & {
-    readonly transcriptName: string;
-    readonly participant: string;
-    readonly time: number | null;
-    readonly text: string;
-    readonly carriedBy: readonly Span[];
-    readonly strength: number;
-    readonly countedWords: number;
-    readonly standing: Standing | 'suggested' | 'none';
-    readonly coding: string | null;
-  })[];
+  readonly passages: readonly ThemePassageView[];
   readonly memos: readonly MemoView[];
+}
+
+export interface ThemePassageView extends PassagePlace {
+  readonly transcriptName: string;
+  readonly participant: string;
+  readonly time: number | null;
+  readonly text: string;
+  readonly carriedBy: readonly Span[];
+  readonly strength: number;
+  readonly countedWords: number;
+  readonly standing: Standing | 'suggested' | 'none';
+  readonly coding: string | null;
+  /** The wording that the coding was made under; null without a coding. */
+  readonly version: number | null;
+}
+
+export type ThemePassageList = 'strongest' | 'nearest the edge' | 'rejected' | 'earlier wording';
+
+/** For whom a theme is told, and after which question. */
+export interface ThemeSpread {
+  readonly attributes: readonly {
+    readonly name: string;
+    readonly values: readonly {
+      /** Null for people without a value. */
+      readonly value: string | null;
+      readonly people: number;
+      /** People with a coding that a person made or confirmed. */
+      readonly coded: number;
+      /** People with a passage that the theme leads in the fit on screen. */
+      readonly led: number;
+    }[];
+  }[];
+  /** Most of the theme's expected words first; without those said before any question. */
+  readonly questions: readonly {
+    readonly question: string;
+    /** Of the theme's expected counted words, 0 to 1. */
+    readonly share: number;
+    readonly people: number;
+  }[];
+}
+
+/** What a merge would bring together. */
+export interface MergePreview {
+  readonly label: string;
+  readonly joins: readonly string[];
+  /** Of modelled words; null where none of them is modelled. */
+  readonly share: number | null;
+  readonly people: number;
+  readonly codings: number;
+  /** Passages that are coded with two or more of them, and will carry each coding still. */
+  readonly codedTwice: number;
+  readonly suggestions: number;
+  /** First words of them together, before the re-fit. */
+  readonly words: readonly string[];
 }
 
 /** Where a word is said, and by which themes it is used. */
@@ -522,15 +650,34 @@ export interface Api {
   fit: { takes: FitRequest; gives: { overview: Overview; moved: MovedView | null } };
   moved: { takes: null; gives: MovedView | null };
   chooseFit: { takes: { fit: string }; gives: Overview };
+  /** An empty name takes it away. */
+  nameFit: { takes: { fit: string; name: string }; gives: Overview };
+  compareFits: { takes: { first: string; second: string }; gives: FitsCompared };
 
   shapeView: { takes: null; gives: ShapeView };
   strata: { takes: null; gives: Strata };
+  /** The strata as a drawing (SVG), with bands in the order given. */
+  strataFigure: {
+    takes: { theme: string | null; transcripts: readonly string[] };
+    gives: NamedFile;
+  };
   themeView: { takes: { theme: string }; gives: ThemeView };
+  themePassages: {
+    takes: { theme: string; list: ThemePassageList };
+    gives: readonly ThemePassageView[];
+  };
+  themeSpread: { takes: { theme: string }; gives: ThemeSpread };
   wordView: { takes: { form: string }; gives: WordView };
+  /** What may go wrong with seed words, a sentence each; for a new theme `theme` is null. */
+  seedCheck: {
+    takes: { theme: string | null; words: readonly string[] };
+    gives: readonly string[];
+  };
   nameTheme: { takes: { theme: string; name: string }; gives: Overview };
   defineTheme: {
     takes: {
       theme: string;
+      code: string;
       brief: string;
       full: string;
       whenToUse: string;
@@ -545,8 +692,15 @@ export interface Api {
   };
   pinTheme: { takes: { theme: string; pinned: boolean }; gives: Overview };
   setThemeAside: { takes: { theme: string; aside: boolean }; gives: Overview };
+  mergePreview: { takes: { into: string; from: readonly string[] }; gives: MergePreview };
   mergeThemes: { takes: { into: string; from: readonly string[] }; gives: Overview };
   orderThemes: { takes: { themes: readonly string[] }; gives: Overview };
+  /** A heading over themes, and those that come to stand under it. */
+  addHeading: { takes: { name: string; themes: readonly string[] }; gives: Overview };
+  renameHeading: { takes: { heading: string; name: string }; gives: Overview };
+  /** What stood under it stands under none. */
+  removeHeading: { takes: { heading: string }; gives: Overview };
+  putUnder: { takes: { theme: string; heading: string | null }; gives: Overview };
   seedWord: { takes: { theme: string; word: string; seeded: boolean }; gives: Overview };
   shutOutWord: { takes: { theme: string; word: string; shutOut: boolean }; gives: Overview };
 
@@ -556,6 +710,8 @@ export interface Api {
   confirm: { takes: CodeRequest; gives: Overview };
   reject: { takes: CodeRequest; gives: Overview };
   codeByHand: { takes: CodeRequest; gives: Overview };
+  /** Says that a coding of an earlier wording stands under the wording of now. */
+  keepCoding: { takes: { transcript: string; coding: string }; gives: Overview };
   removeCoding: { takes: { transcript: string; coding: string }; gives: Overview };
   markNone: { takes: UnderView & { place: PassagePlace }; gives: Overview };
   clearNone: { takes: { transcript: string; none: string }; gives: Overview };
@@ -619,17 +775,28 @@ export const methods = [
   'fit',
   'moved',
   'chooseFit',
+  'nameFit',
+  'compareFits',
   'shapeView',
   'strata',
+  'strataFigure',
   'themeView',
+  'themePassages',
+  'themeSpread',
   'wordView',
+  'seedCheck',
   'nameTheme',
   'defineTheme',
   'addTheme',
   'pinTheme',
   'setThemeAside',
+  'mergePreview',
   'mergeThemes',
   'orderThemes',
+  'addHeading',
+  'renameHeading',
+  'removeHeading',
+  'putUnder',
   'seedWord',
   'shutOutWord',
   'readingList',
@@ -637,6 +804,7 @@ export const methods = [
   'confirm',
   'reject',
   'codeByHand',
+  'keepCoding',
   'removeCoding',
   'markNone',
   'clearNone',

@@ -1,4 +1,5 @@
 export { askedOf } from './asked.ts';
+export { compareFits, type FitComparison, type FitPair } from './compare-fits.ts';
 export { decisions, type Decided } from './decided.ts';
 export type { FitJob, PreviousFit, RememberedTheme } from './fit-job.ts';
 export {
@@ -19,6 +20,7 @@ export {
   type MovedPassage,
   type MovedWords,
 } from './moved.ts';
+export { seedConcern, seedLimits, type SeedConcern, type SeedLimits } from './seed-concerns.ts';
 export {
   defaultSettings,
   recordedSettings,
@@ -38,4 +40,5 @@ export {
   storedJob,
 } from './stored-job.ts';
 export { passagesLed, suggestions, type Suggestion, type SuggestionLimits } from './suggestions.ts';
+export { termScores } from './term-scores.ts';
 export { candidateWords, topWords, type ThemeWord } from './top-words.ts';

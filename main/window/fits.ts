@@ -1,5 +1,21 @@
-import { settingFault, whatMoved, type Moved } from '../../engine/themes/index.ts';
-import type { Api, FitRequest, MovedView, Refused } from '../api.ts';
+import { resolveTheme } from '../../engine/study/index.ts';
+import {
+  compareFits,
+  settingFault,
+  topWords,
+  whatMoved,
+  type Fitted,
+  type Moved,
+} from '../../engine/themes/index.ts';
+import type {
+  Api,
+  FitRequest,
+  FitRow,
+  FitsCompared,
+  FitThemeView,
+  MovedView,
+  Refused,
+} from '../api.ts';
 import { fitBefore } from '../commands/moved.ts';
 import { sentenceForSetting } from '../sentences/sentences.ts';
 import { give, isRefused, refuse } from './answers.ts';
@@ -8,8 +24,11 @@ import { Kept } from './kept.ts';
 import type { OpenStudy } from './open-study.ts';
 import type { Room } from './room.ts';
 import type { CallContext, Handlers } from './session-types.ts';
+import { fitRows } from './shape-view.ts';
 
-export function fitHandlers(room: Room): Pick<Handlers, 'fit' | 'moved' | 'chooseFit'> {
+export function fitHandlers(
+  room: Room,
+): Pick<Handlers, 'fit' | 'moved' | 'chooseFit' | 'nameFit' | 'compareFits'> {
   return {
     fit: room.look(async (open, request: FitRequest, context) => {
       const fitted = await fitStudy(open, request, context);
@@ -23,6 +42,22 @@ export function fitHandlers(room: Room): Pick<Handlers, 'fit' | 'moved' | 'choos
     chooseFit: room.decide((open, { fit: to }: Api['chooseFit']['takes']) => {
       const from = open.study.fit;
       return from === to ? null : open.decide([{ kind: 'fitChosen', from, to }]);
+    }),
+
+    nameFit: room.decide((open, { fit: id, name }: Api['nameFit']['takes']) => {
+      const known = open.study.fits.get(id);
+      if (known === undefined) return unknownFit(open, id);
+      const to = name.trim() === '' ? null : name.trim();
+      return known.name === to
+        ? null
+        : open.decide([{ kind: 'fitRenamed', fit: id, from: known.name, to }]);
+    }),
+
+    compareFits: room.look((open, { first, second }: Api['compareFits']['takes']) => {
+      const unknown = [first, second].find((id) => !open.study.fits.has(id));
+      return unknown === undefined
+        ? give(comparedView(open, first, second))
+        : unknownFit(open, unknown);
     }),
   };
 }
@@ -87,5 +122,37 @@ function inWords({ study, now, desk }: OpenStudy, moved: Moved, ofThemes: number
     themes: moved.themes.map(({ theme, gained, lost }) => ({ ...named(theme), gained, lost })),
     appeared: moved.appeared.map((id) => now.label(id)),
     gone: moved.gone.map((id) => now.label(id)),
+  };
+}
+
+function unknownFit(open: OpenStudy, id: string): Refused {
+  return open.refusal({ ok: false, code: 'unknown fit', subject: id });
+}
+
+const wordsCompared = 8;
+
+function comparedView(open: OpenStudy, first: string, second: string): FitsCompared {
+  const { desk, study } = open;
+  const [one, two] = [desk.fitted(first), desk.fitted(second)];
+  if (one === null || two === null) throw new Error('comparedView: a fit cannot be read');
+  const rows = new Map(fitRows(open).map((row) => [row.id, row]));
+  const view = (fitted: Fitted, row: number): FitThemeView => {
+    const theme = resolveTheme(study, fitted.fit.themes[row]);
+    const words = topWords(fitted, row, wordsCompared).map(({ surface }) => surface);
+    return { label: theme?.name ?? `candidate: ${words.slice(0, 3).join(', ')} …`, words };
+  };
+  const { pairs, onlyFirst, onlySecond, ...rest } = compareFits(one, two);
+  return {
+    first: rows.get(first) as FitRow,
+    second: rows.get(second) as FitRow,
+    pairs: pairs.map(({ first: a, second: b, cosine, led }) => ({
+      first: view(one, a),
+      second: view(two, b),
+      cosine,
+      led,
+    })),
+    onlyFirst: onlyFirst.map((row) => view(one, row)),
+    onlySecond: onlySecond.map((row) => view(two, row)),
+    ...rest,
   };
 }

@@ -13,6 +13,7 @@ import type { OpenStudy } from './open-study.ts';
 import { oneEachFirst } from './one-each-first.ts';
 import type { Placed } from './passages-now.ts';
 import { strengthsOf } from './themes-now.ts';
+import { earlierCodings } from './wordings.ts';
 
 /** A passage that may come on a list. */
 interface Candidate {
@@ -32,7 +33,7 @@ export function readingList(
   if (theme !== null && !study.themes.has(theme)) {
     return open.refusal({ ok: false, code: 'unknown theme', subject: theme });
   }
-  if (kind === 'one theme' && theme === null) {
+  if ((kind === 'one theme' || kind === 'earlier wording') && theme === null) {
     return open.refusal({ ok: false, code: 'unknown theme', subject: '' });
   }
   if (transcript !== null && !study.transcripts.has(transcript)) {
@@ -41,7 +42,9 @@ export function readingList(
   if (needsFit.has(kind) && now.fitted === null) return refuse('no fit');
 
   const name = nameOf(open, request);
-  const isWanted = (one: Candidate): boolean => !unreadOnly || isOpen(one, name);
+  // Every passage of it was read, under the earlier wording.
+  const isWanted = (one: Candidate): boolean =>
+    kind === 'earlier wording' || !unreadOnly || isOpen(one, name);
   const shown = inOrder(open, request, candidates(open, request), isWanted);
   return give({
     name,
@@ -63,10 +66,14 @@ function nameOf(
   const list = kind === 'random draw' ? `random draw of ${count}, seed ${seed}` : kind;
   const where = transcript === null ? undefined : study.transcripts.get(transcript)?.name;
   return [
-    kind === 'one theme' ? `one theme: ${now.label(theme ?? '')}` : list,
-    ...(theme !== null && kind !== 'one theme' ? [`with ${now.label(theme)}`] : []),
+    kind === 'one theme' || kind === 'earlier wording'
+      ? `${kind}: ${now.label(theme ?? '')}`
+      : list,
+    ...(theme !== null && kind !== 'one theme' && kind !== 'earlier wording'
+      ? [`with ${now.label(theme)}`]
+      : []),
     ...(where === undefined ? [] : [`in ${where}`]),
-    ...(unreadOnly ? ['unread'] : []),
+    ...(unreadOnly && kind !== 'earlier wording' ? ['unread'] : []),
   ].join(', ');
 }
 
@@ -82,11 +89,16 @@ function isOpen({ decided }: Candidate, name: string): boolean {
 }
 
 function candidates(
-  { now }: OpenStudy,
+  open: OpenStudy,
   { kind, theme, transcript }: ReadingListRequest,
 ): Candidate[][] {
+  const { now, study } = open;
   const { themes, settings } = now;
   const wanted = theme === null ? null : (now.themeOf(theme) ?? theme);
+  const current = wanted === null ? undefined : study.themes.get(wanted);
+  const earlier = new Set(
+    kind === 'earlier wording' && current !== undefined ? earlierCodings(open, current) : [],
+  );
   const column = wanted === null ? undefined : themes.columnOf.get(wanted);
   const { strength: threshold, countedWords } = settings.suggestions;
   return now.transcripts
@@ -105,7 +117,9 @@ function candidates(
               : column === undefined
                 ? null
                 : strengths[column];
-        if (wanted !== null && kind !== 'nearest the edge') {
+        if (kind === 'earlier wording') {
+          if (!decided.codings.some((coding) => earlier.has(coding))) return [];
+        } else if (wanted !== null && kind !== 'nearest the edge') {
           const coded = decided.codings.some((coding) => now.themeOf(coding.theme) === wanted);
           if (!coded && (strength === null || strength < threshold)) return [];
         }
@@ -123,6 +137,7 @@ function inOrder(
   const all = transcripts.flat().filter(isWanted);
   switch (kind) {
     case 'in order':
+    case 'earlier wording':
       return all;
     case 'strongest first':
       return by(counted(all), ({ strength }) => -strength);

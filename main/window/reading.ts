@@ -29,6 +29,7 @@ export function readingHandlers(
   | 'confirm'
   | 'reject'
   | 'codeByHand'
+  | 'keepCoding'
   | 'removeCoding'
   | 'markNone'
   | 'clearNone'
@@ -47,6 +48,13 @@ export function readingHandlers(
     confirm: room.decide(confirm),
     reject: room.decide(reject),
     codeByHand: room.decide(codeByHand),
+
+    keepCoding: room.decide((open, { transcript, coding: id }: Api['keepCoding']['takes']) => {
+      const coding = open.study.codings.get(transcript)?.get(id);
+      return coding === undefined
+        ? open.refusal({ ok: false, code: 'unknown coding', subject: id })
+        : open.decide(keptUnder(open, coding));
+    }),
 
     removeCoding: room.decide((open, { transcript, coding: id }: Api['removeCoding']['takes']) => {
       const coding = open.study.codings.get(transcript)?.get(id);
@@ -121,7 +129,7 @@ function confirm(open: OpenStudy, request: CodeRequest): Refused | null {
   const standing = mine.find(
     (coding) => coding.standing !== 'rejected' && sameSpan(coding.span, span),
   );
-  if (standing !== undefined) return withMemo(open, standing, request.memo);
+  if (standing !== undefined) return again(open, standing, request.memo);
   const { columns } = open.now.themes;
   const offered = strongestIn(open, passage).some(({ column }) => columns[column] === theme.id);
   return open.decide([
@@ -139,7 +147,7 @@ function reject(open: OpenStudy, request: CodeRequest): Refused | null {
   if (isRefused(question)) return question;
   const { passage, span, theme, mine } = question;
   const rejected = mine.find((coding) => coding.standing === 'rejected');
-  if (rejected !== undefined) return withMemo(open, rejected, request.memo);
+  if (rejected !== undefined) return again(open, rejected, request.memo);
   const whole = mine.filter((coding) => sameSpan(coding.span, span));
   if (whole.length < mine.length) return refuse('part coded', open.now.label(theme.id));
   return open.decide([
@@ -266,6 +274,19 @@ function made(
 function underOf(open: OpenStudy, { drawnBy, seenSuggestion }: UnderView): DecidedUnder {
   const { study, reader, desk } = open;
   return { reader: reader.id, at: desk.context.now(), drawnBy, seenSuggestion, fit: study.fit };
+}
+
+/** A coding of an earlier wording stands under the wording of now. */
+function keptUnder({ study }: OpenStudy, coding: Coding): Edit[] {
+  const { id, transcript, theme, codebookVersion: from } = coding;
+  const to = study.themes.get(theme)?.version ?? from;
+  return from === to ? [] : [{ kind: 'codingLookedAtAgain', transcript, coding: id, from, to }];
+}
+
+/** Decided once more as it stands: it is kept under the wording of now. */
+function again(open: OpenStudy, coding: Coding, memo: string): Refused | null {
+  const kept = keptUnder(open, coding);
+  return kept.length === 0 ? withMemo(open, coding, memo) : open.decide(kept);
 }
 
 /** A coding keeps its memo where none is given. */

@@ -3,16 +3,22 @@ import { give } from './answers.ts';
 import { find } from './find.ts';
 import { fitHandlers } from './fits.ts';
 import { gatheringHandlers } from './gathering.ts';
+import { headingHandlers } from './headings.ts';
 import { redoInWords, undoInWords } from './history.ts';
+import { mergePreview } from './merge-preview.ts';
 import { closeStudy, openingHandlers, openStudy } from './opening.ts';
 import type { OpenStudy } from './open-study.ts';
 import { readingHandlers } from './reading.ts';
 import { reportHandlers } from './report.ts';
 import { Room } from './room.ts';
 import type { Handlers, Session, Surroundings } from './session-types.ts';
+import { seedCheck } from './seed-check.ts';
 import { shapeView } from './shape-view.ts';
+import { strataFigure } from './strata-figure.ts';
 import { strata } from './strata.ts';
 import { themeDecisions } from './theme-decisions.ts';
+import { themePassages } from './theme-passages.ts';
+import { themeSpread } from './theme-spread.ts';
 import { themeView } from './theme-view.ts';
 import { wordView } from './word-view.ts';
 
@@ -24,13 +30,19 @@ export function createSession(surroundings: Surroundings): Session {
     ...gatheringHandlers(room),
     ...fitHandlers(room),
     ...themeDecisions(room),
+    ...headingHandlers(room),
     ...readingHandlers(room),
     ...reportHandlers(room),
     undo: room.look((open) => takeBack(room, open, 'undo')),
     redo: room.look((open) => takeBack(room, open, 'redo')),
     shapeView: room.look<null, ReturnType<typeof shapeView>>((open) => give(shapeView(open))),
     strata: room.look<null, Strata>((open) => give(strata(open))),
+    strataFigure: room.look(strataFigure),
     themeView: room.look(themeView),
+    themePassages: room.look(themePassages),
+    themeSpread: room.look(themeSpread),
+    mergePreview: room.look(mergePreview),
+    seedCheck: room.look(seedCheck),
     wordView: room.look(wordView),
     find: room.look(async (open, { text }: { text: string }) => give(await find(open, text))),
   };

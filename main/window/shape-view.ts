@@ -1,5 +1,5 @@
 import type { Fit } from '../../engine/study/index.ts';
-import type { FitProgress, FitView, ShapeView } from '../api.ts';
+import type { FitProgress, FitRow, FitView, ShapeView } from '../api.ts';
 import { fitBefore } from '../commands/moved.ts';
 import type { OpenStudy } from './open-study.ts';
 import { themeRows } from './theme-rows.ts';
@@ -13,9 +13,10 @@ export function shapeView(open: OpenStudy): ShapeView {
   const before = fitBefore(study);
   return {
     themes: themeRows(open),
+    headings: [...study.headings.values()],
     people: people.size,
     fit: now.fitted === null ? null : fitView(now.fitted.fit),
-    fits: fitsInWords(open),
+    fits: fitRows(open),
     before: before !== null && study.fits.has(before) ? before : null,
   };
 }
@@ -40,7 +41,8 @@ function fitView(fit: Fit): FitView {
   };
 }
 
-function fitsInWords({ study, now }: OpenStudy): ShapeView['fits'] {
+/** Every fit that is kept, oldest first. */
+export function fitRows({ study, now }: OpenStudy): FitRow[] {
   const times = new Map<string, string>();
   for (const { edit, at } of now.trail.values()) {
     // A fit that was taken back and made again keeps its first time.
@@ -49,7 +51,11 @@ function fitsInWords({ study, now }: OpenStudy): ShapeView['fits'] {
   return [...study.fits.values()].map((fit, index) => ({
     id: fit.id,
     label: fit.name ?? `${index + 1}: ${kindOf(fit)}, ${fit.themes.length} themes`,
+    name: fit.name,
     at: times.get(fit.id) ?? '',
+    kind: kindOf(fit),
+    themes: fit.themes.length,
+    passages: fit.passages,
   }));
 }
 

@@ -6,10 +6,17 @@ import type { ThemesNow } from './themes-now.ts';
 export interface Spread {
   /** People who have a passage that it leads. */
   readonly people: number;
+  readonly ledPeople: ReadonlySet<string>;
   /** The participant with most of its expected words, and their share of them. */
   readonly person: { readonly participant: string; readonly share: number } | null;
   /** The question, in its plainest form, after which most of its expected words are said. */
   readonly question: { readonly text: string; readonly share: number } | null;
+  /** The same for every question, largest share first, and to how many people it was put. */
+  readonly questions: readonly {
+    readonly text: string;
+    readonly share: number;
+    readonly people: number;
+  }[];
 }
 
 interface Part {
@@ -35,11 +42,15 @@ function measure(desk: Desk, { columns, columnOfRow }: ThemesNow, fitted: Fitted
   const totals = new Float64Array(columns.length);
   const byPerson = columns.map(() => new Map<string, Part>());
   const byQuestion = columns.map(() => new Map<string, Part>());
+  const asked = new Map<string, Set<string>>();
   passages.forEach(({ countedWords, participant }, d) => {
     if (countedWords === 0) return;
     const lead = leadingRow(fitted, d);
     if (lead >= 0 && columnOfRow[lead] >= 0) led[columnOfRow[lead]].add(participant);
     const question = questions[d];
+    if (question !== null) {
+      asked.set(question.key, (asked.get(question.key) ?? new Set()).add(participant));
+    }
     for (let row = 0; row < columnOfRow.length; row++) {
       const column = columnOfRow[row];
       if (column < 0) continue;
@@ -54,8 +65,16 @@ function measure(desk: Desk, { columns, columnOfRow }: ThemesNow, fitted: Fitted
     const question = largest(byQuestion[column], totals[column]);
     return {
       people: led[column].size,
+      ledPeople: led[column],
       person: person === null ? null : { participant: person.label, share: person.share },
       question: question === null ? null : { text: question.label, share: question.share },
+      questions: [...byQuestion[column]]
+        .map(([key, { label, words }]) => ({
+          text: label,
+          share: totals[column] > 0 ? words / totals[column] : 0,
+          people: asked.get(key)?.size ?? 0,
+        }))
+        .sort((a, b) => b.share - a.share),
     };
   });
 }

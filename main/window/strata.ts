@@ -15,6 +15,8 @@ export function strata({ study, now }: OpenStudy): Strata {
   const places = new Int32Array(2 * count);
   const shares = new Float32Array(count * layers);
   const ticks: number[] = [];
+  const bandShares = new Float32Array(now.transcripts.length * layers);
+  const gathered = new Map([...study.transcripts.keys()].map((id, place) => [id, place]));
 
   let row = 0;
   for (const transcript of now.transcripts) {
@@ -25,6 +27,8 @@ export function strata({ study, now }: OpenStudy): Strata {
     );
     const questions = turns.filter(({ speaker }) => asking.has(speaker));
     const from = row;
+    const expected = new Float64Array(layers);
+    let counted = 0;
     let next = 0;
     for (const passage of placed) {
       words[row] = passage.words;
@@ -33,7 +37,11 @@ export function strata({ study, now }: OpenStudy): Strata {
       for (; next < questions.length && questions[next].start < passage.start; next++)
         gaps[row] = 1;
       const strengths = strengthsOf(themes, passage.row);
-      if (strengths !== null) shares.set(strengths, row * layers);
+      if (strengths !== null) {
+        shares.set(strengths, row * layers);
+        counted += passage.countedWords;
+        for (let k = 0; k < layers; k++) expected[k] += passage.countedWords * strengths[k];
+      }
       row++;
     }
     for (const coding of study.codings.get(id)?.values() ?? []) {
@@ -41,10 +49,19 @@ export function strata({ study, now }: OpenStudy): Strata {
       const column = themes.columnOf.get(now.themeOf(coding.theme) ?? '') ?? -1;
       for (const [index] of passagesOfSpan(placed, coding.span)) ticks.push(from + index, column);
     }
+    if (counted > 0) {
+      bandShares.set(
+        expected.map((words) => words / counted),
+        bands.length * layers,
+      );
+    }
+    const speaker = mainSpeakers(placed);
     bands.push({
       transcript: id,
       name,
-      participant: mainSpeaker(placed, (participant) => now.participantName(participant)),
+      participant: speaker.map((one) => now.participantName(one)).join(', '),
+      attributes: study.participants.get(speaker[0] ?? '')?.attributes ?? {},
+      gathered: gathered.get(id) ?? 0,
       from,
       passages: placed.length,
     });
@@ -56,21 +73,18 @@ export function strata({ study, now }: OpenStudy): Strata {
     gaps,
     places,
     shares,
+    bandShares,
     ticks: Int32Array.from(ticks),
   };
 }
 
-/** Whoever says most; with all the others where several were interviewed together. */
-function mainSpeaker(
+/** Whoever says most first; all of them where several were interviewed together. */
+function mainSpeakers(
   placed: readonly { readonly participant: string; readonly words: number }[],
-  nameOf: (participant: string) => string,
-): string {
+): string[] {
   const words = new Map<string, number>();
   for (const passage of placed) {
     words.set(passage.participant, (words.get(passage.participant) ?? 0) + passage.words);
   }
-  return [...words]
-    .sort(([, a], [, b]) => b - a)
-    .map(([participant]) => nameOf(participant))
-    .join(', ');
+  return [...words].sort(([, a], [, b]) => b - a).map(([participant]) => participant);
 }

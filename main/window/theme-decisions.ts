@@ -38,9 +38,17 @@ export function themeDecisions(
     defineTheme: room.decide((open, { theme, ...given }: Api['defineTheme']['takes']) =>
       withTheme(open, theme, ({ version, definition }) => {
         const { brief, full, whenToUse, whenNotToUse, examples } = given;
-        const to: Definition = { brief, full, whenToUse, whenNotToUse, examples };
-        const same = (Object.keys(emptyDefinition) as (keyof Definition)[]).every(
-          (part) => definition[part] === to[part],
+        const code = given.code.trim();
+        const to: Definition = {
+          ...(code === '' ? {} : { code }),
+          brief,
+          full,
+          whenToUse,
+          whenNotToUse,
+          examples,
+        };
+        const same = (['code', ...Object.keys(emptyDefinition)] as (keyof Definition)[]).every(
+          (part) => (definition[part] ?? '') === (to[part] ?? ''),
         );
         if (same) return [];
         return [

@@ -22,7 +22,7 @@ interface Tally {
 }
 
 function themeRow(
-  { now }: OpenStudy,
+  { study, now }: OpenStudy,
   theme: Theme,
   coded: ReadonlyMap<string, Tally>,
   offered: readonly Tally[],
@@ -32,6 +32,8 @@ function themeRow(
   return {
     id: theme.id,
     name: theme.name,
+    code: theme.definition.code ?? '',
+    heading: study.under.get(theme.id) ?? null,
     label: now.label(theme.id),
     origin: theme.origin,
     pinned: theme.pinned,
@@ -63,7 +65,7 @@ function surfacesOf(themes: ThemesNow): readonly (readonly string[])[] {
 }
 
 /** Confirmed codings and codings by hand of each theme, merges followed, and whose words they are. */
-function codedByTheme({ study, now }: OpenStudy): Map<string, Tally> {
+export function codedByTheme({ study, now }: OpenStudy): Map<string, Tally> {
   const tallies = new Map<string, Tally>();
   for (const [transcript, codings] of study.codings) {
     const placed = now.passagesIn(transcript);

@@ -8,6 +8,7 @@ export const kinds = [
   'unexplained',
   'random draw',
   'one theme',
+  'earlier wording',
 ] as const satisfies readonly ReadingListKind[];
 
 /** Where a reader stopped. Only numbers are kept, so that nothing of a study lies outside its file. */

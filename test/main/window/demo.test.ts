@@ -60,6 +60,7 @@ describe('the main job in a window, on the demo study', () => {
     await table.ask('nameTheme', { theme: first.id, name: 'Getting across' });
     await table.ask('defineTheme', {
       theme: first.id,
+      code: 'CROSS',
       brief: 'How people get to the mainland',
       full: '',
       whenToUse: '',

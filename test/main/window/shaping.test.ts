@@ -190,7 +190,7 @@ describe('decisions on themes that cannot be made', () => {
     await table.ask('pinTheme', { theme, pinned: true });
     await table.ask('seedWord', { theme, word: 'ferry', seeded: true });
     const { revision } = (await table.ask('overview', null))!;
-    const empty = { brief: '', full: '', whenToUse: '', whenNotToUse: '', examples: '' };
+    const empty = { code: '', brief: '', full: '', whenToUse: '', whenNotToUse: '', examples: '' };
     await table.ask('nameTheme', { theme, name: ' Boats ' });
     await table.ask('defineTheme', { theme, ...empty });
     await table.ask('pinTheme', { theme, pinned: true });

@@ -109,6 +109,7 @@ async function steps(table: Table): Promise<(() => Promise<Step>)[]> {
       'defineTheme',
       {
         theme: (await theme(0)).id,
+        code: 'c',
         brief: 'b',
         full: 'f',
         whenToUse: 'w',

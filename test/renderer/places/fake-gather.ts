@@ -187,6 +187,8 @@ export function fakeGather(options: FakeOptions = {}): FakeLink {
     id: `theme-${index}`,
     name: index % 3 === 2 ? null : themeName(index, long),
     label: index % 3 === 2 ? 'letter, form, post, stamp' : themeName(index, long),
+    code: '',
+    heading: null,
     origin: 'fitted',
     pinned: false,
     setAside: false,
@@ -342,7 +344,7 @@ export function fakeGather(options: FakeOptions = {}): FakeLink {
       return decided();
     },
     shapeView: () => ({
-      value: { themes, people: rows.length, fit: null, fits: [], before: null },
+      value: { themes, headings: [], people: rows.length, fit: null, fits: [], before: null },
     }),
     reportPreview: (takes) => ({ value: preview(takes) }),
     report: ({ format }) => ({

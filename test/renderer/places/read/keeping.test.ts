@@ -115,6 +115,8 @@ describe('themes to choose from', () => {
     id,
     name: label,
     label,
+    code: '',
+    heading: null,
     origin: 'fitted',
     pinned: false,
     setAside: false,
