@@ -11,8 +11,8 @@ export interface Terminal {
   readonly signal: AbortSignal;
 }
 
-/** 0 done, 1 could not be done, 2 the command was not understood. */
-export type ExitCode = 0 | 1 | 2;
+/** 0 done, 1 could not be done, 2 the command was not understood; `verify` says 3 for: cannot tell. */
+export type ExitCode = 0 | 1 | 2 | 3;
 
 /** One line that says how far a long step is; written over where the terminal can. */
 export class ProgressLine {

@@ -2,7 +2,8 @@
 export { bringForward, createStudyFile, isLocked, openStudyFile } from './open-study-file.ts';
 export type { OpenOptions, StudyFileOptions } from './open-study-file.ts';
 export type { Act, ReadOnlyBecause, StudyFile } from './study-file.ts';
-export type { StudyRecord } from './scan.ts';
+export type { Damage, StudyRecord } from './scan.ts';
+export type { Erasing, SealAct } from './seal.ts';
 export type { Kind } from './frame.ts';
 export { LONGEST_PASSWORD, passwordFault, SHORTEST_PASSWORD } from './password.ts';
 export type { DerivationWork } from './password.ts';

@@ -19,7 +19,8 @@ import { encodeHeader, type Header } from './header.ts';
 import { nameBeside } from './name-beside.ts';
 import type { OwnerNote } from './owner-note.ts';
 import type { DerivationWork } from './password.ts';
-import { scan, type Scan, type StudyRecord } from './scan.ts';
+import { scan, type Damage, type Scan, type StudyRecord } from './scan.ts';
+import { nextSeal, noSeal, readSeal, type Erasing, type SealAct, type SealBody } from './seal.ts';
 import { closeQuietly, readWhole, removeQuietly, sameFile } from './storage.ts';
 import type { FileState, Handle, Storage } from './storage.ts';
 import { place, putInPlace, writeBeside } from './write-beside.ts';
@@ -62,6 +63,12 @@ export interface OpenParts {
   readonly work: DerivationWork | undefined;
 }
 
+/** A record on its way to the file. */
+interface NewFrame {
+  readonly head: FrameHead;
+  readonly payload: Uint8Array;
+}
+
 /** Of a plain study too, so that it can be locked. */
 const MOST_BODY_BYTES = MOST_PAYLOAD_BYTES - LOCKED_EXTRA_BYTES;
 const TAIL_BYTES = 64 * 1024;
@@ -97,6 +104,8 @@ export class StudyFile {
   #tail: Uint8Array;
   #readOnlyBecause: ReadOnlyBecause | null;
   #compacting = false;
+  /** The newest seal; null until it was looked for. */
+  #seal: SealBody | null = null;
 
   constructor(parts: OpenParts) {
     this.path = parts.path;
@@ -153,16 +162,49 @@ export class StudyFile {
   }
 
   /**
-   * All edits in order, read as they are asked for; those whose content was removed are left out.
+   * All edits in order, read as they are asked for. One whose content was removed is what a seal put
+   * in its place, or left out.
    * Throws StudyFileFault where a record can't be read any more as it was on opening.
    */
   *edits(): Generator<{ readonly sequence: number; readonly json: unknown }> {
     const window = new FileWindow(this.#storage, this.#openHandle('edits'), this.#size);
     for (let index = 0; index < this.#records.length; index++) {
       const record = this.#records[index];
-      if (record === undefined || record.kind !== 'edit' || record.removed) continue;
-      yield { sequence: record.sequence, json: this.#parse(record, this.#body(record, window)) };
+      if (record?.kind !== 'edit') continue;
+      const { sequence, removed } = record;
+      if (!removed) yield { sequence, json: this.#parse(record, this.#body(record, window)) };
+      else if (Object.hasOwn(this.#sealed.instead, sequence)) {
+        yield { sequence, json: this.#sealed.instead[sequence] };
+      }
     }
+  }
+
+  /** What was erased from the file, in order. Throws as `edits` does. */
+  get erased(): readonly SealAct[] {
+    return this.#sealed.acts;
+  }
+
+  /** The chain's hash after each record, in order. Throws as `edits` does. */
+  *chain(): Generator<{ readonly sequence: number; readonly hash: string }> {
+    const window = new FileWindow(this.#storage, this.#openHandle('chain'), this.#size);
+    for (const record of this.#records) {
+      const { link } = this.#headAt(record, window.bytes(record.offset, HEAD_BYTES));
+      yield { sequence: record.sequence, hash: hex(link) };
+    }
+  }
+
+  /** Reads every byte again, as opening did; null where all is still as it was written. */
+  async check(onProgress?: (fraction: number) => void): Promise<Damage | null> {
+    const handle = this.#openHandle('check');
+    const { size } = this.#storage.stat(handle);
+    const window = new FileWindow(this.#storage, handle, size);
+    const found = await scan(window, this.#header, this.#cipher, onProgress);
+    if (found.damage !== null || hex(found.head) === this.head) return found.damage;
+    const { sequence, offset } = this.#records[found.records.length - 1] ?? {
+      sequence: 0,
+      offset: 0,
+    };
+    return { sequence, offset, reason: 'chain' };
   }
 
   /** One edit. Throws as `edits` does, and an Error where there is no such edit. */
@@ -316,8 +358,30 @@ export class StudyFile {
         throw new Error(`StudyFile.compact: unused holds ${sequence}, must be a record's number`);
       }
     }
-    const { keyRegion } = this.#header;
-    return this.#anew('compact', gone, async () => success({ cipher: this.#cipher, keyRegion }));
+    return this.#anew('compact', gone, () => this.#ownKey());
+  }
+
+  /**
+   * Erases for good: `acts` and a seal that says what went are added, and the file is written anew
+   * without the content of the records that go, all in one. Numbers and chain of what was there stay.
+   * The sequence numbers of the edits. Failures: as of `compact`, and 'too large'; where it fails the
+   * file is as it was.
+   */
+  async erase(acts: readonly Act[], erasing: Erasing): Promise<Result<readonly number[]>> {
+    const gone = new Set(erasing.gone);
+    for (const sequence of gone) {
+      if (this.#records[sequence - 1] === undefined) {
+        throw new Error(`StudyFile.erase: gone holds ${sequence}, must be a record's number`);
+      }
+    }
+    // All that the earlier seals hold is in the new one.
+    for (const { kind, sequence } of this.#records) if (kind === 'seal') gone.add(sequence);
+    const prepared = this.#prepare(acts, (sequence) => nextSeal(this.#sealed, sequence, erasing));
+    if (!prepared.ok) return prepared;
+    const { frames, edits } = prepared.value;
+    const written = await this.#anew('erase', gone, () => this.#ownKey(), frames);
+    this.#seal = null;
+    return written.ok ? success(edits) : written;
   }
 
   /**
@@ -342,6 +406,7 @@ export class StudyFile {
     asker: string,
     gone: ReadonlySet<number>,
     keyFor: () => Promise<Result<FileKey>>,
+    added: readonly NewFrame[] = [],
   ): Promise<Result<{ readonly before: number; readonly after: number }>> {
     const handle = this.#openHandle(asker);
     if (this.readOnly) return failure('read only', this.path);
@@ -351,7 +416,7 @@ export class StudyFile {
     this.#compacting = true;
     try {
       const key = await keyFor();
-      return key.ok ? await this.#compact(handle, gone, key.value) : key;
+      return key.ok ? await this.#compact(handle, gone, key.value, added) : key;
     } finally {
       this.#compacting = false;
     }
@@ -379,6 +444,7 @@ export class StudyFile {
     handle: Handle,
     gone: ReadonlySet<number>,
     key: FileKey,
+    added: readonly NewFrame[],
   ): Promise<Result<{ before: number; after: number }>> {
     const before = this.#size;
     const storage = this.#storage;
@@ -395,6 +461,7 @@ export class StudyFile {
       const fill = (target: FrameWriter): void => {
         target.add(start);
         this.#writeWithout(gone, handle, cipher, target);
+        for (const { head, payload } of added) target.frame(head, payload);
       };
       const written = writeBeside(storage, this.path, true, fill, mode);
       if (!written.ok) return written;
@@ -419,7 +486,8 @@ export class StudyFile {
       return giveUp(failureOf(error, this.path, 'cannot write'));
     }
     const whole = fresh.damage === null && fresh.end === identity.size;
-    if (!whole || !sameBytes(fresh.head, this.#link)) {
+    const link = added[added.length - 1]?.head.link ?? this.#link;
+    if (!whole || !sameBytes(fresh.head, link)) {
       return giveUp(failure('cannot write', this.path));
     }
     // The lock goes by the file's identity, so the new file needs its own before it can be found.
@@ -448,6 +516,7 @@ export class StudyFile {
     this.#cipher = cipher;
     this.#records = fresh.records;
     this.#size = fresh.end;
+    this.#link = link;
     if (closeFirst) {
       const notOpen = this.#reopen();
       if (notOpen !== null) return notOpen;
@@ -505,10 +574,24 @@ export class StudyFile {
     }
   }
 
+  async #ownKey(): Promise<Result<FileKey>> {
+    return success({ cipher: this.#cipher, keyRegion: this.#header.keyRegion });
+  }
+
+  get #sealed(): SealBody {
+    if (this.#seal !== null) return this.#seal;
+    const record = this.#records.findLast(({ kind, removed }) => kind === 'seal' && !removed);
+    const seal = record === undefined ? noSeal : readSeal(this.#parse(record, this.#body(record)));
+    if (seal === null) throw this.#rotten(record as StudyRecord, 'content');
+    this.#seal = seal;
+    return seal;
+  }
+
   #prepare(
     acts: readonly Act[],
-  ): Result<{ frames: { head: FrameHead; payload: Uint8Array }[]; edits: number[] }> {
-    const frames: { head: FrameHead; payload: Uint8Array }[] = [];
+    seal?: (sequence: number) => SealBody,
+  ): Result<{ frames: NewFrame[]; edits: number[] }> {
+    const frames: NewFrame[] = [];
     const edits: number[] = [];
     let link = this.#link;
     const add = (kind: Kind, body: Uint8Array): number => {
@@ -537,6 +620,11 @@ export class StudyFile {
       const body = Buffer.from(json, 'utf8');
       if (body.length > MOST_EDIT_BYTES) return failure('too large', this.path);
       edits.push(add('edit', body));
+    }
+    if (seal !== undefined) {
+      const body = Buffer.from(JSON.stringify(seal(this.nextSequence + frames.length)), 'utf8');
+      if (body.length > MOST_BODY_BYTES) return failure('too large', this.path);
+      add('seal', body);
     }
     return success({ frames, edits });
   }

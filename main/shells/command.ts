@@ -6,6 +6,7 @@ import { refit, refitUsage } from '../commands/refit.ts';
 import { steady, steadyUsage } from '../commands/steady.ts';
 import type { ExitCode, Terminal } from '../commands/terminal.ts';
 import { theme, themeUsage } from '../commands/theme.ts';
+import { verifyStudy, verifyUsage } from '../commands/verify.ts';
 
 type Command = (words: readonly string[], terminal: Terminal) => Promise<ExitCode>;
 
@@ -16,6 +17,7 @@ const commands: Record<string, Command> = {
   moved,
   steady,
   howmany: howMany,
+  verify: verifyStudy,
 };
 
 const help = `Understory: theme and code interview transcripts on this machine alone.
@@ -34,6 +36,9 @@ const help = `Understory: theme and code interview transcripts on this machine a
       shuffled words reach; writes NAME.steady.csv beside the study
   ${howManyUsage}
       compares numbers of themes and says which cannot be told apart; writes NAME.howmany.csv
+  ${verifyUsage}
+      checks every byte, folds the trail, makes every fit again from its stored words and compares;
+      exit code 0: all holds, 1: something differs or was tampered with, 3: could not be checked
 
 Run it as: npm run -s understory -- theme resources/demo --themes 12 --seed 1 --out demo-themes
 `;
