@@ -65,6 +65,8 @@ export interface Overview {
   /** Transcripts in which every passage was read before the first fit. */
   readonly transcriptsRead: number;
   readonly fitted: boolean;
+  /** The full answer that is being made behind the quick one on screen; null where none is. */
+  readonly refining: Refining | null;
   /** True where texts, people or settings changed since the fit on screen. */
   readonly stale: boolean;
   /** Decisions that the next fit will take up, in words ("2 words seeded"). */
@@ -73,6 +75,13 @@ export interface Overview {
   readonly undo: string | null;
   readonly redo: string | null;
   readonly reader: { readonly id: string; readonly name: string };
+}
+
+export interface Refining {
+  /** The quick answer, on screen until the full one takes its place. */
+  readonly fit: string;
+  /** How far it is, 0 to 1. */
+  readonly fraction: number;
 }
 
 export type Role = 'interviewer' | 'participant' | 'other';
@@ -319,6 +328,8 @@ export interface FitThemeView {
 export interface FitView {
   readonly id: string;
   readonly kind: 'from scratch' | 're-fit';
+  /** Whether the themes come from a quick answer or a full one; of a re-fit, the one it goes back to. */
+  readonly answer: 'quick' | 'full';
   readonly themes: number;
   readonly passages: number;
   readonly countedWords: number;
@@ -508,6 +519,110 @@ export interface FitRequest {
   readonly themes: number | null;
 }
 
+export type EvidenceRequest =
+  | { readonly what: 'steadiness'; readonly resamples: number }
+  | { readonly what: 'how many'; readonly from: number; readonly to: number };
+
+/** What was measured of the fit on screen; null where it was not. */
+export interface EvidenceView {
+  readonly steadiness: SteadinessView | null;
+  readonly howMany: HowManyView | null;
+}
+
+/** Floors are what the same study reaches with its words shuffled among the passages. */
+export interface SteadinessView {
+  readonly refits: number;
+  readonly refitsAtLeast: number;
+  readonly people: number;
+  /** People whom each re-fit leaves out. */
+  readonly leftOut: number;
+  /** Themes in the rows of the fit; one that others were merged into since is left out. */
+  readonly themes: readonly {
+    readonly id: string;
+    readonly label: string;
+    /** -1 to 1: mean cosine of what sets the theme apart to the same in the re-fits. */
+    readonly steadiness: number;
+    readonly aboveFloor: boolean;
+    readonly passages: number;
+    readonly stayed: number;
+    /** NPMI, -1 to 1. */
+    readonly coherence: number;
+    /** "33 of its 40 passages stayed in at least 40 of 50 re-fits." */
+    readonly sentence: string;
+  }[];
+  readonly floor: {
+    readonly steadiness: number;
+    readonly coherence: number;
+    /** A leading strength that shuffled words reach in one passage out of twenty. */
+    readonly strength: number;
+    /** Share of passages that stayed with their theme, 0 to 1. */
+    readonly stayed: number;
+  };
+  /** Held-out perplexity, and with shuffled words. */
+  readonly perplexity: number;
+  readonly perplexityFloor: number;
+  /** How many themes are steadier than the floor, and what the floor of strength means here. */
+  readonly sentences: readonly string[];
+}
+
+/** Three curves over numbers of themes, each with its floor; it recommends and never chooses. */
+export interface HowManyView {
+  readonly people: number;
+  /** Groups of people that were held out in turn. */
+  readonly groups: number;
+  readonly points: readonly {
+    readonly themes: number;
+    readonly perplexity: number;
+    readonly coherence: number;
+    readonly coherenceError: number;
+    readonly steadiness: number;
+    readonly steadinessError: number;
+    readonly floor: {
+      readonly perplexity: number;
+      readonly coherence: number;
+      readonly steadiness: number;
+    };
+  }[];
+  /** Numbers worth reading, ends included; null where nothing can be said. */
+  readonly range: { readonly from: number; readonly to: number } | null;
+  readonly sentence: string;
+}
+
+/** What a split of a theme would give; nothing is decided yet. */
+export interface SplitPreview {
+  readonly theme: string;
+  readonly label: string;
+  /** The first keeps the theme's id, name, seeds and codings; the second is a new candidate. */
+  readonly halves: readonly [SplitHalf, SplitHalf];
+  /** How alike the halves' words are, 0 to 1. */
+  readonly cosine: number;
+  /** Which half keeps what, and why. */
+  readonly sentence: string;
+}
+
+export interface SplitHalf {
+  /** Share of all counted words, 0 to 1. */
+  readonly share: number;
+  readonly words: readonly {
+    readonly form: string;
+    readonly surface: string;
+    readonly probability: number;
+  }[];
+  /** Passages that it would lead, and the people who say them. */
+  readonly passages: number;
+  readonly people: number;
+  /** Codings with the theme, confirmed or by hand, on passages whose words are this half's. */
+  readonly codings: number;
+  /** Strongest first, one a participant before a second from anyone. */
+  readonly strongest: readonly (PassagePlace & {
+    readonly transcriptName: string;
+    readonly participant: string;
+    readonly text: string;
+    readonly strength: number;
+    readonly countedWords: number;
+  })[];
+}
+
 export interface MovedView {
   readonly compared: number;
   readonly ofThemes: number;
@@ -646,13 +761,22 @@ export interface Api {
     gives: Overview;
   };
 
-  /** Reports progress; cancelling stops it and leaves the study as it was. */
+  /**
+   * Reports progress; cancelling stops it and leaves the study as it was. A fit from scratch that
+   * would take long answers with the quick answer first, where the study's setting asks for the full
+   * one: that is made behind it (`Overview.refining`, event `refining`) and takes its place.
+   */
   fit: { takes: FitRequest; gives: { overview: Overview; moved: MovedView | null } };
   moved: { takes: null; gives: MovedView | null };
   chooseFit: { takes: { fit: string }; gives: Overview };
   /** An empty name takes it away. */
   nameFit: { takes: { fit: string; name: string }; gives: Overview };
   compareFits: { takes: { first: string; second: string }; gives: FitsCompared };
+  /** Lets go of the full answer that is being made; the quick one stays. */
+  stopRefining: { takes: null; gives: Overview };
+  /** Measures the fit on screen and keeps the result with it. Reports progress, can be cancelled. */
+  gatherEvidence: { takes: EvidenceRequest; gives: Overview };
+  evidenceView: { takes: null; gives: EvidenceView };
 
   shapeView: { takes: null; gives: ShapeView };
   strata: { takes: null; gives: Strata };
@@ -743,6 +867,11 @@ export interface Events {
   /** A decision was made, here or in another window. */
   changed: Overview;
   closed: null;
+  /**
+   * How far the full answer behind the quick one is. At its end `fraction` is null, and `said` tells
+   * why it was let go, or is null where it took its place (`changed` is told as well).
+   */
+  refining: { readonly fraction: number | null; readonly said: string | null };
   /** A menu item was chosen; the window carries it out. */
   command:
     'undo' | 'redo' | 'find' | 'start study' | 'open study' | 'add transcripts' | 'close study';
@@ -777,6 +906,9 @@ export const methods = [
   'chooseFit',
   'nameFit',
   'compareFits',
+  'stopRefining',
+  'gatherEvidence',
+  'evidenceView',
   'shapeView',
   'strata',
   'strataFigure',

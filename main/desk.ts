@@ -16,7 +16,7 @@ import {
 import type { Prepared, TranscriptText } from '../engine/text/index.ts';
 import { speakerKey } from '../engine/text/index.ts';
 import { unpackFitted, unpackWords, type Fitted } from '../engine/themes/index.ts';
-import type { MintId } from './ids.ts';
+import { hashOf, type MintId } from './ids.ts';
 import type { StudyFileFailure } from './project/index.ts';
 import type { Store } from './store.ts';
 
@@ -54,6 +54,7 @@ export class Desk {
   #study: Study = emptyStudy;
   readonly #entries = new Map<number, Entry>();
   readonly #texts = new Map<number, string>();
+  readonly #textHashes = new Map<number, string>();
   readonly #words = new Map<number, Prepared>();
   readonly #fitted = new Map<FitId, Fitted>();
 
@@ -146,6 +147,14 @@ export class Desk {
     const text = Buffer.from(this.store.readBlob(sequence)).toString('utf8');
     this.#texts.set(sequence, text);
     return text;
+  }
+
+  /** SHA-256, hex, of a transcript's text. */
+  textHash(transcript: TranscriptId): string {
+    const { sequence } = this.#transcript(transcript).text;
+    const known = this.#textHashes.get(sequence) ?? hashOf(this.store.readBlob(sequence));
+    this.#textHashes.set(sequence, known);
+    return known;
   }
 
   /** A transcript as the engine takes it in. */

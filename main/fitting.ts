@@ -4,6 +4,7 @@ import {
   type BlobRef,
   type Edit,
   type Fit,
+  type FitId,
   type Study,
   type Theme,
 } from '../engine/study/index.ts';
@@ -19,13 +20,16 @@ import {
   type FitDone,
   type FitJob,
   type FitRefused,
+  type Fitted,
   type ModelledTheme,
 } from '../engine/themes/index.ts';
-import type { Desk, DeskResult } from './desk.ts';
+import { countedBefore, countingOf } from './counting.ts';
+import type { Desk, DeskResult, Draft } from './desk.ts';
 import { hashOf } from './ids.ts';
 import { runFit, type FitOptions } from './work/run-fit.ts';
 
-export type FitKind = 'from scratch' | 're-fit';
+/** 'refinement': the full answer in place of the quick one on screen, for the same themes. */
+export type FitKind = 'from scratch' | 're-fit' | 'refinement';
 
 export type FitMade =
   | DeskResult<{ readonly fit: Fit; readonly done: FitDone }>
@@ -37,14 +41,19 @@ export type FitMade =
 export interface FitStudyOptions extends FitOptions {
   /** From scratch: how many themes; the study's setting unless told, and its setting from then on. */
   readonly themes?: number;
+  /** Which answer, where it is not the one that the study's setting asks for. */
+  readonly answer?: 'quick' | 'full';
   /** Let go of the result of a fit that was stopped, so that the study stays as it was. */
   readonly discardStopped?: boolean;
 }
 
 /**
  * Fits the study in a worker and records the result. From scratch, themes that carry no decision are
- * found anew; a re-fit starts from the fit on screen and keeps every theme. Decisions made meanwhile
- * wait for the next fit; where the words or the set of themes changed, the result is let go.
+ * found anew; a re-fit starts from the fit on screen and keeps every theme. A refinement is made from
+ * scratch and keeps every theme of the fit on screen, each in the row that is most like it.
+ *
+ * Decisions made meanwhile wait for the next fit; where the words or the set of themes changed, the
+ * result is let go.
  */
 export async function fit(
   desk: Desk,
@@ -54,22 +63,32 @@ export async function fit(
 ): Promise<FitMade> {
   const before = desk.study;
   const previous = desk.fitted(before.fit);
-  if (kind === 're-fit' && previous === null) return { ok: false, code: 'no fit to start from' };
-  const settings = settingsOf(before.settings);
+  if (kind !== 'from scratch' && previous === null) {
+    return { ok: false, code: 'no fit to start from' };
+  }
+  const values =
+    options.answer === undefined ? before.settings : { ...before.settings, answer: options.answer };
+  const settings = settingsOf(values);
   const asked = kind === 'from scratch' ? (options.themes ?? settings.themes) : settings.themes;
   const found = kind === 'from scratch' ? newThemes(desk, asked) : [];
-  const kept = kind === 'from scratch' ? keptThemes(before) : modelledThemes(before);
+  const kept = keptBy(before, kind);
+  const themes = [...kept, ...found.map(({ id }) => foundTheme(id))];
+  const seeds = themes.flatMap((theme) => theme.seeds);
+  const counting = countingOf(desk, settings.text, lists, [...new Set(seeds)].sort());
+  const counted = countedBefore(previous, counting, settings.text);
   const job: FitJob = {
-    transcripts: desk.transcriptTexts(),
+    transcripts: counted === undefined ? desk.transcriptTexts() : [],
     text: settings.text,
     lists,
+    ...(counted === undefined ? {} : { counted }),
     model: settings.model,
     alpha: settings.alpha,
     eta: settings.eta,
     seed: settings.seed,
-    themes: [...kept, ...found.map(({ id }) => foundTheme(id))],
+    themes,
     decisions: decisions(before),
     previous: kind === 're-fit' && previous !== null ? asPrevious(previous) : null,
+    rowsFrom: kind !== 're-fit' && previous !== null ? asPrevious(previous) : null,
     pinnedFrom: previous === null ? null : asPrevious(previous),
     remembered:
       previous === null
@@ -87,20 +106,42 @@ export async function fit(
   }
 
   const id = desk.context.mintId('fit');
-  const sameWords = previous?.fit.hashes.words === done.hashes.words ? previous.fit.words : null;
-  const record = (words: BlobRef, result: BlobRef): Fit => ({
+  const record = {
     id,
-    name: null,
     themes: job.themes.map((theme) => theme.id),
     basis: before.sequence,
-    start: {
-      kind: kind === 're-fit' ? 'warm' : 'fresh',
-      seed: settings.seed,
-      from: kind === 're-fit' ? before.fit : null,
-    },
+    start: startOf(kind, settings.seed, before.fit),
+    settings: { ...recordedSettings(values), themes: asked, lists: hashOf(lists) },
+    counting,
+  };
+  const setting: Edit = {
+    kind: 'settingsChanged',
+    changes: [{ key: 'themes', from: desk.study.settings['themes'] ?? null, to: asked }],
+  };
+  const made = desk.make(
+    [
+      ...(asked === settings.themes ? [] : [{ edit: setting }]),
+      fittedDraft(record, done, found, previous),
+    ],
+    { group: desk.context.mintId('group') },
+  );
+  if (!made.ok) return made;
+  return { ok: true, value: { fit: desk.study.fits.get(id) as Fit, done } };
+}
+
+/** The decision that records a fit; words that are stored already are not stored again. */
+function fittedDraft(
+  record: Pick<Fit, 'id' | 'themes' | 'basis' | 'start' | 'settings' | 'counting'>,
+  done: FitDone,
+  found: readonly Theme[],
+  previous: Fitted | null,
+): Draft {
+  const known = previous?.fit.hashes.words === done.hashes.words ? previous.fit.words : null;
+  const fitWith = (words: BlobRef, result: BlobRef): Fit => ({
+    ...record,
+    name: null,
     method: done.method,
     preparation: done.preparation,
-    settings: { ...recordedSettings(before.settings), themes: asked, lists: hashOf(lists) },
     passages: done.passages,
     vocabulary: done.vocabulary,
     countedWords: done.countedWords,
@@ -114,24 +155,33 @@ export async function fit(
     result,
   });
   const edit = (refs: readonly BlobRef[]): Edit => {
-    const [words, result] = sameWords === null ? refs : [sameWords, ...refs];
-    return { kind: 'modelFitted', fit: record(words, result), found, before: before.fit };
+    const [words, result] = known === null ? refs : [known, ...refs];
+    return {
+      kind: 'modelFitted',
+      fit: fitWith(words, result),
+      found,
+      before: previous?.fit.id ?? null,
+    };
   };
-  const blobs =
-    sameWords === null && done.words !== null ? [done.words, done.result] : [done.result];
-  const { themes = null } = desk.study.settings;
-  const setting: Edit = {
-    kind: 'settingsChanged',
-    changes: [{ key: 'themes', from: themes, to: asked }],
-  };
-  const made = desk.make(
-    [...(asked === settings.themes ? [] : [{ edit: setting }]), { blobs, edit }],
-    {
-      group: desk.context.mintId('group'),
-    },
-  );
-  if (!made.ok) return made;
-  return { ok: true, value: { fit: desk.study.fits.get(id) as Fit, done } };
+  const own = known === null && done.words !== null ? [done.words] : [];
+  return { blobs: [...own, done.result], edit };
+}
+
+function startOf(kind: FitKind, seed: number, onScreen: FitId | null): Fit['start'] {
+  if (kind === 're-fit') return { kind: 'warm', seed, from: onScreen };
+  return { kind: 'fresh', seed, from: null, ...(onScreen === null ? {} : { rowsFrom: onScreen }) };
+}
+
+/** The themes of a study that a fit of this kind has rows for, besides those that it finds. */
+function keptBy(study: Study, kind: FitKind): ModelledTheme[] {
+  if (kind === 're-fit') return modelledThemes(study);
+  return kind === 'from scratch' ? keptThemes(study) : themesOnScreen(study);
+}
+
+function themesOnScreen(study: Study): ModelledTheme[] {
+  const known = new Map(modelledThemes(study).map((theme) => [theme.id, theme]));
+  const onScreen = study.fit === null ? [] : (study.fits.get(study.fit)?.themes ?? []);
+  return onScreen.flatMap((id) => known.get(id) ?? []);
 }
 
 /** Themes that a fit from scratch must keep: whatever a person named, asked for or decided on. */
@@ -169,6 +219,6 @@ function basisOf(study: Study, kind: FitKind): string {
     speakers,
   ]);
   const settings = Object.entries(study.settings).filter(([key]) => key.startsWith('text.'));
-  const themes = kind === 're-fit' ? modelledThemes(study) : keptThemes(study);
+  const themes = kind === 'from scratch' ? keptThemes(study) : modelledThemes(study);
   return hashOf([texts, settings, themes.map(({ id, absorbed }) => [id, absorbed])]);
 }

@@ -1,5 +1,8 @@
 import type { DensePriors } from './dense-priors.ts';
+import { cosine } from './scores/cosine.ts';
+import { matching } from './scores/matching.ts';
 import type { FitSettings } from './settings.ts';
+import type { FreshStart } from './collapsed/runs.ts';
 
 /** What the consensus needs of a run. */
 export interface RunThemes {
@@ -15,7 +18,9 @@ export interface RunThemes {
  * A pinned theme is what it was. A theme that decisions draw together (`drawn`: seeded, or confirmed
  * in passages) stands in its own row in every run, and there its versions are averaged. All other
  * rows mean nothing by themselves: the runs' themes are pooled and gathered by k-means around the
- * places where they lie densest, and the averages fill the free rows from the largest down.
+ * places where they lie densest. A free row that is known by what it was (`like`) takes the average
+ * most like it, all of these together; the averages that are left fill the other rows from the
+ * largest down.
  *
  * Density of a theme: its mean cosine to its nearest neighbours in the pool; starts are chosen
  * farthest first, weighted by density squared; averages are weighted by density to the fourth.
@@ -29,6 +34,7 @@ export function consensus(
   drawn: readonly boolean[],
   words: number,
   settings: FitSettings,
+  like: FreshStart['like'] = [],
 ): Float32Array {
   const { themes, eta, pinned } = priors;
   const result = new Float32Array(themes * words);
@@ -48,7 +54,8 @@ export function consensus(
   if (free.length > 0) {
     const pool = runs.flatMap((run) => free.map((k) => poolTheme(run, k, words)));
     const gathered = gather(pool, free.length, runs.length, words, settings);
-    fillRows(result, free, gathered, words, eta);
+    const known = like.filter(({ theme }) => free.includes(theme));
+    fillRows(result, free, gathered, words, eta, known);
   }
   return result;
 }
@@ -214,8 +221,8 @@ function average(
 }
 
 /**
- * Free rows with words shut out choose first, each the theme that loses least by it; the others are
- * filled in order.
+ * Rows that are known by what they were take what is most like it; then rows with words shut out
+ * choose, each the theme that loses least by it; the others are filled in order.
  */
 function fillRows(
   result: Float32Array,
@@ -223,10 +230,19 @@ function fillRows(
   gathered: readonly Average[],
   words: number,
   eta: Float64Array,
+  like: NonNullable<FreshStart['like']>,
 ): void {
-  const left = [...gathered];
-  const masked = free.filter((k) => eta.subarray(k * words, (k + 1) * words).includes(0));
   const taken = new Map<number, Average>();
+  if (like.length > 0) {
+    const costs = like.flatMap((one) => gathered.map(({ phi }) => -cosine(one.phi, phi)));
+    matching(costs, like.length, gathered.length).forEach((group, i) => {
+      taken.set(like[i].theme, gathered[group]);
+    });
+  }
+  const left = gathered.filter((one) => ![...taken.values()].includes(one));
+  const masked = free.filter(
+    (k) => !taken.has(k) && eta.subarray(k * words, (k + 1) * words).includes(0),
+  );
   for (const k of masked) {
     const losses = left.map(({ phi }) => {
       let lost = 0;

@@ -65,7 +65,8 @@ export function finishPool(
   const { priors, counts } = prepared;
   const whole = runs.filter(({ stopReason }) => stopReason !== 'stopped by a person');
   const used = whole.length > 0 ? whole : runs.slice(0, 1);
-  const phi = consensus(used, priors, drawnThemes(prepared, start), counts.words, settings);
+  const drawn = drawnThemes(prepared, start);
+  const phi = consensus(used, priors, drawn, counts.words, settings, start.like);
   const stopReason = whole.length < runs.length ? 'stopped by a person' : 'schedule completed';
   return finishFit(prepared, settings, phi, used, stopReason);
 }

@@ -50,6 +50,11 @@ export type Start =
       readonly seed: number;
       /** Seed words: most of the word's occurrences start on the theme. */
       readonly leanings: readonly { readonly theme: number; readonly word: number }[];
+      /**
+       * Word distributions (V values) that themes were known by: where no decision draws such a theme
+       * to its row, the row takes what was found most like it. The runs know nothing of it.
+       */
+      readonly like?: readonly { readonly theme: number; readonly phi: Float32Array }[];
     }
   | {
       readonly kind: 'warm';

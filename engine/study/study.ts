@@ -245,6 +245,8 @@ export interface Fit {
     readonly seed: number;
     /** The fit that a warm one starts from. */
     readonly from: FitId | null;
+    /** From scratch: the fit whose themes rows were found again by; absent where there was none. */
+    readonly rowsFrom?: FitId;
   };
   /** Number of the numerical method; results of different methods differ. */
   readonly method: number;
@@ -273,6 +275,8 @@ export interface Fit {
     readonly result: string;
     readonly previousResult: string | null;
   };
+  /** What the words were counted from: a hash of texts, speakers, settings and lists, and the seeds. */
+  readonly counting?: { readonly source: string; readonly seeds: readonly string[] };
   /** Passages, vocabulary, counted words and their places. */
   readonly words: BlobRef;
   /** Proportions and distributions, f32. */

@@ -20,6 +20,8 @@ export interface FitJob {
   readonly decisions: readonly Decided[];
   /** The fit to start from, as stored; null for a fit from scratch. */
   readonly previous: PreviousFit | null;
+  /** From scratch: themes stand in rows like those that they had in this fit; null where there is none. */
+  readonly rowsFrom?: PreviousFit | null;
   /** Pinned themes keep the words of this fit, also from scratch; null where there is none. */
   readonly pinnedFrom: PreviousFit | null;
   /** Themes that the fit before does not know and an earlier one did: they were set aside since. */

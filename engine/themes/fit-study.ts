@@ -13,7 +13,7 @@ import { leaningsOf } from './asked.ts';
 import type { FitJob, WordPlaces } from './fit-job.ts';
 import { priorsOf } from './priors.ts';
 import { packResult, packWords } from './stored.ts';
-import { warmStart } from './warm-start.ts';
+import { likeBefore, warmStart } from './warm-start.ts';
 import { placesOf } from './word-places.ts';
 
 export interface FitDone {
@@ -134,7 +134,7 @@ function wordWithoutTheme({ themes }: FitJob, places: WordPlaces): string | unde
 function startOf(job: FitJob, words: Prepared, places: WordPlaces): Start {
   const leanings = leaningsOf(job, places);
   return job.previous === null
-    ? { kind: 'fresh', seed: job.seed, leanings }
+    ? { kind: 'fresh', seed: job.seed, leanings, like: likeBefore(job, words) }
     : warmStart(job.themes, words, job.previous, leanings, job.remembered);
 }
 

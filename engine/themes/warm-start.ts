@@ -1,6 +1,6 @@
 import type { Start } from '../model/index.ts';
 import type { Prepared } from '../text/index.ts';
-import type { PreviousFit, RememberedTheme } from './fit-job.ts';
+import type { FitJob, PreviousFit, RememberedTheme } from './fit-job.ts';
 import type { ModelledTheme } from './modelled-theme.ts';
 
 /**
@@ -24,9 +24,7 @@ export function warmStart(
   leanings: readonly { readonly theme: number; readonly word: number }[],
   remembered: readonly RememberedTheme[] = [],
 ): Start {
-  const sources = themes.map(({ id, absorbed }) =>
-    [id, ...absorbed].map((each) => previous.themes.indexOf(each)).filter((row) => row >= 0),
-  );
+  const sources = themes.map(({ id, absorbed }) => sourceRows(previous, [id, ...absorbed]));
   const known = themes.map(({ id }) => remembered.find(({ theme }) => theme === id));
   const sizes = expectedWords(previous);
   const average = averageWords(words);
@@ -47,6 +45,26 @@ export function warmStart(
       rows.length === 0 && known[theme] === undefined ? 0 : held,
     ),
   };
+}
+
+/** The words that themes had in the fit whose rows are to be found again, merged ones added up. */
+export function likeBefore(
+  { themes, rowsFrom = null }: Pick<FitJob, 'themes' | 'rowsFrom'>,
+  words: Prepared,
+): NonNullable<Extract<Start, { kind: 'fresh' }>['like']> {
+  if (rowsFrom === null) return [];
+  const sizes = expectedWords(rowsFrom);
+  return themes.flatMap(({ id, absorbed }, theme) => {
+    const rows = sourceRows(rowsFrom, [id, ...absorbed]);
+    if (rows.length === 0) return [];
+    const phi = new Float32Array(words.vocabulary.length);
+    mixRows(rowsFrom, rows, sizes, words.vocabulary, phi);
+    return [{ theme, phi }];
+  });
+}
+
+function sourceRows(previous: PreviousFit, ids: readonly string[]): number[] {
+  return ids.map((id) => previous.themes.indexOf(id)).filter((row) => row >= 0);
 }
 
 /** A stored distribution over another vocabulary: new words get none, the rest sums to 1 again. */

@@ -2,7 +2,7 @@ import { basename, dirname, join, resolve } from 'node:path';
 import type { Fitted } from '../../engine/themes/index.ts';
 import type { Desk } from '../desk.ts';
 import type { EvidenceMade } from '../evidence.ts';
-import { sentenceForEvidence, type EvidenceRefusal } from '../sentences/evidence.ts';
+import { isEvidenceRefusal, sentenceForEvidence } from '../sentences/evidence.ts';
 import { sentenceFor } from '../sentences/sentences.ts';
 import type { EvidenceOptions } from '../work/run-evidence.ts';
 import { openStudy } from './open.ts';
@@ -67,17 +67,4 @@ export async function evidenceCommand<Value>(
   } finally {
     file.close();
   }
-}
-
-type Refused = Exclude<EvidenceMade<unknown>, { readonly ok: true }>;
-
-const evidenceCodes: readonly EvidenceRefusal['code'][] = [
-  'no fit yet',
-  'too few participants',
-  'too many themes',
-  'stopped',
-];
-
-function isEvidenceRefusal(refusal: Refused): refusal is Extract<Refused, EvidenceRefusal> {
-  return (evidenceCodes as readonly string[]).includes(refusal.code);
 }

@@ -8,6 +8,7 @@ const text = v.pipe(v.string(), v.maxLength(limits.text));
 const id = v.pipe(v.string(), v.minLength(1), v.maxLength(limits.name));
 const offset = v.pipe(v.number(), v.safeInteger(), v.minValue(0));
 const count = v.pipe(v.number(), v.safeInteger(), v.minValue(1), v.maxValue(1_000_000));
+const themeCount = v.pipe(v.number(), v.safeInteger(), v.minValue(2), v.maxValue(200));
 const nothing = v.null();
 
 function listOf<Item extends v.GenericSchema>(item: Item) {
@@ -90,6 +91,18 @@ export const payloads = {
   chooseFit: v.strictObject({ fit: id }),
   nameFit: v.strictObject({ fit: id, name }),
   compareFits: v.strictObject({ first: id, second: id }),
+  stopRefining: nothing,
+  gatherEvidence: v.variant('what', [
+    v.strictObject({
+      what: v.literal('steadiness'),
+      resamples: v.pipe(v.number(), v.safeInteger(), v.minValue(2), v.maxValue(1000)),
+    }),
+    v.pipe(
+      v.strictObject({ what: v.literal('how many'), from: themeCount, to: themeCount }),
+      v.check(({ from, to }) => from <= to, 'from must not be above to'),
+    ),
+  ]),
+  evidenceView: nothing,
 
   shapeView: nothing,
   strata: nothing,

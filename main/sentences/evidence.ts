@@ -2,6 +2,19 @@ import type { EvidenceRefused } from '../../engine/evidence/index.ts';
 
 export type EvidenceRefusal = EvidenceRefused | { readonly code: 'no fit yet' | 'stopped' };
 
+const codes = {
+  'no fit yet': true,
+  'too few participants': true,
+  'too many themes': true,
+  stopped: true,
+} satisfies Record<EvidenceRefusal['code'], true>;
+
+export function isEvidenceRefusal<Other extends { readonly code: string }>(
+  refusal: Other,
+): refusal is Extract<Other, EvidenceRefusal> {
+  return Object.hasOwn(codes, refusal.code);
+}
+
 /** Why evidence could not be gathered, and what to do. */
 export function sentenceForEvidence(refusal: EvidenceRefusal): string {
   switch (refusal.code) {

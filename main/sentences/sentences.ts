@@ -58,7 +58,15 @@ const formatNames = {
 
 export function sentenceForFit(
   refusal:
-    FitRefused | { readonly code: 'no fit to start from' | 'changed while fitting' | 'stopped' },
+    | FitRefused
+    | {
+        readonly code:
+          | 'no fit to start from'
+          | 'changed while fitting'
+          | 'changed while refining'
+          | 'refinement failed'
+          | 'stopped';
+      },
 ): string {
   switch (refusal.code) {
     case 'no words left':
@@ -73,6 +81,10 @@ export function sentenceForFit(
       return 'There is no fit to start from yet; fit the study from scratch first.';
     case 'changed while fitting':
       return 'The transcripts or the set of themes changed while the fit ran, so its result was let go; fit again.';
+    case 'changed while refining':
+      return 'The transcripts, the set of themes or the fit on screen changed while the full answer was made, so it was let go and the quick answer stays; fit from scratch again when you like.';
+    case 'refinement failed':
+      return 'The full answer could not be made, so the quick answer stays; fit from scratch again.';
     case 'stopped':
       return 'The fit was stopped, so the study is as it was; fit again when you like.';
   }

@@ -17,6 +17,7 @@ export const windowSentences = {
   'no demo': () =>
     'The transcripts of the demo study could not be read; install Understory again, or start a study of your own.',
   'fit running': () => 'A fit is running already; wait for it, or stop it first.',
+  'evidence running': () => 'The fit is being measured already; wait for it, or stop it first.',
   'no fit': () => 'There is no fit yet; fit the study in Shape first.',
   'place changed': () =>
     'The passages were divided in another way in the meantime; open the passage again, then decide.',

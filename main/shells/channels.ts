@@ -7,7 +7,12 @@ export const progressChannel = 'understory/progress';
 export const eventChannel = 'understory/event';
 
 /** What a window may be told of. */
-export const eventNames = ['changed', 'closed', 'command'] as const satisfies (keyof Events)[];
+export const eventNames = [
+  'changed',
+  'closed',
+  'refining',
+  'command',
+] as const satisfies (keyof Events)[];
 
 /** The scheme and host of the window's files, and the only origin that is answered. */
 export const appScheme = 'app';

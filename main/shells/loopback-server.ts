@@ -93,7 +93,7 @@ export async function startLoopback(options: LoopbackOptions): Promise<Loopback>
     });
   });
 
-  const ends = (['changed', 'closed', 'command'] as const).map((event) =>
+  const ends = (['changed', 'closed', 'refining', 'command'] as const).map((event) =>
     session.on(event, (detail: Events[typeof event]) => {
       for (const socket of sockets.clients) tell(socket, { say: 'event', event, detail });
     }),

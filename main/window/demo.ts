@@ -65,7 +65,7 @@ export async function buildDemo(
       { group: startGroup },
     );
   }
-  const fitted = await fitForWindow(desk, 'from scratch', null, context, context.signal);
+  const fitted = await fitForWindow(desk, 'from scratch', {}, context.onProgress, context.signal);
   if (isRefused(fitted)) return fitted;
 
   try {

@@ -1,7 +1,7 @@
 import type { Fit } from '../../engine/study/index.ts';
 import type { Refused } from '../api.ts';
 import type { Desk } from '../desk.ts';
-import { fit, type FitKind, type FitMade } from '../fitting.ts';
+import { fit, type FitKind, type FitMade, type FitStudyOptions } from '../fitting.ts';
 import { sentenceFor, sentenceForFit } from '../sentences/sentences.ts';
 import { wordLists } from '../word-lists.ts';
 import { give } from './answers.ts';
@@ -11,14 +11,14 @@ import type { CallContext } from './session-types.ts';
 export async function fitForWindow(
   desk: Desk,
   kind: FitKind,
-  themes: number | null,
-  { onProgress }: CallContext,
+  given: Pick<FitStudyOptions, 'themes' | 'answer'>,
+  onProgress: CallContext['onProgress'],
   signal: AbortSignal,
 ): Promise<{ readonly value: Fit } | Refused> {
   const made = await fit(desk, kind, wordLists, {
     signal,
     discardStopped: true,
-    ...(themes === null ? {} : { themes }),
+    ...given,
     onProgress: ({ sweep, bound, change }, fraction) =>
       onProgress({ sweep, bound, change, fraction }),
   });

@@ -14,6 +14,7 @@ import type {
   FitsCompared,
   FitThemeView,
   MovedView,
+  Overview,
   Refused,
 } from '../api.ts';
 import { fitBefore } from '../commands/moved.ts';
@@ -22,17 +23,20 @@ import { give, isRefused, refuse } from './answers.ts';
 import { fitForWindow } from './fit-for-window.ts';
 import { Kept } from './kept.ts';
 import type { OpenStudy } from './open-study.ts';
+import { quickFirst, refine, stopRefining } from './refining.ts';
 import type { Room } from './room.ts';
 import type { CallContext, Handlers } from './session-types.ts';
 import { fitRows } from './shape-view.ts';
 
 export function fitHandlers(
   room: Room,
-): Pick<Handlers, 'fit' | 'moved' | 'chooseFit' | 'nameFit' | 'compareFits'> {
+): Pick<Handlers, 'fit' | 'moved' | 'chooseFit' | 'nameFit' | 'compareFits' | 'stopRefining'> {
   return {
     fit: room.look(async (open, request: FitRequest, context) => {
-      const fitted = await fitStudy(open, request, context);
+      const first = request.kind === 'from scratch' && showsQuickFirst(room, open, request.themes);
+      const fitted = await fitStudy(open, request, context, first ? 'quick' : null);
       if (isRefused(fitted)) return fitted;
+      if (first) refine(room, open);
       const after = await room.afterwards(open);
       return isRefused(after) ? after : give({ overview: after.value, moved: movedView(open) });
     }),
@@ -59,24 +63,41 @@ export function fitHandlers(
         ? give(comparedView(open, first, second))
         : unknownFit(open, unknown);
     }),
+
+    stopRefining: room.look<null, Overview>(async (open) => {
+      const was = open.refinement !== null;
+      stopRefining(open);
+      return room.afterwards(open, was);
+    }),
   };
 }
 
 async function fitStudy(
   open: OpenStudy,
   { kind, themes }: FitRequest,
-  context: CallContext,
+  { onProgress, signal: called }: CallContext,
+  answer: 'quick' | null,
 ): Promise<{ readonly value: unknown } | Refused> {
   if (open.fitting) return refuse('fit running');
   const fault = themes === null ? null : settingFault('themes', themes);
   if (fault !== null) return { code: 'setting', refused: sentenceForSetting(fault) };
-  const signal = AbortSignal.any([context.signal, open.closing.signal]);
+  const signal = AbortSignal.any([called, open.closing.signal]);
+  // Whoever fits again no longer waits for the full answer to the fit before.
+  stopRefining(open);
   open.fitting = true;
   try {
-    return await fitForWindow(open.desk, kind, kind === 're-fit' ? null : themes, context, signal);
+    const given = {
+      ...(kind === 're-fit' || themes === null ? {} : { themes }),
+      ...(answer === null ? {} : { answer }),
+    };
+    return await fitForWindow(open.desk, kind, given, onProgress, signal);
   } finally {
     open.fitting = false;
   }
+}
+
+function showsQuickFirst(room: Room, open: OpenStudy, themes: number | null): boolean {
+  return quickFirst(open, themes ?? open.now.settings.themes, room.surroundings.quickFrom);
 }
 
 const kept = new WeakMap<OpenStudy, Kept<MovedView | null>>();

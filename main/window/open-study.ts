@@ -6,6 +6,7 @@ import type { StudyFile, StudyFileFailure } from '../project/index.ts';
 import { sentenceFor } from '../sentences/sentences.ts';
 import { Kept } from './kept.ts';
 import { knownReader } from './readers.ts';
+import type { Refinement } from './refining.ts';
 import { StudyNow } from './study-now.ts';
 
 /** Decisions with which a study begins; nobody wants them taken back. */
@@ -20,6 +21,9 @@ export class OpenStudy {
   /** Aborted when the study is closed, so that a fit of it ends. */
   readonly closing = new AbortController();
   fitting = false;
+  /** Whether evidence about the fit on screen is being gathered. */
+  gathering = false;
+  refinement: Refinement | null = null;
   /** The revision that was last told to those who listen. */
   told = -1;
   readonly #newcomer = randomIds('reader');

@@ -4,6 +4,7 @@ import { isDecided } from './decided-now.ts';
 import { redoInWords, undoInWords } from './history.ts';
 import type { OpenStudy } from './open-study.ts';
 import type { Placed } from './passages-now.ts';
+import { refiningNow } from './refining.ts';
 import { waitingInWords } from './waiting.ts';
 
 /** What the frame shows on every place. The study must be settled. */
@@ -32,6 +33,7 @@ export function overview(open: OpenStudy): Overview {
     unread,
     transcriptsRead,
     fitted: now.fitted !== null,
+    refining: refiningNow(open),
     stale: now.since?.stale ?? false,
     waiting: waitingInWords(now),
     undo: file.readOnly ? null : undoInWords(open),

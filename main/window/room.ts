@@ -75,12 +75,18 @@ export class Room {
     });
   }
 
-  /** The overview after a decision, which everybody who listens is told. */
-  async afterwards(open: OpenStudy): Promise<{ readonly value: Overview } | Refused> {
+  /**
+   * The overview after a decision, which everybody who listens is told; `always`, where something
+   * else than a decision changed it.
+   */
+  async afterwards(
+    open: OpenStudy,
+    always = false,
+  ): Promise<{ readonly value: Overview } | Refused> {
     await open.now.settled();
     if (this.open !== open) return refuse('no study');
     const now = overview(open);
-    if (open.told !== now.revision) {
+    if (always || open.told !== now.revision) {
       open.told = now.revision;
       this.tell('changed', now);
     }

@@ -37,6 +37,8 @@ export interface Surroundings {
   /** The folder of the demo's transcripts and of its attributes. */
   readonly demoFolder: string;
   readonly now: () => string;
+  /** Characters times themes from which a fit from scratch shows a quick answer first. */
+  readonly quickFrom?: number;
   /** The name that a reader gets until one is typed. */
   readonly readerName: string;
   /** Brings this window to the front: somebody opened its study a second time. */

@@ -1,5 +1,6 @@
 import type { Strata } from '../api.ts';
 import { give } from './answers.ts';
+import { evidenceHandlers } from './evidence.ts';
 import { find } from './find.ts';
 import { fitHandlers } from './fits.ts';
 import { gatheringHandlers } from './gathering.ts';
@@ -29,6 +30,7 @@ export function createSession(surroundings: Surroundings): Session {
     ...openingHandlers(room),
     ...gatheringHandlers(room),
     ...fitHandlers(room),
+    ...evidenceHandlers(room),
     ...themeDecisions(room),
     ...headingHandlers(room),
     ...readingHandlers(room),

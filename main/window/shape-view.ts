@@ -1,4 +1,4 @@
-import type { Fit } from '../../engine/study/index.ts';
+import type { Fit, Study } from '../../engine/study/index.ts';
 import type { FitProgress, FitRow, FitView, ShapeView } from '../api.ts';
 import { fitBefore } from '../commands/moved.ts';
 import type { OpenStudy } from './open-study.ts';
@@ -15,16 +15,17 @@ export function shapeView(open: OpenStudy): ShapeView {
     themes: themeRows(open),
     headings: [...study.headings.values()],
     people: people.size,
-    fit: now.fitted === null ? null : fitView(now.fitted.fit),
+    fit: now.fitted === null ? null : fitView(study, now.fitted.fit),
     fits: fitRows(open),
     before: before !== null && study.fits.has(before) ? before : null,
   };
 }
 
-function fitView(fit: Fit): FitView {
+function fitView(study: Study, fit: Fit): FitView {
   return {
     id: fit.id,
     kind: kindOf(fit),
+    answer: answerOf(study, fit),
     themes: fit.themes.length,
     passages: fit.passages,
     countedWords: fit.countedWords,
@@ -50,7 +51,7 @@ export function fitRows({ study, now }: OpenStudy): FitRow[] {
   }
   return [...study.fits.values()].map((fit, index) => ({
     id: fit.id,
-    label: fit.name ?? `${index + 1}: ${kindOf(fit)}, ${fit.themes.length} themes`,
+    label: fit.name ?? labelOf(study, fit, index + 1),
     name: fit.name,
     at: times.get(fit.id) ?? '',
     kind: kindOf(fit),
@@ -59,6 +60,23 @@ export function fitRows({ study, now }: OpenStudy): FitRow[] {
   }));
 }
 
+/** "3: from scratch, 12 themes", with "quick answer" where it is one. */
+function labelOf(study: Study, fit: Fit, number: number): string {
+  const quick = fit.start.kind === 'fresh' && answerOf(study, fit) === 'quick';
+  return `${number}: ${kindOf(fit)}, ${fit.themes.length} themes${quick ? ', quick answer' : ''}`;
+}
+
 function kindOf({ start }: Fit): FitView['kind'] {
   return start.kind === 'warm' ? 're-fit' : 'from scratch';
+}
+
+/** A re-fit keeps the themes that it began with, so its answer is that of the fit it goes back to. */
+function answerOf(study: Study, fit: Fit): FitView['answer'] {
+  let first = fit;
+  while (first.start.from !== null) {
+    const from = study.fits.get(first.start.from);
+    if (from === undefined) break;
+    first = from;
+  }
+  return first.settings['answer'] === 'quick' ? 'quick' : 'full';
 }

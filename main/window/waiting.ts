@@ -3,7 +3,7 @@ import { defaultSettings } from '../../engine/themes/index.ts';
 import type { StudyNow } from './study-now.ts';
 
 /** Settings that a fit takes up, besides those that turn texts into words. */
-const modelSettings = ['seed', 'answer', 'alpha', 'eta'] as const;
+const modelSettings = ['seed', 'alpha', 'eta'] as const;
 
 /**
  * Decisions since the fit on screen that the next fit will take up, in words. What was decided and

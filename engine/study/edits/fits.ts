@@ -25,8 +25,9 @@ export const fitRules: Rules<
         if (theme === undefined) return refused('unknown theme', id);
         if (!isModelled(theme)) return outsideModel(theme);
       }
-      const { from } = fit.start;
-      if (from !== null && !study.fits.has(from)) return refused('unknown fit', from);
+      for (const from of [fit.start.from, fit.start.rowsFrom ?? null]) {
+        if (from !== null && !study.fits.has(from)) return refused('unknown fit', from);
+      }
       return done({ ...study, themes, fits: withEntry(study.fits, fit.id, fit), fit: fit.id });
     },
     // Showing the fit before would not be enough: themes asked for would stay in use by a fit that
@@ -107,7 +108,9 @@ function isPlain(value: unknown): boolean {
 }
 
 function isFitInUse(study: Study, id: FitId): boolean {
-  for (const { start } of study.fits.values()) if (start.from === id) return true;
+  for (const { start } of study.fits.values()) {
+    if (start.from === id || start.rowsFrom === id) return true;
+  }
   for (const byId of [...study.codings.values(), ...study.nones.values()]) {
     for (const { under } of byId.values()) if (under.fit === id) return true;
   }

@@ -69,6 +69,7 @@ export const overview: Overview = {
   unread: 20,
   transcriptsRead: 0,
   fitted: false,
+  refining: null,
   stale: false,
   waiting: [],
   undo: null,

@@ -75,6 +75,8 @@ describe('every refusal is one sentence that says what to do', () => {
     'word without a theme': true,
     'no fit to start from': true,
     'changed while fitting': true,
+    'changed while refining': true,
+    'refinement failed': true,
     stopped: true,
   };
 

@@ -139,6 +139,7 @@ export function fakeGather(options: FakeOptions = {}): FakeLink {
       unread: passages,
       transcriptsRead: options.transcriptsRead ?? 0,
       fitted,
+      refining: null,
       stale: options.stale ?? false,
       waiting: [],
       undo: null,
