@@ -23,7 +23,7 @@ import { give, isRefused, refuse } from './answers.ts';
 import { fitForWindow } from './fit-for-window.ts';
 import { Kept } from './kept.ts';
 import type { OpenStudy } from './open-study.ts';
-import { quickFirst, refine, stopRefining } from './refining.ts';
+import { quickFirst, refine } from './refining.ts';
 import type { Room } from './room.ts';
 import type { CallContext, Handlers } from './session-types.ts';
 import { fitRows } from './shape-view.ts';
@@ -66,7 +66,7 @@ export function fitHandlers(
 
     stopRefining: room.look<null, Overview>(async (open) => {
       const was = open.refinement !== null;
-      stopRefining(open);
+      open.stopRefining();
       return room.afterwards(open, was);
     }),
   };
@@ -83,7 +83,7 @@ async function fitStudy(
   if (fault !== null) return { code: 'setting', refused: sentenceForSetting(fault) };
   const signal = AbortSignal.any([called, open.closing.signal]);
   // Whoever fits again no longer waits for the full answer to the fit before.
-  stopRefining(open);
+  open.stopRefining();
   open.fitting = true;
   try {
     const given = {

@@ -6,11 +6,19 @@ import type { StudyFile, StudyFileFailure } from '../project/index.ts';
 import { sentenceFor } from '../sentences/sentences.ts';
 import { Kept } from './kept.ts';
 import { knownReader } from './readers.ts';
-import type { Refinement } from './refining.ts';
 import { StudyNow } from './study-now.ts';
 
 /** Decisions with which a study begins; nobody wants them taken back. */
 export const startGroup = 'start';
+
+/** A full answer that is being made behind the quick one on screen. */
+export interface Refinement {
+  /** The quick answer. */
+  readonly fit: string;
+  /** How far the full one is, 0 to 1. */
+  fraction: number;
+  readonly stop: AbortController;
+}
 
 /** A study that is open in a window: its file, its desk, who sits there, and what views read. */
 export class OpenStudy {
@@ -84,6 +92,12 @@ export class OpenStudy {
     if ('path' in refusal) return { code: refusal.code, refused: sentenceFor(refusal) };
     const subject = this.#inWords(refusal.subject);
     return { code: refusal.code, refused: sentenceFor({ ...refusal, subject }) };
+  }
+
+  /** Lets go of a full answer on its way. */
+  stopRefining(): void {
+    this.refinement?.stop.abort();
+    this.refinement = null;
   }
 
   close(): void {

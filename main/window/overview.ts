@@ -4,12 +4,11 @@ import { isDecided } from './decided-now.ts';
 import { redoInWords, undoInWords } from './history.ts';
 import type { OpenStudy } from './open-study.ts';
 import type { Placed } from './passages-now.ts';
-import { refiningNow } from './refining.ts';
 import { waitingInWords } from './waiting.ts';
 
 /** What the frame shows on every place. The study must be settled. */
 export function overview(open: OpenStudy): Overview {
-  const { study, now, file } = open;
+  const { study, now, file, refinement } = open;
   let words = 0;
   let passages = 0;
   let unread = 0;
@@ -33,7 +32,7 @@ export function overview(open: OpenStudy): Overview {
     unread,
     transcriptsRead,
     fitted: now.fitted !== null,
-    refining: refiningNow(open),
+    refining: refinement === null ? null : { fit: refinement.fit, fraction: refinement.fraction },
     stale: now.since?.stale ?? false,
     waiting: waitingInWords(now),
     undo: file.readOnly ? null : undoInWords(open),

@@ -1,17 +1,9 @@
 import { defaultSettings } from '../../engine/themes/index.ts';
-import type { Overview, Refining } from '../api.ts';
 import { sentenceForFit } from '../sentences/sentences.ts';
 import { fitForWindow } from './fit-for-window.ts';
 import { isRefused } from './answers.ts';
-import type { OpenStudy } from './open-study.ts';
+import type { OpenStudy, Refinement } from './open-study.ts';
 import type { Room } from './room.ts';
-
-/** The full answer on its way, behind the quick one on screen. */
-export interface Refinement {
-  readonly fit: string;
-  fraction: number;
-  readonly stop: AbortController;
-}
 
 /**
  * Characters of transcripts times themes from which a full answer takes more than a second or two.
@@ -74,16 +66,4 @@ export function refine(room: Room, open: OpenStudy): void {
       // The drive is gone; the next call says so.
     }
   })();
-}
-
-/** Lets go of a full answer on its way. */
-export function stopRefining(open: OpenStudy): void {
-  open.refinement?.stop.abort();
-  open.refinement = null;
-}
-
-export function refiningNow({ refinement }: OpenStudy): Overview['refining'] {
-  if (refinement === null) return null;
-  const { fit, fraction }: Refining = refinement;
-  return { fit, fraction };
 }
