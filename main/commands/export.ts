@@ -39,7 +39,10 @@ export async function exportExcerpts(
   const { desk, file } = await openStudy(positionals[0], terminal, { readOnly: true, call: null });
   try {
     const excerpts = codedExcerpts(desk, new Set(standings));
-    const content = await contentOf(format, desk, excerpts, standings, values['no-guard'] !== true);
+    const content = await contentOf(format, desk, excerpts, standings, {
+      guard: values['no-guard'] !== true,
+      head: file.head,
+    });
     await writeOneFile(resolve(terminal.folder, values.out), content, [file.path]);
     terminal.err(
       excerpts.length === 0
@@ -58,18 +61,18 @@ async function contentOf(
   desk: Parameters<typeof codedExcerpts>[0],
   excerpts: ReturnType<typeof codedExcerpts>,
   standings: readonly Reportable[],
-  guard: boolean,
+  { guard, head }: { readonly guard: boolean; readonly head: string },
 ): Promise<string | Uint8Array> {
   const { study } = desk;
   switch (format) {
     case 'csv':
-      return excerptsCsv(study, excerpts, { guard });
+      return excerptsCsv(study, excerpts, { guard }, head);
     case 'json':
-      return excerptsJson(study.name, excerpts, { standings, themes: null });
+      return excerptsJson(study.name, excerpts, { standings, themes: null }, head);
     case 'html':
-      return excerptsHtml(study.name, excerpts, { standings, themes: null });
+      return excerptsHtml(study.name, excerpts, { standings, themes: null }, head);
     case 'docx':
-      return excerptsDocx(study.name, excerpts, { standings, themes: null });
+      return excerptsDocx(study.name, excerpts, { standings, themes: null }, head);
   }
 }
 

@@ -46,6 +46,11 @@ export const bookCautions = [
   'Suggestions come from a model that counts words; they are for reading, never findings.',
 ] as const;
 
+/** By which `verify --head` finds the state of the study that a report was made from. */
+export function headSentence(head: string): string {
+  return `Made from the study whose chain ends in ${head}.`;
+}
+
 /** What a report was asked to hold; every output states it. */
 export interface ReportFilter {
   readonly standings: readonly string[];

@@ -27,16 +27,20 @@ export const excerptColumns = [
   'memo',
 ] as const;
 
-/** excerpts.csv: the columns above, then one for each attribute of the study. */
+/**
+ * excerpts.csv: the columns above, then one for each attribute of the study. Of a stored study the
+ * head of its chain stands in a last column.
+ */
 export function excerptsCsv(
   study: Study,
   excerpts: readonly CodedExcerpt[],
   options: CsvOptions,
+  head: string | null = null,
 ): string {
   const attributes = attributeNames(study);
   return csv(
     [
-      [...excerptColumns, ...attributes],
+      [...excerptColumns, ...attributes, ...(head === null ? [] : ['study_head'])],
       ...excerpts.map((excerpt) => [
         excerpt.id,
         excerpt.transcript,
@@ -60,6 +64,7 @@ export function excerptsCsv(
         excerpt.codebookVersion,
         excerpt.memo,
         ...attributes.map((name) => excerpt.attributes[name] ?? ''),
+        ...(head === null ? [] : [head]),
       ]),
     ],
     options,

@@ -4,6 +4,7 @@ import {
   bookCautions,
   bookParts,
   filterSentence,
+  headSentence,
   type ReportFilter,
 } from './excerpt-book.ts';
 import type { CodedExcerpt } from './coded-excerpts.ts';
@@ -13,6 +14,7 @@ export async function excerptsDocx(
   study: string,
   excerpts: readonly CodedExcerpt[],
   filter: ReportFilter,
+  head: string,
 ): Promise<Uint8Array> {
   const quiet = { color: '4D5952', size: 19 };
   const children = [
@@ -28,6 +30,10 @@ export async function excerptsDocx(
       new Paragraph({ heading: HeadingLevel.HEADING_1, text: part.theme }),
       ...part.excerpts.flatMap((excerpt) => paragraphsOf(excerpt, quiet)),
     ]),
+    new Paragraph({
+      spacing: { before: 480 },
+      children: [new TextRun({ ...quiet, text: headSentence(head) })],
+    }),
   ];
   const document = new Document({
     creator: 'Understory',

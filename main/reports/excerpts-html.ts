@@ -3,6 +3,7 @@ import {
   bookCautions,
   bookParts,
   filterSentence,
+  headSentence,
   type ReportFilter,
 } from './excerpt-book.ts';
 import type { CodedExcerpt } from './coded-excerpts.ts';
@@ -12,6 +13,7 @@ export function excerptsHtml(
   study: string,
   excerpts: readonly CodedExcerpt[],
   filter: ReportFilter,
+  head: string,
 ): string {
   const parts = bookParts(excerpts).map(
     ({ theme, excerpts: own, participants }) => `<section>
@@ -30,9 +32,10 @@ ${own.map(article).join('\n')}
 <style>
 body { font: 17px/1.6 Georgia, serif; max-width: 42em; margin: 3em auto; padding: 0 1.5em; color: #23302a; background: #fdfcf9; }
 h1, h2 { line-height: 1.25; margin: 2em 0 .3em; } h1 { margin-top: 0; }
-.count, .filter, footer, .caution { font: 14px/1.5 system-ui, sans-serif; color: #4d5952; }
+.count, .filter, footer, .caution, .head { font: 14px/1.5 system-ui, sans-serif; color: #4d5952; }
 blockquote { margin: 1.5em 0 .3em; padding: 0; white-space: pre-wrap; }
 .question { color: #4d5952; font-style: italic; margin: 1.5em 0 -1em; white-space: pre-wrap; }
+.head { margin-top: 3em; overflow-wrap: anywhere; }
 .memo { font: 14px/1.5 system-ui, sans-serif; margin: .3em 0 0; }
 </style>
 </head>
@@ -41,6 +44,7 @@ blockquote { margin: 1.5em 0 .3em; padding: 0; white-space: pre-wrap; }
 <p class="filter">${escaped(filterSentence(filter, excerpts.length))}</p>
 ${bookCautions.map((caution) => `<p class="caution">${escaped(caution)}</p>`).join('\n')}
 ${parts.join('\n')}
+<p class="head">${escaped(headSentence(head))}</p>
 </body>
 </html>
 `;

@@ -1,5 +1,6 @@
 import type { Fit, Study } from '../../engine/study/index.ts';
 import { settingsOf, type FitDone, type Fitted } from '../../engine/themes/index.ts';
+import { headSentence } from './excerpt-book.ts';
 import { themeRows } from './theme-table.ts';
 import type { Desk } from '../desk.ts';
 
@@ -10,12 +11,13 @@ export type LeftOut = FitDone['leftOut'];
  * The methods paragraph: how the themes came about, with every number that somebody needs to judge
  * or repeat it, the estimator under its published name, and what it does not show.
  */
-export function methodsText(desk: Desk, fitted: Fitted): string {
+export function methodsText(desk: Desk, fitted: Fitted, head: string | null = null): string {
   const { study } = desk;
+  const made = head === null ? '' : `\n${headSentence(head)}\n`;
   return `# Methods
 
 ${material(study, fitted)} ${counting(study, fitted)} ${model(desk, fitted)} ${reading(desk)}
-
+${made}
 ## What this does not show
 
 A theme model counts words. It reads no irony, no silence and no context. Strengths are shares of a

@@ -85,12 +85,12 @@ function codingsOf(study: Study, theme: string): number {
   return found;
 }
 
-/** themes.csv */
-export function themesCsv(desk: Desk, options: CsvOptions): string {
+/** themes.csv; of a stored study with the head of its chain in a last column. */
+export function themesCsv(desk: Desk, options: CsvOptions, chain: string | null = null): string {
   const head = ['theme_id', 'theme', 'share', 'passages', 'words', 'seeds', 'shut_out', 'pinned'];
   return csv(
     [
-      head,
+      chain === null ? head : [...head, 'study_head'],
       ...themeRows(desk).map((row) => [
         row.id,
         row.name,
@@ -100,6 +100,7 @@ export function themesCsv(desk: Desk, options: CsvOptions): string {
         row.seeds.join(' '),
         row.shutOut.join(' '),
         yesNo(row.pinned),
+        ...(chain === null ? [] : [chain]),
       ]),
     ],
     options,

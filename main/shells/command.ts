@@ -6,6 +6,7 @@ import { refit, refitUsage } from '../commands/refit.ts';
 import { steady, steadyUsage } from '../commands/steady.ts';
 import type { ExitCode, Terminal } from '../commands/terminal.ts';
 import { theme, themeUsage } from '../commands/theme.ts';
+import { trail, trailUsage } from '../commands/trail.ts';
 import { verifyStudy, verifyUsage } from '../commands/verify.ts';
 
 type Command = (words: readonly string[], terminal: Terminal) => Promise<ExitCode>;
@@ -18,6 +19,7 @@ const commands: Record<string, Command> = {
   steady,
   howmany: howMany,
   verify: verifyStudy,
+  trail,
 };
 
 const help = `Understory: theme and code interview transcripts on this machine alone.
@@ -39,6 +41,8 @@ const help = `Understory: theme and code interview transcripts on this machine a
   ${verifyUsage}
       checks every byte, folds the trail, makes every fit again from its stored words and compares;
       exit code 0: all holds, 1: something differs or was tampered with, 3: could not be checked
+  ${trailUsage}
+      prints who decided what, when and on what, or writes it under the headings of an audit trail
 
 Run it as: npm run -s understory -- theme resources/demo --themes 12 --seed 1 --out demo-themes
 `;

@@ -185,23 +185,23 @@ async function reportFile(
 }
 
 async function contentOf(
-  { study, desk, now }: OpenStudy,
+  { study, desk, now, file: { head } }: OpenStudy,
   { format, standings, themes, guard }: Api['report']['takes'],
   excerpts: readonly CodedExcerpt[],
 ): Promise<string | Uint8Array | Refused> {
   const filter = reportFilter(now, { standings, themes });
   switch (format) {
     case 'csv':
-      return excerptsCsv(study, excerpts, { guard });
+      return excerptsCsv(study, excerpts, { guard }, head);
     case 'json':
-      return excerptsJson(study.name, excerpts, filter);
+      return excerptsJson(study.name, excerpts, filter, head);
     case 'html':
-      return excerptsHtml(study.name, excerpts, filter);
+      return excerptsHtml(study.name, excerpts, filter, head);
     case 'docx':
-      return excerptsDocx(study.name, excerpts, filter);
+      return excerptsDocx(study.name, excerpts, filter, head);
     case 'themes csv':
-      return themesCsv(desk, { guard });
+      return themesCsv(desk, { guard }, head);
     case 'methods':
-      return now.fitted === null ? refuse('no fit') : methodsText(desk, now.fitted);
+      return now.fitted === null ? refuse('no fit') : methodsText(desk, now.fitted, head);
   }
 }
