@@ -13,6 +13,8 @@
 export interface Refused {
   readonly refused: string;
   readonly code: string;
+  /** The file that it is about, where a window may offer another way with it. */
+  readonly path?: string;
 }
 
 export type Answer<Value> = { readonly value: Value } | Refused;
@@ -46,6 +48,47 @@ export interface RecentStudy {
   /** The folder, as a person would say it. */
   readonly folder: string;
   readonly missing: boolean;
+}
+
+export interface BackupsView {
+  /** How many are kept of each study; 0: none are made. */
+  readonly keep: number;
+  /** Where new ones of this study go. */
+  readonly folder: string;
+  /** The folder that was chosen for all studies; null: beside each study. */
+  readonly chosenFolder: string | null;
+  /** Of this study, newest first. */
+  readonly backups: readonly {
+    readonly path: string;
+    /** What the study's file was called then, where it has another name now; else null. */
+    readonly calledThen: string | null;
+    readonly number: number;
+    /** ISO 8601 in UTC. */
+    readonly at: string;
+    readonly bytes: number;
+  }[];
+  /** Why the last one could not be made; null where it could. */
+  readonly failed: string | null;
+}
+
+/** What writing the study anew would save, or has saved. Bytes. */
+export interface CompactView {
+  readonly before: number;
+  readonly after: number;
+  /** What would go, in words; empty where nothing can. */
+  readonly goes: readonly string[];
+}
+
+/** What came over from a damaged study into a new file, and what did not. */
+export interface RecoveryView {
+  readonly overview: Overview;
+  readonly path: string;
+  /** Records that came over. */
+  readonly kept: number;
+  /** What is missing, each in words. */
+  readonly missing: readonly string[];
+  /** Decisions left out because what they rest on is missing, each in words. */
+  readonly leftOut: readonly string[];
 }
 
 /** What the frame shows on every place. */
@@ -720,8 +763,40 @@ export interface Api {
   openDemo: { takes: null; gives: Overview };
   /** `path` null: ask with the system's dialog, or use the studies folder. Null where cancelled. */
   startStudy: { takes: { name: string; path: string | null }; gives: Overview | null };
-  openStudy: { takes: { path: string | null; readOnly: boolean }; gives: Overview | null };
+  openStudy: {
+    takes: {
+      path: string | null;
+      readOnly: boolean;
+      /** Although a note beside it says that another machine has it open. */
+      despiteNote?: boolean | undefined;
+    };
+    gives: Overview | null;
+  };
   closeStudy: { takes: null; gives: null };
+  /**
+   * Copies the open study to another place. `path` null: ask with the system's dialog, or beside it.
+   * `goOn`: the copy is the open study afterwards. Null where cancelled.
+   */
+  copyStudy: {
+    takes: { path: string | null; goOn: boolean };
+    gives: { path: string; overview: Overview } | null;
+  };
+  backupsView: { takes: null; gives: BackupsView };
+  /** For all studies on this machine. `folder` null: beside each study. */
+  keepBackups: { takes: { keep: number; folder: string | null }; gives: BackupsView };
+  /** Shows the system's dialog; null where there is none or it was cancelled. */
+  chooseBackupFolder: { takes: null; gives: string | null };
+  makeBackup: { takes: null; gives: BackupsView };
+  removeBackup: { takes: { path: string }; gives: BackupsView };
+  /** Copies a backup to a new file and opens that. `path` null: beside the study. */
+  openBackup: { takes: { backup: string; path: string | null }; gives: Overview | null };
+  compactView: { takes: null; gives: CompactView };
+  compactStudy: { takes: null; gives: CompactView };
+  /** Brings what is whole in a damaged study over into a new file. `to` null: beside it. */
+  recoverStudy: {
+    takes: { path: string; to: string | null; password?: string | undefined };
+    gives: RecoveryView;
+  };
   renameStudy: { takes: { name: string }; gives: Overview };
   nameReader: { takes: { name: string }; gives: Overview };
   undo: { takes: null; gives: { did: string | null; overview: Overview } };
@@ -872,6 +947,8 @@ export interface Events {
    * why it was let go, or is null where it took its place (`changed` is told as well).
    */
   refining: { readonly fraction: number | null; readonly said: string | null };
+  /** Something that nobody asked about went wrong, in a sentence; decisions are safe all the same. */
+  caution: string;
   /** A menu item was chosen; the window carries it out. */
   command:
     'undo' | 'redo' | 'find' | 'start study' | 'open study' | 'add transcripts' | 'close study';
@@ -886,6 +963,16 @@ export const methods = [
   'startStudy',
   'openStudy',
   'closeStudy',
+  'copyStudy',
+  'backupsView',
+  'keepBackups',
+  'chooseBackupFolder',
+  'makeBackup',
+  'removeBackup',
+  'openBackup',
+  'compactView',
+  'compactStudy',
+  'recoverStudy',
   'renameStudy',
   'nameReader',
   'undo',

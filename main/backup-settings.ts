@@ -2,6 +2,13 @@ import { mkdirSync, readFileSync, renameSync, writeFileSync } from 'node:fs';
 import { dirname, isAbsolute } from 'node:path';
 import { backupFolderBeside, type BackupPlaces } from './project/index.ts';
 
+/** Where the settings are kept: given by the shell. */
+export interface BackupStore {
+  readonly read: () => BackupSettings;
+  /** Throws the system's error. */
+  readonly write: (settings: BackupSettings) => void;
+}
+
 /** How backups are kept on this machine, for all studies. */
 export interface BackupSettings {
   /** How many of each study; 0 makes none. */
@@ -49,6 +56,25 @@ export function readBackupSettings(file: string): BackupSettings {
   } catch {
     return usualBackups;
   }
+}
+
+/** In a file of the app's settings. */
+export function backupStore(file: string): BackupStore {
+  return {
+    read: () => readBackupSettings(file),
+    write: (settings) => writeBackupSettings(file, settings),
+  };
+}
+
+/** Kept nowhere; none are made unless told. */
+export function passingBackupStore(first: Partial<BackupSettings> = { keep: 0 }): BackupStore {
+  let settings = { ...usualBackups, ...first };
+  return {
+    read: () => settings,
+    write: (next) => {
+      settings = next;
+    },
+  };
 }
 
 /** Whole or not at all; throws the system's error. */

@@ -18,6 +18,8 @@ export interface Backup {
   readonly path: string;
   /** What the study's file was called, without its ending; cut short where it is very long. */
   readonly study: string;
+  /** Whether the study's file is called so now. */
+  readonly sameName: boolean;
   readonly number: number;
   /** ISO 8601 in UTC, by the clock of the machine that made it. */
   readonly at: string;
@@ -87,7 +89,7 @@ export function makeBackup(
   if (places.keep < 1) return success(null);
   const stem = stemOf(file.path);
   const own = find(file.path, file.studyId, places, storage).found.filter(
-    ({ study }) => study === stem,
+    ({ sameName }) => sameName,
   );
   const [newest] = own;
   if (newest !== undefined && saysTheSame(newest, file, storage)) return success(null);
@@ -154,7 +156,14 @@ function make(
   }
   const written = file.backUp(to, passingName(file.path, folder));
   if (!written.ok) return written;
-  return success({ path: to, study: stem, number, at: `${seconds}.000Z`, size: written.value });
+  return success({
+    path: to,
+    study: stem,
+    sameName: true,
+    number,
+    at: `${seconds}.000Z`,
+    size: written.value,
+  });
 }
 
 function remove(
@@ -226,22 +235,23 @@ function asBackup(
   const [, study = '', number, day, hours, minutes, seconds] = match;
   const at = `${day}T${hours}:${minutes}:${seconds}.000Z`;
   const filePath = path.join(folder, name);
+  const sameName = study === stemOf(studyPath);
   try {
     const handle = storage.open(filePath, 'read');
     try {
       const start = new Uint8Array(MOST_HEADER_BYTES);
       const decoded = decodeHeader(start.subarray(0, readWhole(storage, handle, start, 0)));
       // One that is damaged goes by its name: what has to be forgotten may be in it.
-      const ours = decoded.ok ? decoded.header.studyId === studyId : study === stemOf(studyPath);
+      const ours = decoded.ok ? decoded.header.studyId === studyId : sameName;
       if (!ours) return null;
       const { size } = storage.stat(handle);
-      return { path: filePath, study, number: Number(number), at, size };
+      return { path: filePath, study, sameName, number: Number(number), at, size };
     } finally {
       closeQuietly(storage, handle);
     }
   } catch {
-    return study === stemOf(studyPath)
-      ? { path: filePath, study, number: Number(number), at, size: 0 }
+    return sameName
+      ? { path: filePath, study, sameName, number: Number(number), at, size: 0 }
       : null;
   }
 }

@@ -15,6 +15,7 @@ export {
   rewriteBackups,
 } from './backups.ts';
 export type { Backup, BackupPlaces, BackupsGone, BackupsRewritten } from './backups.ts';
+export { copyFile } from './copy-file.ts';
 export { recoverStudyFile } from './recover-study-file.ts';
 export type { MissingPart, Recovery } from './recover-study-file.ts';
 export { StudyFileFault } from './failure.ts';

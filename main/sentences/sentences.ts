@@ -15,6 +15,11 @@ export function sentenceFor(refusal: Refusal | StudyFileFailure): string {
     : studySentences[refusal.code](refusal.subject);
 }
 
+/** A backup that nobody asked for could not be made. */
+export function noBackup(failure: StudyFileFailure): string {
+  return `Decisions are saved in the study, and no backup of it could be made: ${sentenceFor(failure)}`;
+}
+
 /** Why a file did not become a transcript. */
 export type FileRefusal =
   ReadRefusal | { readonly code: MissedFile['code'] } | { readonly code: 'duplicate' };

@@ -14,6 +14,14 @@ export const windowSentences = {
     `${quoted(s)} holds decisions that do not follow from one another, so it was not opened; open a backup of it.`,
   'newer decisions': (s) =>
     `${quoted(s)} holds decisions of a newer version of Understory; install that version to open it.`,
+  'reading only': () =>
+    'The study is open for reading only, so no backup is needed; open it for writing first.',
+  'no backups kept': () => 'No backups are kept; choose how many first.',
+  'no such backup': (s) => `${quoted(s)} is no backup of this study; look at the list again.`,
+  'no whole path': (s) =>
+    `${quoted(s)} is not the whole path of a folder; type it from the top of the drive on.`,
+  'closed meanwhile': (s) =>
+    `${quoted(s)} was written anew and could not be opened again; open it once more.`,
   'no demo': () =>
     'The transcripts of the demo study could not be read; install Understory again, or start a study of your own.',
   'fit running': () => 'A fit is running already; wait for it, or stop it first.',

@@ -11,6 +11,7 @@ export const eventNames = [
   'changed',
   'closed',
   'refining',
+  'caution',
   'command',
 ] as const satisfies (keyof Events)[];
 

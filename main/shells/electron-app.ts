@@ -11,6 +11,7 @@ import {
   session as sessions,
 } from 'electron';
 import { methods, type Events } from '../api.ts';
+import { backupStore } from '../backup-settings.ts';
 import { faultLog, Line } from '../link/index.ts';
 import type { Session, Surroundings } from '../window/session-types.ts';
 import { accountName } from './account-name.ts';
@@ -173,6 +174,7 @@ class ElectronShell {
       },
       dialogs: systemDialogs({ dialog, window: () => this.#window, studiesFolder: folder }),
       recent: recentPaths(this.#settings('recent.json')),
+      backups: backupStore(this.#settings('backups.json')),
       demoFolder: this.#places.demo,
       now: () => new Date().toISOString(),
       readerName: accountName(),

@@ -45,7 +45,7 @@ export function systemDialogs({ dialog, window, studiesFolder }: DialogOptions):
     },
     placeStudy: (name) =>
       save({
-        title: 'Start a study',
+        title: 'Keep the study as',
         defaultPath: join(studiesFolder, `${fileName(name) || 'study'}.understory`),
         filters: [studies],
         properties: ['createDirectory', 'showOverwriteConfirmation'],
@@ -56,6 +56,10 @@ export function systemDialogs({ dialog, window, studiesFolder }: DialogOptions):
         properties: ['openFile', 'multiSelections'],
         filters: [transcripts, everything],
       }),
+    chooseFolder: async (title) => {
+      const paths = await open({ title, properties: ['openDirectory', 'createDirectory'] });
+      return paths?.[0] ?? null;
+    },
     placeFile: (name) =>
       save({
         title: 'Save',

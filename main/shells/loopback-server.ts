@@ -20,6 +20,7 @@ import {
 } from '../link/index.ts';
 import type { Session } from '../window/session-types.ts';
 import { Admission } from './admission.ts';
+import { eventNames } from './channels.ts';
 import { securityHeaders, type StaticFiles } from './static-files.ts';
 
 const host = '127.0.0.1';
@@ -93,7 +94,7 @@ export async function startLoopback(options: LoopbackOptions): Promise<Loopback>
     });
   });
 
-  const ends = (['changed', 'closed', 'refining', 'command'] as const).map((event) =>
+  const ends = eventNames.map((event) =>
     session.on(event, (detail: Events[typeof event]) => {
       for (const socket of sockets.clients) tell(socket, { say: 'event', event, detail });
     }),

@@ -1,6 +1,7 @@
 import { join } from 'node:path';
 import { createInterface } from 'node:readline';
 import { version } from '../../package.json';
+import { backupStore } from '../backup-settings.ts';
 import { faultLog } from '../link/index.ts';
 import { createSession } from '../window/session.ts';
 import type { Session, Surroundings } from '../window/session-types.ts';
@@ -110,6 +111,7 @@ function surroundings(demoFolder: string, settings: string, comeForward: () => v
     },
     dialogs: null,
     recent: recentPaths(join(settings, 'recent.json')),
+    backups: backupStore(join(settings, 'backups.json')),
     demoFolder,
     now: () => new Date().toISOString(),
     readerName: accountName(),

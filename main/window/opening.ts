@@ -10,6 +10,7 @@ import {
   createStudyFile,
   openStudyFile,
   StudyFileFault,
+  type OpenOptions,
   type StudyFile,
   type StudyFileFailure,
 } from '../project/index.ts';
@@ -64,7 +65,7 @@ export function openingHandlers(
         return startStudy(room, title, placeOf(place ?? safeFileName(title), about.studiesFolder));
       }),
 
-    openStudy: ({ path, readOnly }) =>
+    openStudy: ({ path, readOnly, despiteNote = false }) =>
       room.inTurn(async () => {
         let place = path;
         if (place === null) {
@@ -72,7 +73,7 @@ export function openingHandlers(
           place = await dialogs.chooseStudy();
           if (place === null) return give(null);
         }
-        return openStudy(room, placeOf(place, about.studiesFolder, ''), readOnly);
+        return openStudy(room, placeOf(place, about.studiesFolder, ''), readOnly, { despiteNote });
       }),
 
     closeStudy: () =>
@@ -98,6 +99,7 @@ export async function openStudy(
   room: Room,
   path: string,
   readOnly: boolean,
+  options: Pick<OpenOptions, 'despiteNote' | 'password'> = {},
 ): Promise<Answer<Overview>> {
   const { open: current, surroundings } = room;
   if (current !== null && !current.file.closed && samePath(current.file.path, path)) {
@@ -106,7 +108,7 @@ export async function openStudy(
     // The lock of the one would stand in the way of the other.
     closeStudy(room);
   }
-  const opened = await openStudyFile(path, { readOnly, ...knock(room) });
+  const opened = await openStudyFile(path, { readOnly, ...options, ...knock(room) });
   if (!opened.ok) {
     if (opened.code === 'not found') await surroundings.recent.remove(path);
     return notOpened(opened, path);
@@ -118,7 +120,7 @@ async function notOpened(failure: StudyFileFailure, path: string): Promise<Refus
   if (failure.code === 'open elsewhere' && (await bringForward(path))) {
     return { ...refuse('shown forward', basename(path, ending)), code: failure.code };
   }
-  return { code: failure.code, refused: sentenceFor(failure) };
+  return { code: failure.code, refused: sentenceFor(failure), path };
 }
 
 async function startStudy(room: Room, name: string, path: string): Promise<Answer<Overview>> {
@@ -186,6 +188,7 @@ export function closeStudy(room: Room, { quietly = false } = {}): void {
   const { open } = room;
   if (open === null) return;
   room.open = null;
+  room.backups.beforeClosing(open);
   open.close();
   if (!quietly) room.tell('closed', null);
 }

@@ -1,7 +1,8 @@
 import type { Answer, Events, Overview, Refused } from '../api.ts';
 import { StudyFileFault } from '../project/index.ts';
-import { sentenceFor } from '../sentences/sentences.ts';
+import { noBackup, sentenceFor } from '../sentences/sentences.ts';
 import { give, refuse } from './answers.ts';
+import { BackupKeeper } from './backup-keeper.ts';
 import type { OpenStudy } from './open-study.ts';
 import { overview } from './overview.ts';
 import type { CallContext, Surroundings } from './session-types.ts';
@@ -17,8 +18,15 @@ export class Room {
   readonly #listeners = new Map<keyof Events, Set<Listener>>();
   #opening: Promise<unknown> = Promise.resolve();
 
+  readonly backups: BackupKeeper;
+
   constructor(surroundings: Surroundings) {
     this.surroundings = surroundings;
+    this.backups = new BackupKeeper({
+      store: surroundings.backups,
+      now: () => surroundings.now(),
+      onFailure: (failure) => this.tell('caution', noBackup(failure)),
+    });
   }
 
   on<Name extends keyof Events>(event: Name, listener: (detail: Events[Name]) => void): () => void {
@@ -86,6 +94,7 @@ export class Room {
     await open.now.settled();
     if (this.open !== open) return refuse('no study');
     const now = overview(open);
+    this.backups.look(open);
     if (always || open.told !== now.revision) {
       open.told = now.revision;
       this.tell('changed', now);

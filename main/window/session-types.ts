@@ -1,3 +1,4 @@
+import type { BackupStore } from '../backup-settings.ts';
 import type { About, Answer, Api, Events, FitProgress, Method, Overview } from '../api.ts';
 
 /** What a call brings along besides its payload. */
@@ -20,6 +21,7 @@ export interface SystemDialogs {
   readonly placeStudy: (name: string) => Promise<string | null>;
   readonly chooseTranscripts: () => Promise<readonly string[] | null>;
   readonly placeFile: (fileName: string) => Promise<string | null>;
+  readonly chooseFolder?: (title: string) => Promise<string | null>;
 }
 
 /** Paths of studies opened lately; nothing else of them is kept. Newest first. */
@@ -34,6 +36,8 @@ export interface Surroundings {
   readonly about: About;
   readonly dialogs: SystemDialogs | null;
   readonly recent: RecentPaths;
+  /** How backups are kept; none are made without it. */
+  readonly backups?: BackupStore;
   /** The folder of the demo's transcripts and of its attributes. */
   readonly demoFolder: string;
   readonly now: () => string;

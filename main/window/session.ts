@@ -7,6 +7,8 @@ import { gatheringHandlers } from './gathering.ts';
 import { headingHandlers } from './headings.ts';
 import { redoInWords, undoInWords } from './history.ts';
 import { mergePreview } from './merge-preview.ts';
+import { keepingHandlers } from './keeping.ts';
+import { recoveringHandlers } from './recovering.ts';
 import { closeStudy, openingHandlers, openStudy } from './opening.ts';
 import type { OpenStudy } from './open-study.ts';
 import { readingHandlers } from './reading.ts';
@@ -28,6 +30,8 @@ export function createSession(surroundings: Surroundings): Session {
   const room = new Room(surroundings);
   const handlers: Handlers = {
     ...openingHandlers(room),
+    ...keepingHandlers(room),
+    ...recoveringHandlers(room),
     ...gatheringHandlers(room),
     ...fitHandlers(room),
     ...evidenceHandlers(room),
