@@ -2,6 +2,7 @@ import { readdirSync } from 'node:fs';
 import { resolve } from 'node:path';
 import { svelte } from '@sveltejs/vite-plugin-svelte';
 import { defineConfig } from 'electron-vite';
+import type { Plugin } from 'vite';
 import { assemblyscript } from './.config/assemblyscript.ts';
 import { noteLicences, writeLicences } from './.config/licences.ts';
 
@@ -21,9 +22,18 @@ const bundled = { externalizeDeps: false, sourcemap: false, reportCompressedSize
 // How long each plugin took is of no use to whoever starts the app.
 const checks = { pluginTimings: false } as const;
 
+/** The reader of PDFs would load a native canvas to draw with; here it only reads text. */
+const withoutCanvas: Plugin = {
+  name: 'without-canvas',
+  transform: (code, id) =>
+    /pdfjs-dist[\\/].*[\\/]pdf\.mjs$/u.test(id)
+      ? code.replaceAll('require("@napi-rs/canvas")', 'undefined')
+      : null,
+};
+
 export default defineConfig({
   main: {
-    plugins: [assemblyscript(), noteLicences()],
+    plugins: [assemblyscript(), withoutCanvas, noteLicences()],
     build: {
       ...bundled,
       outDir: 'out/main',

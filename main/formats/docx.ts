@@ -1,45 +1,29 @@
-import { strFromU8, strToU8, unzipSync, zipSync } from 'fflate';
+import { strFromU8, strToU8, zipSync } from 'fflate';
 import mammoth from 'mammoth';
-import type { ReadRefusal } from './read-file.ts';
+import { readParts, type Archive } from './archive.ts';
+import { mostTextBytes, tooLarge } from './limits.ts';
+import type { ReadDocument, ReadRefusal, SideNote } from './read-file.ts';
+import { hasDoctype } from './xml.ts';
 
-const documentPart = 'word/document.xml';
-const mostMegabytes = 200;
+export const documentPart = 'word/document.xml';
 
-/** The names of the files in an archive, with how large they say they are; null where it is broken. */
-export function listArchive(bytes: Uint8Array): { name: string; size: number }[] | null {
-  const files: { name: string; size: number }[] = [];
-  try {
-    unzipSync(bytes, {
-      filter: ({ name, originalSize }) => {
-        files.push({ name, size: originalSize });
-        return false;
-      },
-    });
-  } catch {
-    return null;
-  }
-  return files;
-}
+const broken: ReadRefusal = { ok: false, code: 'broken file', format: 'docx' };
 
 /**
  * The text of a Word document: a line a paragraph, line breaks inside a paragraph as they are, table
- * cells of a row with tabs between them. Tracked changes are taken as accepted; comments, footnotes,
- * headers and footers are left out; nothing outside the file is followed.
+ * cells of a row with tabs between them. Tracked changes are taken as accepted; comments, footnotes
+ * and endnotes stand beside; headers and footers are left out; nothing outside the file is followed.
  */
-export async function textOfDocx(
-  bytes: Uint8Array,
-): Promise<{ readonly ok: true; readonly text: string } | ReadRefusal> {
-  const files = listArchive(bytes);
-  const broken: ReadRefusal = { ok: false, code: 'broken file', format: 'docx' };
-  if (files === null || !files.some((file) => file.name === documentPart)) return broken;
-  const megabytes = Math.ceil(files.reduce((total, file) => total + file.size, 0) / 1_000_000);
-  if (megabytes > mostMegabytes) {
-    return { ok: false, code: 'too large', megabytes, limit: mostMegabytes };
-  }
+export async function readDocx(archive: Archive): Promise<ReadDocument> {
+  const parts = readParts(archive, isText, mostTextBytes);
+  if (parts === 'too large') return tooLarge(null);
+  if (parts === 'broken' || !Object.hasOwn(parts, documentPart)) return broken;
+  // The format allows no document type, and with it no entities (ECMA-376, part 2).
+  if (Object.values(parts).some(hasDoctype)) return broken;
   let document: Element | undefined;
   try {
     await mammoth.convertToHtml(
-      { buffer: Buffer.from(withoutWrappers(bytes)) },
+      { buffer: Buffer.from(repacked(parts)) },
       {
         externalFileAccess: false,
         ignoreEmptyParagraphs: false,
@@ -51,22 +35,25 @@ export async function textOfDocx(
         },
       },
     );
+    if (document === undefined) return broken;
+    return { ok: true, text: blocksOf(document).join('\n'), notes: notesOf(document) };
   } catch {
     return broken;
   }
-  if (document === undefined) return broken;
-  return { ok: true, text: blocksOf(document).join('\n') };
+}
+
+/** Only the parts that hold text; no pictures, no programs, nothing embedded. */
+function isText(name: string): boolean {
+  return /\.(?:xml|rels)$/u.test(name) && !/\/(?:media|embeddings|theme)\//u.test(name);
 }
 
 /**
- * These elements only wrap runs, but the library would leave out what is in them. Only the parts
- * that hold text are kept.
+ * For the library: these elements only wrap runs, but it would leave out what is in them. Its reader
+ * is handed nothing but what was unpacked within limits.
  */
-function withoutWrappers(bytes: Uint8Array): Uint8Array {
-  const parts = unzipSync(bytes, { filter: ({ name }) => !/\/(?:media|embeddings)\//.test(name) });
+function repacked(parts: Record<string, Uint8Array>): Uint8Array {
   const xml = strFromU8(parts[documentPart]!);
   const wrapper = /<\/?w:(?:fldSimple|dir|bdo|moveTo)(?:\s[^<>]*)?>/g;
-  if (!wrapper.test(xml)) return bytes;
   return zipSync({ ...parts, [documentPart]: strToU8(xml.replace(wrapper, '')) }, { level: 0 });
 }
 
@@ -76,6 +63,12 @@ interface Element {
   readonly value?: string;
   readonly breakType?: string;
   readonly children?: readonly Element[];
+  readonly noteType?: string;
+  readonly commentId?: string;
+  readonly body?: readonly Element[];
+  readonly authorName?: string | null;
+  readonly notes?: { resolve(reference: Element): Element | undefined };
+  readonly comments?: readonly Element[];
 }
 
 /** The lines of paragraphs and tables, in order. */
@@ -99,4 +92,26 @@ function inline(element: Element): string {
   if (element.type === 'break') return '\n';
   if (element.type === 'noteReference' || element.type === 'commentReference') return '';
   return (element.children ?? []).map(inline).join('');
+}
+
+function notesOf(document: Element): SideNote[] {
+  const notes: SideNote[] = [];
+  const add = (kind: SideNote['kind'], note: Element | undefined): void => {
+    const text = blocksOf({ type: 'note', children: note?.body ?? [] })
+      .join('\n')
+      .trim();
+    if (text !== '') notes.push({ kind, by: note?.authorName ?? null, text });
+  };
+  const visit = (element: Element): void => {
+    if (element.type === 'noteReference') {
+      add(
+        element.noteType === 'endnote' ? 'endnote' : 'footnote',
+        document.notes?.resolve(element),
+      );
+    }
+    for (const child of element.children ?? []) visit(child);
+  };
+  visit(document);
+  for (const comment of document.comments ?? []) add('comment', comment);
+  return notes;
 }

@@ -1,3 +1,16 @@
 export { decode } from './decode.ts';
-export { readTranscript } from './read-transcript.ts';
-export type { Format, ReadFile, ReadRefusal, ReadResult } from './read-file.ts';
+export { mostFileMegabytes } from './limits.ts';
+export { readSource, readTranscript } from './read-transcript.ts';
+export type {
+  DocumentFormat,
+  Format,
+  ReadFile,
+  ReadRefusal,
+  ReadResult,
+  ReadSource,
+  ReadTable,
+  Sheet,
+  SideNote,
+} from './read-file.ts';
+export { readCsv } from './table.ts';
+export { walkXml } from './xml.ts';

@@ -1,36 +1,75 @@
 import { turnsFromText } from '../../engine/text/index.ts';
 import { layOutCues } from './cues.ts';
 import { decode } from './decode.ts';
-import { textOfDocx } from './docx.ts';
-import type { Format, ReadFile, ReadResult } from './read-file.ts';
+import { readDocx } from './docx.ts';
+import { isHtml, readHtml } from './html.ts';
+import { mostFileMegabytes, mostTextBytes, tooLarge } from './limits.ts';
+import { readOdt } from './odt.ts';
+import { readPdf } from './pdf.ts';
+import type {
+  DocumentFormat,
+  ReadDocument,
+  ReadFile,
+  ReadResult,
+  ReadSource,
+} from './read-file.ts';
+import { readRtf } from './rtf.ts';
 import { sniff } from './sniff.ts';
 import { isSrt, parseSrt, withoutTags } from './srt.ts';
+import { hasTableName, readCsv, readXlsx } from './table.ts';
 import { otherTextFormat } from './text.ts';
 import { isVtt, parseVtt } from './vtt.ts';
 
 /**
- * A transcript from the bytes of its file. What is in the file decides what it is; its name is asked
- * only where a text could be anything.
+ * A transcript, or a table of answers, from the bytes of its file. What is in the file decides what
+ * it is; its name is asked only where a text could be anything.
  */
-export async function readTranscript(bytes: Uint8Array, fileName: string): Promise<ReadResult> {
+export async function readSource(bytes: Uint8Array, fileName: string): Promise<ReadSource> {
   if (bytes.length === 0) return { ok: false, code: 'empty file' };
+  if (bytes.length > mostFileMegabytes * 1_000_000) {
+    return tooLarge(bytes.length, mostFileMegabytes);
+  }
   const sniffed = sniff(bytes);
-  if (sniffed.kind === 'locked') return { ok: false, code: 'locked file' };
-  if (sniffed.kind === 'broken docx') return { ok: false, code: 'broken file', format: 'docx' };
-  if (sniffed.kind === 'other') {
-    return { ok: false, code: 'unknown format', format: sniffed.format };
+  switch (sniffed.kind) {
+    case 'locked':
+      return { ok: false, code: 'locked file' };
+    case 'broken':
+      return { ok: false, code: 'broken file', format: sniffed.format };
+    case 'other':
+      return { ok: false, code: 'unknown format', format: sniffed.format };
+    case 'docx':
+      return document('docx', await readDocx(sniffed.archive));
+    case 'odt':
+      return document('odt', readOdt(sniffed.archive));
+    case 'rtf':
+      return document('rtf', readRtf(bytes));
+    case 'pdf':
+      return document('pdf', await readPdf(bytes));
+    case 'xlsx': {
+      const table = await readXlsx(sniffed.archive);
+      return table.ok ? { ...table, kind: 'table' } : table;
+    }
+    case 'writing':
+      return readWriting(bytes, fileName);
   }
-  if (sniffed.kind === 'docx') {
-    const document = await textOfDocx(bytes);
-    if (!document.ok) return document;
-    if (document.text.trim() === '') return { ok: false, code: 'empty file' };
-    return spoken('docx', { text: document.text, ...turnsFromText(document.text) });
-  }
+}
 
+/** A transcript from the bytes of its file; a table of answers is refused as one. */
+export async function readTranscript(bytes: Uint8Array, fileName: string): Promise<ReadResult> {
+  const read = await readSource(bytes, fileName);
+  if (!read.ok) return read;
+  if (read.kind === 'table') return { ok: false, code: 'a table' };
+  return { ok: true, value: read.value };
+}
+
+function readWriting(bytes: Uint8Array, fileName: string): ReadSource {
+  if (bytes.length > mostTextBytes) return tooLarge(bytes.length);
   const decoded = decode(bytes);
   if (!decoded.ok) {
-    const claimed = /\.docx$/i.test(fileName) && decoded.code !== 'empty file';
-    return claimed ? { ok: false, code: 'broken file', format: 'docx' } : decoded;
+    const claimed = claims.find(([ending]) => ending.test(fileName))?.[1];
+    return claimed !== undefined && decoded.code !== 'empty file'
+      ? { ok: false, code: 'broken file', format: claimed }
+      : decoded;
   }
   const { text } = decoded;
   if (isVtt(text)) {
@@ -38,12 +77,36 @@ export async function readTranscript(bytes: Uint8Array, fileName: string): Promi
     return spoken('vtt', layOutCues(cues, details));
   }
   if (isSrt(text)) return spoken('srt', layOutCues(withoutTags(parseSrt(text)), []));
+  if (isHtml(text, fileName)) return document('html', readHtml(text));
+  if (hasTableName(fileName)) {
+    const table = readCsv(text);
+    if (table !== null) return table.ok ? { ...table, kind: 'table' } : table;
+    return spoken('text', { text, ...turnsFromText(text) });
+  }
   const other = otherTextFormat(text, fileName);
   if (other !== null) return { ok: false, code: 'unknown format', format: other };
   return spoken('text', { text, ...turnsFromText(text) });
 }
 
-function spoken(format: Format, file: Omit<ReadFile, 'format'>): ReadResult {
+const claims = [
+  [/\.docx$/iu, 'docx'],
+  [/\.odt$/iu, 'odt'],
+  [/\.xlsx$/iu, 'xlsx'],
+  [/\.pdf$/iu, 'pdf'],
+  [/\.rtf$/iu, 'rtf'],
+] as const;
+
+function document(format: DocumentFormat, read: ReadDocument): ReadSource {
+  if (!read.ok) return read;
+  const text = read.text.replace(/\r\n?/gu, '\n');
+  if (text.trim() === '') return { ok: false, code: 'empty file' };
+  return spoken(format, { text, ...turnsFromText(text), notes: read.notes });
+}
+
+function spoken(
+  format: DocumentFormat,
+  file: Omit<ReadFile, 'format' | 'notes'> & { readonly notes?: ReadFile['notes'] },
+): ReadSource {
   if (file.turns.length === 0) return { ok: false, code: 'no speech', format };
-  return { ok: true, value: { format, ...file } };
+  return { ok: true, kind: 'transcript', value: { notes: [], format, ...file } };
 }

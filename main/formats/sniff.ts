@@ -1,14 +1,18 @@
-import { strFromU8, unzipSync } from 'fflate';
-import { listArchive } from './docx.ts';
+import { openArchive, type Archive } from './archive.ts';
+import { documentPart } from './docx.ts';
+import { isPdf } from './pdf.ts';
+import { isRtf } from './rtf.ts';
+
+type InArchive = 'docx' | 'odt' | 'xlsx';
 
 /** What a file is, going by its first bytes and, for an archive, by what is in it. */
 export type Sniffed =
-  | { readonly kind: 'docx' | 'broken docx' | 'locked' | 'writing' }
+  | { readonly kind: 'pdf' | 'rtf' | 'locked' | 'writing' }
+  | { readonly kind: InArchive; readonly archive: Archive }
+  | { readonly kind: 'broken'; readonly format: InArchive }
   | { readonly kind: 'other'; readonly format: string };
 
 const beginnings: readonly (readonly [format: string, at: number, bytes: string])[] = [
-  ['pdf', 0, '%PDF'],
-  ['rtf', 0, '{\\rtf'],
   ['image', 0, '\x89PNG'],
   ['image', 0, '\xff\xd8\xff'],
   ['image', 0, 'GIF8'],
@@ -42,43 +46,38 @@ export function sniff(bytes: Uint8Array): Sniffed {
     if (names.includes('EncryptedPackage')) return { kind: 'locked' };
     return { kind: 'other', format: names.includes('WordDocument') ? 'doc' : 'old office file' };
   }
+  if (isRtf(bytes)) return { kind: 'rtf' };
   for (const [format, at, mark] of beginnings) {
     if (first.startsWith(mark, at)) return { kind: 'other', format };
   }
-  return { kind: 'writing' };
+  return isPdf(bytes) ? { kind: 'pdf' } : { kind: 'writing' };
 }
 
 function sniffArchive(bytes: Uint8Array): Sniffed {
-  const files = listArchive(bytes);
+  const archive = openArchive(bytes);
   // A torn archive has lost its list at the end; the names also stand before each file.
-  if (files === null) {
+  if (archive === null) {
     const torn = latin1(bytes.subarray(0, 1 << 20));
+    if (torn.includes('opendocument.text')) return { kind: 'broken', format: 'odt' };
+    if (torn.includes('xl/')) return { kind: 'broken', format: 'xlsx' };
     if (torn.includes('[Content_Types].xml') || torn.includes('word/')) {
-      return { kind: 'broken docx' };
+      return { kind: 'broken', format: 'docx' };
     }
     return { kind: 'other', format: 'archive' };
   }
-  const has = (name: string): boolean => files.some((file) => file.name === name);
-  if (has('word/document.xml')) return { kind: 'docx' };
-  if (has('xl/workbook.xml')) return { kind: 'other', format: 'xlsx' };
+  const has = (name: string): boolean => archive.names.includes(name);
+  if (has(documentPart)) return { kind: 'docx', archive };
+  if (has('xl/workbook.xml')) return { kind: 'xlsx', archive };
   if (has('ppt/presentation.xml')) return { kind: 'other', format: 'pptx' };
-  if (has('[Content_Types].xml')) return { kind: 'broken docx' };
-  const type = files.find((file) => file.name === 'mimetype' && file.size < 200);
-  if (type !== undefined) {
-    const mime = readSmall(bytes, 'mimetype');
-    if (mime.includes('opendocument.text')) return { kind: 'other', format: 'odt' };
+  const type = archive.read('mimetype', 200);
+  if (type instanceof Uint8Array) {
+    const mime = latin1(type);
+    if (mime.includes('opendocument.text')) return { kind: 'odt', archive };
     if (mime.includes('opendocument.spreadsheet')) return { kind: 'other', format: 'ods' };
     if (mime.includes('epub')) return { kind: 'other', format: 'epub' };
   }
+  if (has('[Content_Types].xml')) return { kind: 'broken', format: 'docx' };
   return { kind: 'other', format: 'archive' };
-}
-
-function readSmall(bytes: Uint8Array, wanted: string): string {
-  try {
-    return strFromU8(unzipSync(bytes, { filter: ({ name }) => name === wanted })[wanted]!);
-  } catch {
-    return '';
-  }
 }
 
 function latin1(bytes: Uint8Array): string {

@@ -3,20 +3,16 @@
  * the ending of its name; null for a transcript.
  */
 export function otherTextFormat(text: string, fileName: string): string | null {
-  const beginning = text.slice(0, 400).trimStart().toLowerCase();
-  if (beginning.startsWith('<!doctype html') || beginning.startsWith('<html')) return 'html';
-  if (beginning.startsWith('<?xml')) return 'xml';
+  if (text.slice(0, 400).trimStart().toLowerCase().startsWith('<?xml')) {
+    return /\.qdc$/iu.test(fileName) ? 'qdc' : 'xml';
+  }
   const ending = /\.([^./\\]+)$/.exec(fileName)?.[1]?.toLowerCase() ?? '';
   return endings.has(ending) ? ending : null;
 }
 
 const endings: ReadonlySet<string> = new Set([
-  'csv',
-  'tsv',
   'json',
   'xml',
-  'html',
-  'htm',
   'css',
   'js',
   'ts',

@@ -1,7 +1,7 @@
 import type { Refusal } from '../../engine/study/index.ts';
 import type { FitRefused, SettingFault } from '../../engine/themes/index.ts';
 import type { PlanRefusal } from '../decisions.ts';
-import type { ReadRefusal } from '../formats/index.ts';
+import type { Format, ReadRefusal } from '../formats/index.ts';
 import type { MissedFile } from '../gather/find-files.ts';
 import type { ParsedPlan } from '../plan.ts';
 import type { StudyFileFailure } from '../project/index.ts';
@@ -30,17 +30,23 @@ export function sentenceForSkipped(refusal: FileRefusal): string {
     case 'empty file':
       return 'The file is empty; export the transcript again.';
     case 'not text':
-      return 'The file holds no readable text; save the transcript as .txt, .docx, .vtt or .srt.';
+      return `The file holds no readable text; ${saveAs}.`;
     case 'unknown encoding':
       return 'The letters in the file are stored in a way that is not recognised; save it again as UTF-8 text.';
     case 'unknown format':
-      return `Files of this kind (${refusal.format}) are not read; save the transcript as .txt, .docx, .vtt or .srt.`;
+      return sentenceForKind(refusal.format);
     case 'broken file':
-      return `The file says that it is ${formatNames[refusal.format]} and is damaged; open it in the program that made it and save it again.`;
+      return `The file says that it is ${formatNames[refusal.format]} and is damaged${refusal.where === undefined ? '' : ` ${refusal.where}`}; open it in the program that made it and save it again.`;
     case 'locked file':
       return 'The file is locked with a password; save it without one, then try again.';
     case 'too large':
-      return `The file would unpack to about ${refusal.megabytes} MB, more than the ${refusal.limit} MB that can be read; divide it.`;
+      return `The file holds ${refusal.megabytes === null ? 'more than the' : `about ${refusal.megabytes} MB, more than the`} ${refusal.limit} MB that can be read; divide it, or leave out its pictures.`;
+    case 'scanned':
+      return `The file holds ${refusal.pages === 1 ? 'a page' : `${refusal.pages} pages`} that were scanned, as pictures without text; have their text recognised first, or ask for the document that was printed.`;
+    case 'too slow':
+      return `The file was given up after ${refusal.seconds} seconds; open it in the program that made it and save it as plain text.`;
+    case 'a table':
+      return 'The file is a table of answers; say which of its columns hold text.';
     case 'no speech':
       return 'There is no speech in the file, only headings; check that it is the whole transcript.';
     case 'duplicate':
@@ -54,12 +60,33 @@ export function sentenceForSkipped(refusal: FileRefusal): string {
   }
 }
 
-const formatNames = {
+const saveAs = 'save the transcript as .txt, .docx, .odt, .rtf, .pdf, .vtt or .srt';
+
+function sentenceForKind(format: string): string {
+  if (format === 'qdc') {
+    return 'The file is a codebook; add it with “Codebook…” in Shape, or with --codebook.';
+  }
+  if (format === 'doc') {
+    return 'Documents of this old kind (.doc) are not read; save it as .docx, .odt or .rtf.';
+  }
+  if (format === 'recording') {
+    return 'The file is a recording, and only what was written down can be read; add its transcript.';
+  }
+  return `Files of this kind (${format}) are not read; ${saveAs}.`;
+}
+
+const formatNames: Record<Format, string> = {
   text: 'a text',
   vtt: 'a WebVTT file',
   srt: 'a SubRip file',
   docx: 'a .docx document',
-} as const;
+  odt: 'an .odt document',
+  rtf: 'an .rtf document',
+  pdf: 'a .pdf document',
+  html: 'a web page',
+  csv: 'a table (.csv)',
+  xlsx: 'a workbook (.xlsx)',
+};
 
 export function sentenceForFit(
   refusal:
