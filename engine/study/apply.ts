@@ -1,6 +1,7 @@
 import type { Edit, EditKind, Entry } from './edit.ts';
 import { codingRules } from './edits/codings.ts';
 import { copyRules } from './edits/copies.ts';
+import { fieldNoteRules } from './edits/field-notes.ts';
 import { fitRules } from './edits/fits.ts';
 import { forgettingRules } from './edits/forgetting.ts';
 import { headingRules } from './edits/headings.ts';
@@ -23,6 +24,7 @@ const rules: Rules<EditKind> = {
   ...guideRules,
   ...identifierRules,
   ...participantRules,
+  ...fieldNoteRules,
   ...themeRules,
   ...headingRules,
   ...wordRules,

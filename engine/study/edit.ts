@@ -6,6 +6,8 @@ import type {
   Definition,
   EvidenceKind,
   Exported,
+  FieldNote,
+  FieldNoteId,
   Fit,
   FitId,
   Heading,
@@ -129,6 +131,14 @@ export type Edit =
       readonly participant: ParticipantId;
       readonly from: Omit<Participant, 'id'>;
       readonly to: Omit<Participant, 'id'>;
+    }
+  | { readonly kind: 'fieldNoteKept'; readonly note: FieldNote }
+  | { readonly kind: 'fieldNoteLetGo'; readonly note: FieldNote }
+  | {
+      readonly kind: 'fieldNoteDescribed';
+      readonly note: FieldNoteId;
+      readonly from: Pick<FieldNote, 'name' | 'transcript'>;
+      readonly to: Pick<FieldNote, 'name' | 'transcript'>;
     }
   | {
       readonly kind: 'themeAdded';

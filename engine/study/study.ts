@@ -12,6 +12,7 @@ export type FitId = string;
 export type HeadingId = string;
 export type IdentifierId = string;
 export type QuestionId = string;
+export type FieldNoteId = string;
 
 /** Bytes kept in the study file, addressed by the sequence number of their record. */
 export interface BlobRef {
@@ -127,6 +128,18 @@ export interface Identifier {
   readonly putIn: readonly TranscriptId[];
   /** For what stays: where it stays, or null for everywhere, later transcripts included. */
   readonly places: readonly TranscriptPlace[] | null;
+}
+
+/** What was written down beside the recordings. Kept for reading; no model ever sees it. */
+export interface FieldNote {
+  readonly id: FieldNoteId;
+  readonly name: string;
+  /** The transcript that it speaks of; null for the study as a whole. */
+  readonly transcript: TranscriptId | null;
+  readonly source: Transcript['source'];
+  readonly text: BlobRef;
+  /** Its length in UTF-16 code units. */
+  readonly length: number;
 }
 
 /** A codebook entry (MacQueen, McLellan, Kay & Milstein 1998), without its name. */
@@ -342,6 +355,7 @@ export interface Study {
   readonly readers: ReadonlyMap<ReaderId, Reader>;
   readonly transcripts: ReadonlyMap<TranscriptId, Transcript>;
   readonly participants: ReadonlyMap<ParticipantId, Participant>;
+  readonly fieldNotes: ReadonlyMap<FieldNoteId, FieldNote>;
   /** In codebook order. */
   readonly themes: ReadonlyMap<ThemeId, Theme>;
   /** In the order in which they are shown. */
@@ -377,6 +391,7 @@ export const emptyStudy: Study = {
   readers: new Map(),
   transcripts: new Map(),
   participants: new Map(),
+  fieldNotes: new Map(),
   themes: new Map(),
   headings: new Map(),
   under: new Map(),

@@ -13,6 +13,8 @@ export const studySentences: Record<RefusalCode, Say> = {
   'codings remain': (s) =>
     `${quoted(s)} still carries codings; remove them first, or keep the transcript.`,
   'empty name': () => 'A name may not be empty; type at least one letter.',
+  'field notes remain': (s) =>
+    `Field notes stand beside ${quoted(s)}; remove them first, or tie them to nothing.`,
   'fit is in use': () => 'This fit is on screen; choose another one first.',
   'heading in use': (s) =>
     `Themes still stand under ${quoted(s)}; take them out from under it first.`,
@@ -47,6 +49,8 @@ export const studySentences: Record<RefusalCode, Say> = {
     `${quoted(s)} has codings, a fit or a memo that refer to it; set it aside instead of removing it.`,
   'theme set aside': (s) => `${quoted(s)} is set aside; bring it back first.`,
   'unknown coding': () => 'That coding is not in the study any more; look at the passage again.',
+  'unknown field note': (s) =>
+    `The field note ${quoted(s)} is not in the study any more; look at the list again.`,
   'unknown fit': () => 'That fit is not in the study; choose one from the list of fits.',
   'unknown heading': () => 'That heading is not in the study any more; choose another one.',
   'unknown memo': () => 'That memo is not in the study any more; write a new one.',

@@ -41,6 +41,9 @@ export const transcriptRules: Rules<
       if (!sameJson(current, transcript)) return refused('changed since', current.name);
       if (hasDecisions(study, transcript.id)) return refused('codings remain', current.name);
       if (hasMemos(study, transcript.id)) return refused('memos remain', current.name);
+      if ([...study.fieldNotes.values()].some((note) => note.transcript === transcript.id)) {
+        return refused('field notes remain', current.name);
+      }
       return done({ ...study, transcripts: withoutEntry(study.transcripts, transcript.id) });
     },
     inverse: ({ transcript }) => ({ kind: 'transcriptGathered', transcript }),

@@ -8,6 +8,7 @@ import {
   type EditKind,
   type EditOf,
   type Identifier,
+  type FieldNote,
   type Study,
   type TextState,
   type Theme,
@@ -60,6 +61,14 @@ interface Case<Kind extends EditKind> {
 }
 
 const lars = { id: 'lars', name: 'Lars', attributes: { village: 'Nes' } };
+const walk: FieldNote = {
+  id: 'walk',
+  name: 'Walk',
+  transcript: 'harbour',
+  source: { fileName: 'walk.txt', format: 'text', hash: 'h' },
+  text: { sequence: 41, bytes: 12 },
+  length: 12,
+};
 const quay = { ...harbour, id: 'quay', name: 'West/Quay' };
 
 function changing(id: string, changes: Partial<Theme>, study = island): Expectation {
@@ -555,6 +564,41 @@ const cases: { readonly [Kind in EditKind]: readonly Case<Kind>[] } = {
           name: 'P01',
           attributes: { village: 'Nes' },
         }),
+      },
+    },
+  ],
+  fieldNoteKept: [
+    {
+      does: 'keeps a note beside a transcript',
+      edit: { kind: 'fieldNoteKept', note: walk },
+      expected: { fieldNotes: new Map([['walk', walk]]) },
+    },
+    {
+      does: 'keeps a note on the study as a whole',
+      edit: { kind: 'fieldNoteKept', note: { ...walk, transcript: null } },
+      expected: { fieldNotes: new Map([['walk', { ...walk, transcript: null }]]) },
+    },
+  ],
+  fieldNoteLetGo: [
+    {
+      does: 'removes it',
+      before: after(island, { kind: 'fieldNoteKept', note: walk }),
+      edit: { kind: 'fieldNoteLetGo', note: walk },
+      expected: { fieldNotes: new Map() },
+    },
+  ],
+  fieldNoteDescribed: [
+    {
+      does: 'changes its name and the transcript that it speaks of',
+      before: after(island, { kind: 'fieldNoteKept', note: walk }),
+      edit: {
+        kind: 'fieldNoteDescribed',
+        note: 'walk',
+        from: { name: 'Walk', transcript: 'harbour' },
+        to: { name: 'Walk home', transcript: null },
+      },
+      expected: {
+        fieldNotes: new Map([['walk', { ...walk, name: 'Walk home', transcript: null }]]),
       },
     },
   ],

@@ -6,6 +6,7 @@ import {
   refusalCodes,
   type Edit,
   type Identifier,
+  type FieldNote,
   type RefusalCode,
   type SettingValue,
   type Study,
@@ -62,6 +63,14 @@ interface Case {
 }
 
 const otherCopy = { head: 'aa', shared: 12, records: 31, fits: [], branch: null };
+const walk: FieldNote = {
+  id: 'walk',
+  name: 'Walk',
+  transcript: 'mill',
+  source: { fileName: 'walk.txt', format: 'text', hash: 'h' },
+  text: { sequence: 41, bytes: 12 },
+  length: 12,
+};
 const merged = after(island, { kind: 'themesMerged', into: 'sea', from: ['work'] });
 const aside = after(island, { kind: 'themeSetAside', theme: 'work' });
 const onHarbour = coding('on-harbour');
