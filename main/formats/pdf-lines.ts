@@ -20,6 +20,8 @@ export interface PdfText {
 }
 
 interface PdfLine {
+  /** Whether it begins with a number that stands small and raised, as footnotes do. */
+  readonly numbered: boolean;
   /** Numbers that stand small and raised in the line: marks of footnotes, not part of its text. */
   readonly marks: readonly string[];
   readonly text: string;
@@ -79,7 +81,9 @@ function withoutFootnotes(
   const isSmall = ({ height }: PdfLine): boolean => height < 0.95 * usual;
   const bears = ({ text }: PdfLine): boolean =>
     marks.has(/^(\d{1,3})(?!\d)/u.exec(text)?.[1] ?? '');
-  const from = lines.findIndex((line, index) => bears(line) && lines.slice(index).every(isSmall));
+  const from = lines.findIndex(
+    (line, index) => bears(line) && (line.numbered || lines.slice(index).every(isSmall)),
+  );
   if (from < 0) return { text: lines, notes: [] };
   const notes: PdfLine[][] = [];
   for (const line of lines.slice(from)) {
@@ -116,10 +120,12 @@ function lineOf(runs: readonly PdfRun[]): PdfLine {
   const tallest = Math.max(...runs.map(({ height }) => height));
   const ground = Math.min(...runs.map(({ y }) => y));
   const marks: string[] = [];
+  let numbered = false;
   let text = '';
   let reached = runs[0]!.x;
   for (const run of runs) {
     const raised = run.height < 0.8 * tallest && run.y > ground + 0.12 * tallest;
+    if (raised && text === '' && /^\d{1,3}$/u.test(run.text.trim())) numbered = true;
     if (raised && text !== '' && /^\d{1,3}$/u.test(run.text.trim())) {
       marks.push(run.text.trim());
       reached = Math.max(reached, run.x + run.width);
@@ -138,6 +144,7 @@ function lineOf(runs: readonly PdfRun[]): PdfLine {
   return {
     text: text.replace(/ +/gu, ' ').trim(),
     marks,
+    numbered,
     left: runs[0]!.x,
     right: reached,
     y: ground,
@@ -223,11 +230,14 @@ function isDivided(text: string): boolean {
   return /[\p{L}\p{M}](?:-|\u00ad|\u2010)$/u.test(text);
 }
 
+/** Words that stand whole in a line, hyphens of their own included. */
 function wordsOf(lines: readonly PdfLine[]): ReadonlySet<string> {
   const words = new Set<string>();
   for (const { text } of lines) {
-    // Not the last word of a line: it may be half of one.
-    for (const word of text.match(/[\p{L}\p{M}]+(?:[-\u2010][\p{L}\p{M}]+)+(?=.)/gu) ?? []) {
+    // Neither end of a line counts: what stands there may be half a word.
+    for (const [word] of text.matchAll(
+      /(?<=[^\p{L}\p{M}-])[\p{L}\p{M}]+(?:[-\u2010][\p{L}\p{M}]+)*(?=[^\p{L}\p{M}-])/gu,
+    )) {
       words.add(word.toLowerCase().replaceAll('\u2010', '-'));
     }
   }
@@ -236,11 +246,15 @@ function wordsOf(lines: readonly PdfLine[]): ReadonlySet<string> {
 
 function join(text: string, next: string, whole: ReadonlySet<string>): string {
   if (!isDivided(text)) return `${text} ${next}`;
-  const first = /[\p{L}\p{M}]+(?=[-\u00ad\u2010]$)/u.exec(text)?.[0] ?? '';
-  const second = /^[\p{L}\p{M}]+/u.exec(next)?.[0] ?? '';
-  const soft = text.endsWith('\u00ad');
-  // A capital behind it, or the same word with its hyphen elsewhere: the hyphen is its own.
-  const own = !soft && (/^\p{Lu}/u.test(next) || whole.has(`${first}-${second}`.toLowerCase()));
+  const first = (/[\p{L}\p{M}]+(?=[-\u00ad\u2010]$)/u.exec(text)?.[0] ?? '').toLowerCase();
+  const second = (/^[\p{L}\p{M}]+/u.exec(next)?.[0] ?? '').toLowerCase();
   if (second === '') return `${text} ${next}`;
-  return own ? `${text}${next}` : `${text.slice(0, -1)}${next}`;
+  const joined = `${text.slice(0, -1)}${next}`;
+  if (text.endsWith('\u00ad') || whole.has(`${first}${second}`)) return joined;
+  // A capital behind it, the same word with its hyphen elsewhere, or two words: it has a hyphen.
+  const own =
+    /^\p{Lu}/u.test(next) ||
+    whole.has(`${first}-${second}`) ||
+    (whole.has(first) && whole.has(second));
+  return own ? `${text}${next}` : joined;
 }

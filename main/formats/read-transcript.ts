@@ -8,6 +8,7 @@ import { readOdt } from './odt.ts';
 import { readPdf } from './pdf.ts';
 import type {
   DocumentFormat,
+  Format,
   ReadDocument,
   ReadFile,
   ReadResult,
@@ -33,6 +34,13 @@ export async function readSource(bytes: Uint8Array, fileName: string): Promise<R
   switch (sniffed.kind) {
     case 'locked':
       return { ok: false, code: 'locked file' };
+    case 'torn archive': {
+      // Too little is left to say what it was: its name does.
+      const format = formatClaimed(fileName);
+      return format === null
+        ? { ok: false, code: 'unknown format', format: 'archive' }
+        : { ok: false, code: 'broken file', format };
+    }
     case 'broken':
       return { ok: false, code: 'broken file', format: sniffed.format };
     case 'other':
@@ -66,9 +74,9 @@ function readWriting(bytes: Uint8Array, fileName: string): ReadSource {
   if (bytes.length > mostTextBytes) return tooLarge(bytes.length);
   const decoded = decode(bytes);
   if (!decoded.ok) {
-    const claimed = claims.find(([ending]) => ending.test(fileName))?.[1];
-    return claimed !== undefined && decoded.code !== 'empty file'
-      ? { ok: false, code: 'broken file', format: claimed }
+    const format = formatClaimed(fileName);
+    return format !== null && decoded.code !== 'empty file'
+      ? { ok: false, code: 'broken file', format }
       : decoded;
   }
   const { text } = decoded;
@@ -95,6 +103,11 @@ const claims = [
   [/\.pdf$/iu, 'pdf'],
   [/\.rtf$/iu, 'rtf'],
 ] as const;
+
+/** What the ending of a name says, for what is no writing. */
+function formatClaimed(fileName: string): Format | null {
+  return claims.find(([ending]) => ending.test(fileName))?.[1] ?? null;
+}
 
 function document(format: DocumentFormat, read: ReadDocument): ReadSource {
   if (!read.ok) return read;

@@ -7,7 +7,7 @@ type InArchive = 'docx' | 'odt' | 'xlsx';
 
 /** What a file is, going by its first bytes and, for an archive, by what is in it. */
 export type Sniffed =
-  | { readonly kind: 'pdf' | 'rtf' | 'locked' | 'writing' }
+  | { readonly kind: 'pdf' | 'rtf' | 'locked' | 'writing' | 'torn archive' }
   | { readonly kind: InArchive; readonly archive: Archive }
   | { readonly kind: 'broken'; readonly format: InArchive }
   | { readonly kind: 'other'; readonly format: string };
@@ -63,7 +63,7 @@ function sniffArchive(bytes: Uint8Array): Sniffed {
     if (torn.includes('[Content_Types].xml') || torn.includes('word/')) {
       return { kind: 'broken', format: 'docx' };
     }
-    return { kind: 'other', format: 'archive' };
+    return { kind: 'torn archive' };
   }
   const has = (name: string): boolean => archive.names.includes(name);
   if (has(documentPart)) return { kind: 'docx', archive };

@@ -67,6 +67,7 @@ function withoutTranscript(study: Study, id: string): Study {
     transcripts: withoutEntry(study.transcripts, id),
     codings: withoutEntry(study.codings, id),
     nones: withoutEntry(study.nones, id),
+    fieldNotes: new Map([...study.fieldNotes].filter(([, { transcript }]) => transcript !== id)),
     memos: new Map(
       [...study.memos].filter(
         ([, { subject }]) =>

@@ -568,6 +568,35 @@ const refusals: { readonly [Code in RefusalCode]: readonly Case[] } = {
       subject: 'Living',
     },
   ],
+  'field notes remain': [
+    {
+      what: 'to remove a transcript beside which a field note stands',
+      before: after(
+        island,
+        { kind: 'transcriptGathered', transcript: { ...mill, id: 'quay', name: 'Quay' } },
+        { kind: 'fieldNoteKept', note: { ...walk, transcript: 'quay' } },
+      ),
+      edit: { kind: 'transcriptRemoved', transcript: { ...mill, id: 'quay', name: 'Quay' } },
+      subject: 'Quay',
+    },
+  ],
+  'unknown field note': [
+    {
+      what: 'to remove a field note that is not there',
+      edit: { kind: 'fieldNoteLetGo', note: walk },
+      subject: 'Walk',
+    },
+    {
+      what: 'to describe a field note that is not there',
+      edit: {
+        kind: 'fieldNoteDescribed',
+        note: 'walk',
+        from: { name: 'Walk', transcript: 'mill' },
+        to: { name: 'Way', transcript: null },
+      },
+      subject: 'Walk',
+    },
+  ],
   'memos remain': [
     {
       what: 'to remove a transcript that a memo is about',

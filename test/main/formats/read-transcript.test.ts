@@ -12,6 +12,8 @@ describe('what is in a file decides what it is', () => {
     [talk, 'a.vtt', 'text'],
     [talk, 'a.md', 'text'],
     [talk, 'a', 'text'],
+    ['<!DOCTYPE html><p>INT: How?<p>P07: Well.', 'a.txt', 'html'],
+    ['{\\rtf1 INT: How?\\par P07: Well.}', 'a.txt', 'rtf'],
   ])('%j in %s', async (text, name, format) => {
     const result = await readTranscript(strToU8(text), name);
     expect(result.ok && result.value.format).toBe(format);
@@ -20,25 +22,12 @@ describe('what is in a file decides what it is', () => {
 
 describe('refused by name is', () => {
   test.each<[string, string, Uint8Array]>([
-    ['pdf', 'a.txt', strToU8('%PDF-1.7 …')],
-    ['rtf', 'a.txt', strToU8('{\\rtf1 text}')],
     ['image', 'a.txt', Uint8Array.of(0x89, 0x50, 0x4e, 0x47, 13, 10, 26, 10)],
     ['recording', 'a.mp3', Uint8Array.of(0x49, 0x44, 0x33, 4, 0, 0)],
     ['recording', 'a.m4a', strToU8('\0\0\0 ftypM4A ')],
-    ['html', 'a.txt', strToU8('<!DOCTYPE html><p>INT: How?')],
     ['xml', 'a.txt', strToU8('<?xml version="1.0"?><a/>')],
-    ['csv', 'attributes.CSV', strToU8('participant,age\nP07,40')],
+    ['qdc', 'codes.qdc', strToU8('<?xml version="1.0"?><CodeBook/>')],
     ['json', 'plan.json', strToU8('{"themes": []}')],
-    [
-      'odt',
-      'a.docx',
-      zipSync({ mimetype: [strToU8('application/vnd.oasis.opendocument.text'), { level: 0 }] }),
-    ],
-    [
-      'xlsx',
-      'a.docx',
-      zipSync({ '[Content_Types].xml': strToU8('x'), 'xl/workbook.xml': strToU8('x') }),
-    ],
     ['archive', 'a.zip', zipSync({ 'a.txt': strToU8(talk) })],
     [
       'doc',
@@ -82,6 +71,29 @@ describe('refused is', () => {
       code: 'no speech',
       format: 'text',
     });
+  });
+
+  test('a table of answers, where a transcript is wanted', async () => {
+    expect(await readTranscript(strToU8('participant,age\nP07,40'), 'a.CSV')).toEqual({
+      ok: false,
+      code: 'a table',
+    });
+  });
+
+  test.each([
+    ['%PDF-1.7 …', 'a.txt', 'pdf'],
+    ['{\\rtf1 text', 'a.txt', 'rtf'],
+  ])('what says that it is a format and is not: %j', async (text, name, format) => {
+    expect(await readTranscript(strToU8(text), name)).toEqual({
+      ok: false,
+      code: 'broken file',
+      format,
+    });
+  });
+
+  test('more than 200 MB, unread', async () => {
+    const result = await readTranscript(new Uint8Array(200_000_001), 'a.txt');
+    expect(result).toEqual({ ok: false, code: 'too large', megabytes: 201, limit: 200 });
   });
 
   test('a file that is no writing', async () => {

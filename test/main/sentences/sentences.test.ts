@@ -54,6 +54,9 @@ describe('every refusal is one sentence that says what to do', () => {
     'locked file': { ok: false, code: 'locked file' },
     'too large': { ok: false, code: 'too large', megabytes: 900, limit: 200 },
     'no speech': { ok: false, code: 'no speech', format: 'vtt' },
+    scanned: { ok: false, code: 'scanned', pages: 4 },
+    'too slow': { ok: false, code: 'too slow', seconds: 60 },
+    'a table': { ok: false, code: 'a table' },
   };
   const skipped: FileRefusal[] = [
     ...Object.values(read),
