@@ -1,3 +1,4 @@
+import type { getDocument } from 'pdfjs-dist';
 import type { TextItem } from 'pdfjs-dist/types/src/display/api.js';
 import { mostTextBytes, tooLarge } from './limits.ts';
 import { textOfPages, type PdfPage } from './pdf-lines.ts';
@@ -5,11 +6,13 @@ import type { ReadDocument, SideNote } from './read-file.ts';
 
 const mostPages = 5_000;
 
+type Library = { readonly getDocument: typeof getDocument };
+
 /** Classes of a browser that the library names as it starts and uses only to draw. */
 class Unused {}
 
 /** The library, once; its other half runs on this thread, so that nothing is loaded by address. */
-async function library(): Promise<typeof import('pdfjs-dist')> {
+async function library(): Promise<Library> {
   const names = globalThis as Record<string, unknown>;
   for (const name of ['DOMMatrix', 'ImageData', 'Path2D']) names[name] ??= Unused;
   const [pdf, worker] = await Promise.all([
@@ -31,8 +34,8 @@ export function isPdf(bytes: Uint8Array): boolean {
  * Scripts, forms, attachments and links are not looked at.
  */
 export async function readPdf(bytes: Uint8Array): Promise<ReadDocument> {
-  const { getDocument } = await library();
-  const loading = getDocument({
+  const pdf = await library();
+  const loading = pdf.getDocument({
     // The library keeps what it is handed.
     data: bytes.slice(),
     verbosity: 0,
