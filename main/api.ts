@@ -889,6 +889,15 @@ export interface Api {
     takes: { name: string; byHand: boolean; seeds: readonly string[] };
     gives: { overview: Overview; theme: string };
   };
+  /** A theme that starts from the words of marked passages, which are coded with it by hand. */
+  addThemeFromPassages: {
+    takes: { name: string; passages: readonly PassagePlace[] };
+    gives: { overview: Overview; theme: string };
+  };
+  /** Both halves as they would be; decides nothing. Reports progress, can be cancelled. */
+  splitPreview: { takes: { theme: string }; gives: SplitPreview };
+  /** The same, decided: a fit in which all other themes keep their words. `theme` is the new one. */
+  splitTheme: { takes: { theme: string }; gives: { overview: Overview; theme: string } };
   pinTheme: { takes: { theme: string; pinned: boolean }; gives: Overview };
   setThemeAside: { takes: { theme: string; aside: boolean }; gives: Overview };
   mergePreview: { takes: { into: string; from: readonly string[] }; gives: MergePreview };
@@ -1007,6 +1016,9 @@ export const methods = [
   'nameTheme',
   'defineTheme',
   'addTheme',
+  'addThemeFromPassages',
+  'splitPreview',
+  'splitTheme',
   'pinTheme',
   'setThemeAside',
   'mergePreview',

@@ -105,41 +105,42 @@ export async function fit(
     return { ok: false, code: 'changed while fitting' };
   }
 
-  const id = desk.context.mintId('fit');
-  const record = {
-    id,
+  const setting: Edit = {
+    kind: 'settingsChanged',
+    changes: [{ key: 'themes', from: desk.study.settings['themes'] ?? null, to: asked }],
+  };
+  const record: FitRecord = {
     themes: job.themes.map((theme) => theme.id),
     basis: before.sequence,
     start: startOf(kind, settings.seed, before.fit),
     settings: { ...recordedSettings(values), themes: asked, lists: hashOf(lists) },
     counting,
   };
-  const setting: Edit = {
-    kind: 'settingsChanged',
-    changes: [{ key: 'themes', from: desk.study.settings['themes'] ?? null, to: asked }],
-  };
-  const made = desk.make(
-    [
-      ...(asked === settings.themes ? [] : [{ edit: setting }]),
-      fittedDraft(record, done, found, previous),
-    ],
-    { group: desk.context.mintId('group') },
-  );
-  if (!made.ok) return made;
-  return { ok: true, value: { fit: desk.study.fits.get(id) as Fit, done } };
+  const first = asked === settings.themes ? [] : [{ edit: setting }];
+  const made = recordFit(desk, record, done, found, previous, first);
+  return made.ok ? { ok: true, value: { fit: made.value, done } } : made;
 }
 
-/** The decision that records a fit; words that are stored already are not stored again. */
-function fittedDraft(
-  record: Pick<Fit, 'id' | 'themes' | 'basis' | 'start' | 'settings' | 'counting'>,
+export type FitRecord = Pick<Fit, 'themes' | 'basis' | 'start' | 'settings' | 'counting'>;
+
+/**
+ * Records a fit as one decision, together with the drafts `first`. Words that are stored with the fit
+ * before are not stored again.
+ */
+export function recordFit(
+  desk: Desk,
+  record: FitRecord,
   done: FitDone,
   found: readonly Theme[],
   previous: Fitted | null,
-): Draft {
+  first: readonly Draft[] = [],
+): DeskResult<Fit> {
+  const id = desk.context.mintId('fit');
   const known = previous?.fit.hashes.words === done.hashes.words ? previous.fit.words : null;
   const fitWith = (words: BlobRef, result: BlobRef): Fit => ({
-    ...record,
+    id,
     name: null,
+    ...record,
     method: done.method,
     preparation: done.preparation,
     passages: done.passages,
@@ -156,15 +157,14 @@ function fittedDraft(
   });
   const edit = (refs: readonly BlobRef[]): Edit => {
     const [words, result] = known === null ? refs : [known, ...refs];
-    return {
-      kind: 'modelFitted',
-      fit: fitWith(words, result),
-      found,
-      before: previous?.fit.id ?? null,
-    };
+    const before = previous?.fit.id ?? null;
+    return { kind: 'modelFitted', fit: fitWith(words, result), found, before };
   };
   const own = known === null && done.words !== null ? [done.words] : [];
-  return { blobs: [...own, done.result], edit };
+  const made = desk.make([...first, { blobs: [...own, done.result], edit }], {
+    group: desk.context.mintId('group'),
+  });
+  return made.ok ? { ok: true, value: desk.study.fits.get(id) as Fit } : made;
 }
 
 function startOf(kind: FitKind, seed: number, onScreen: FitId | null): Fit['start'] {
@@ -196,10 +196,14 @@ function keptThemes(study: Study): ModelledTheme[] {
 /** Candidates to fill up with, so that the model has as many themes as the study asks for. */
 function newThemes(desk: Desk, themes: number): Theme[] {
   const missing = Math.max(0, themes - keptThemes(desk.study).length);
-  return Array.from({ length: missing }, () => ({
-    id: desk.context.mintId('theme'),
+  return Array.from({ length: missing }, () => candidate(desk.context.mintId('theme')));
+}
+
+export function candidate(id: string): Theme {
+  return {
+    id,
     name: null,
-    origin: 'fitted' as const,
+    origin: 'fitted',
     definition: emptyDefinition,
     version: 1,
     pinned: false,
@@ -207,7 +211,7 @@ function newThemes(desk: Desk, themes: number): Theme[] {
     mergedInto: null,
     seeds: [],
     shutOut: [],
-  }));
+  };
 }
 
 /** What may not change while a fit runs: the words, and which themes there are. */

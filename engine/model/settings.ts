@@ -5,7 +5,7 @@ import type { Exponent } from './kernel/kernel.ts';
  * priors, start and settings no longer give the same bits; a stored fit names the number it was
  * made with, and only that method can verify it.
  */
-export const methodNumber = 1;
+export const methodNumber = 2;
 
 /** A stretch of sweeps at one exponent (below 1: annealed, responsibilities flatter). */
 export interface Stage {

@@ -260,6 +260,8 @@ export interface Fit {
     readonly from: FitId | null;
     /** From scratch: the fit whose themes rows were found again by; absent where there was none. */
     readonly rowsFrom?: FitId;
+    /** Which theme of the fit before was split, and the theme that its other half became. */
+    readonly split?: { readonly theme: ThemeId; readonly into: ThemeId };
   };
   /** Number of the numerical method; results of different methods differ. */
   readonly method: number;

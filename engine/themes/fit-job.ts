@@ -22,10 +22,20 @@ export interface FitJob {
   readonly previous: PreviousFit | null;
   /** From scratch: themes stand in rows like those that they had in this fit; null where there is none. */
   readonly rowsFrom?: PreviousFit | null;
+  /**
+   * A theme of the fit before in two halves, `into` being the new one's id: all other themes keep
+   * their words exactly, and every passage is folded in again.
+   */
+  readonly split?: Split;
   /** Pinned themes keep the words of this fit, also from scratch; null where there is none. */
   readonly pinnedFrom: PreviousFit | null;
   /** Themes that the fit before does not know and an earlier one did: they were set aside since. */
   readonly remembered?: readonly RememberedTheme[];
+}
+
+export interface Split {
+  readonly theme: string;
+  readonly into: string;
 }
 
 /** The words of a theme in the last fit that had it. */

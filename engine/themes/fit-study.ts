@@ -13,7 +13,8 @@ import { leaningsOf } from './asked.ts';
 import type { FitJob, WordPlaces } from './fit-job.ts';
 import { priorsOf } from './priors.ts';
 import { packResult, packWords } from './stored.ts';
-import { likeBefore, warmStart } from './warm-start.ts';
+import { halvesOf, seedPlaces } from './split.ts';
+import { likeBefore, phiInVocabulary, warmStart } from './warm-start.ts';
 import { placesOf } from './word-places.ts';
 
 export interface FitDone {
@@ -45,7 +46,11 @@ export interface FitDone {
 export interface FitRefused {
   readonly ok: false;
   readonly code:
-    'no words left' | 'more themes than passages' | 'no themes' | 'word without a theme';
+    | 'no words left'
+    | 'more themes than passages'
+    | 'no themes'
+    | 'word without a theme'
+    | 'does not split';
   readonly themes: number;
   readonly passages: number;
   /** 'word without a theme': the word that every theme shuts out. */
@@ -63,14 +68,17 @@ export interface FitBegun {
 
 /** From transcripts and decisions to a fit: counts words, sets priors, fits, packs the result. */
 export function fitStudy(job: FitJob, watcher?: Watcher): FitDone | FitRefused {
-  const begun = beginFit(job);
+  const begun = beginFit(job, watcher);
   if (!begun.ok) return begun;
   const { words, priors, start } = begun;
   return packFit(begun, fitModel(words.counts, priors, start, job.model, watcher));
 }
 
-/** The part of `fitStudy` before the model; `packFit` is the part after it. */
-export function beginFit(job: FitJob): FitBegun | FitRefused {
+/**
+ * The part of `fitStudy` before the model; `packFit` is the part after it. Only a split takes long
+ * enough here to be watched.
+ */
+export function beginFit(job: FitJob, watcher?: Watcher): FitBegun | FitRefused {
   const seeds = job.themes.flatMap((theme) => theme.seeds);
   const words = job.counted?.words ?? prepare(job.transcripts, job.text, job.lists, seeds);
   const passages = countedPassages(words.counts);
@@ -87,7 +95,47 @@ export function beginFit(job: FitJob): FitBegun | FitRefused {
     return { ok: false, code: 'word without a theme', ...size, word: homeless };
   }
   const priors = priorsOf(job, words, places);
-  return { ok: true, job, words, priors, start: startOf(job, words, places) };
+  if (job.split !== undefined) {
+    const frozen = splitThemes(job, words, priors, places, watcher);
+    if (frozen === null) return { ok: false, code: 'does not split', ...size };
+    const start = { kind: 'fresh' as const, seed: job.seed, leanings: [] };
+    return { ok: true, job, words, priors: { ...priors, frozen }, start };
+  }
+  return { ok: true, job, words, priors, start: startOf(job, words, priors, places) };
+}
+
+/** Every theme with the words that it had before, but the one that is split. */
+function splitThemes(
+  job: FitJob,
+  words: Prepared,
+  priors: Priors,
+  places: WordPlaces,
+  watcher: Watcher | undefined,
+): Priors['frozen'] | null {
+  const { split, previous } = job;
+  const at = job.themes.findIndex(({ id }) => id === split?.theme);
+  const row = previous?.themes.indexOf(split?.theme ?? '') ?? -1;
+  if (split === undefined || previous === null || at < 0 || row < 0) {
+    throw new Error(
+      `fitStudy: job.split.theme is ${split?.theme}; must be a theme of job.previous`,
+    );
+  }
+  const confirmed = markedPassages(priors)[at];
+  const seeds = seedPlaces(job.themes[at].seeds, places);
+  const halves = halvesOf(previous, row, job, confirmed, seeds, watcher);
+  if (halves === null) return null;
+  return job.themes.map(({ id }, theme) => {
+    if (id === split.theme) return { theme, phi: halves.kept };
+    if (id === split.into) return { theme, phi: halves.parted };
+    return { theme, phi: phiInVocabulary(previous, previous.themes.indexOf(id), words.vocabulary) };
+  });
+}
+
+/** For each theme the passages that a decision gives to it. */
+function markedPassages({ themes, passagePriors }: Priors): number[][] {
+  const marked = Array.from({ length: themes }, (): number[] => []);
+  for (const { passage, theme, value } of passagePriors) if (value > 0) marked[theme].push(passage);
+  return marked;
 }
 
 /** What a model fitted to a fit's counts, priors and start is kept as. */
@@ -131,11 +179,11 @@ function wordWithoutTheme({ themes }: FitJob, places: WordPlaces): string | unde
   return themes[0].shutOut.find(shutOutEverywhere);
 }
 
-function startOf(job: FitJob, words: Prepared, places: WordPlaces): Start {
+function startOf(job: FitJob, words: Prepared, priors: Priors, places: WordPlaces): Start {
   const leanings = leaningsOf(job, places);
   return job.previous === null
     ? { kind: 'fresh', seed: job.seed, leanings, like: likeBefore(job, words) }
-    : warmStart(job.themes, words, job.previous, leanings, job.remembered);
+    : warmStart(job.themes, words, job.previous, leanings, job.remembered, markedPassages(priors));
 }
 
 function countedPassages(counts: Counts): number {

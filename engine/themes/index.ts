@@ -1,7 +1,7 @@
 export { askedOf } from './asked.ts';
 export { compareFits, type FitComparison, type FitPair } from './compare-fits.ts';
 export { decisions, type Decided } from './decided.ts';
-export type { FitJob, PreviousFit, RememberedTheme } from './fit-job.ts';
+export type { FitJob, PreviousFit, RememberedTheme, Split } from './fit-job.ts';
 export {
   beginFit,
   fitStudy,
@@ -32,6 +32,7 @@ export {
   type StudySettings,
 } from './settings.ts';
 export { packResult, packWords, unpackFitted, unpackWords } from './stored.ts';
+export { leaning } from './split.ts';
 export {
   asPrevious,
   foundTheme,

@@ -24,7 +24,7 @@ export function storedJob(
   const known = new Map(modelledThemes(then).map((theme) => [theme.id, theme]));
   const themes = fit.themes.map((id) => known.get(id) ?? foundTheme(id));
   const onScreen = then.fit === null ? null : fitted(then.fit);
-  const { kind, from, seed, rowsFrom } = fit.start;
+  const { kind, from, seed, rowsFrom, split } = fit.start;
   return {
     transcripts: [],
     lists: {},
@@ -37,6 +37,7 @@ export function storedJob(
     themes,
     decisions: decisions(then),
     previous: kind === 'warm' && from !== null ? asPrevious(fitted(from)) : null,
+    ...(split === undefined ? {} : { split }),
     rowsFrom: rowsFrom === undefined ? null : asPrevious(fitted(rowsFrom)),
     pinnedFrom: onScreen === null ? null : asPrevious(onScreen),
     remembered: onScreen === null ? [] : rememberedThemes(then, themes, onScreen.fit, fitted),

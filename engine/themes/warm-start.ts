@@ -9,11 +9,18 @@ import type { ModelledTheme } from './modelled-theme.ts';
  */
 const held = 1;
 
+/** How much of a passage that a person gave to a new theme starts with it. */
+const mostOf = 0.9;
+
+/** How much of a new theme's start is the words of its passages; the rest is the average word. */
+const ownWords = 0.9;
+
 /**
  * Carries a stored fit over to a new set of themes, words and passages: rows follow ids, merged ones
  * are added up, columns follow word forms, passages follow their places in the text. A theme that
- * the fit did not know starts as the average of all words, with an even part of each passage; so does
- * a passage that it did not know. One that was set aside meanwhile starts from the words that are
+ * the fit did not know starts as the average of all words, with an even part of each passage; where
+ * a person gave it passages (`marked`, for each theme), it starts from their words and with most of
+ * them. A passage that the fit did not know starts even, too. One that was set aside meanwhile starts from the words that are
  * remembered of it and is held to them: from the average it came back as another theme (README.md
  * of the model).
  */
@@ -23,6 +30,7 @@ export function warmStart(
   previous: PreviousFit,
   leanings: readonly { readonly theme: number; readonly word: number }[],
   remembered: readonly RememberedTheme[] = [],
+  marked: readonly (readonly number[])[] = [],
 ): Start {
   const sources = themes.map(({ id, absorbed }) => sourceRows(previous, [id, ...absorbed]));
   const known = themes.map(({ id }) => remembered.find(({ theme }) => theme === id));
@@ -33,12 +41,22 @@ export function warmStart(
   sources.forEach((rows, theme) => {
     const into = phi.subarray(theme * size, (theme + 1) * size);
     const own = known[theme];
-    if (rows.length === 0) into.set(own ? rememberedPhi(own, words.vocabulary) : average);
-    else mixRows(previous, rows, sizes, words.vocabulary, into);
+    const passages = marked[theme] ?? [];
+    if (rows.length === 0) {
+      if (own) into.set(rememberedPhi(own, words.vocabulary));
+      else into.set(passages.length > 0 ? wordsIn(words, passages, average) : average);
+    } else mixRows(previous, rows, sizes, words.vocabulary, into);
   });
   return {
     kind: 'warm',
-    theta: proportions(sources, words, previous),
+    theta: proportions(
+      sources,
+      words,
+      previous,
+      sources.map((rows, theme) =>
+        rows.length === 0 && known[theme] === undefined ? (marked[theme] ?? []) : [],
+      ),
+    ),
     phi,
     leanings,
     hold: Float32Array.from(sources, (rows, theme) =>
@@ -123,7 +141,14 @@ function proportions(
   sources: readonly (readonly number[])[],
   words: Prepared,
   previous: PreviousFit,
+  given: readonly (readonly number[])[],
 ): Float32Array {
+  const givenTo = new Map<number, number[]>();
+  given.forEach((passages, theme) => {
+    for (const passage of passages) {
+      givenTo.set(passage, [...(givenTo.get(passage) ?? []), theme]);
+    }
+  });
   const places = new Map(
     previous.words.passages.map(({ transcript, start, end }, index) => [
       `${transcript} ${start} ${end}`,
@@ -143,8 +168,12 @@ function proportions(
       else for (const source of rows) row[theme] += previous.theta[old * before + source];
       sum += row[theme];
     });
+    const own = givenTo.get(passage) ?? [];
+    const left = own.length > 0 ? 1 - mostOf : 1;
     for (let theme = 0; theme < themes; theme++) {
-      theta[passage * themes + theme] = sum > 0 ? row[theme] / sum : 1 / themes;
+      const share = sum > 0 ? row[theme] / sum : 1 / themes;
+      theta[passage * themes + theme] =
+        left * share + (own.includes(theme) ? mostOf / own.length : 0);
     }
   });
   return theta;
@@ -159,6 +188,25 @@ function expectedWords({ themes, words, theta }: PreviousFit): Float64Array {
     }
   });
   return sizes;
+}
+
+/** The words of some passages, with a little of the average so that no word is out of reach. */
+function wordsIn(
+  words: Prepared,
+  passages: readonly number[],
+  average: Float32Array,
+): Float32Array {
+  const { offsets, indices, counts } = words.counts;
+  const totals = new Float64Array(words.vocabulary.length);
+  let sum = 0;
+  for (const d of passages) {
+    for (let j = offsets[d]; j < offsets[d + 1]; j++) {
+      totals[indices[j]] += counts[j];
+      sum += counts[j];
+    }
+  }
+  if (sum === 0) return average;
+  return average.map((share, w) => (1 - ownWords) * share + (ownWords * totals[w]) / sum);
 }
 
 function averageWords(words: Prepared): Float32Array {

@@ -33,6 +33,7 @@ const fitCodes: Record<FitRefusal['code'], true> = {
   'no words left': true,
   'more themes than passages': true,
   'no themes': true,
+  'does not split': true,
   'word without a theme': true,
   'no fit to start from': true,
   'changed while fitting': true,

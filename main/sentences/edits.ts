@@ -77,7 +77,10 @@ const phrases: Phrases = {
   memoWritten: () => 'memo',
   memoErased: () => 'erasing of a memo',
   memoRevised: () => 'change of a memo',
-  modelFitted: ({ fit }) => (fit.start.kind === 'warm' ? 're-fit' : 'fit from scratch'),
+  modelFitted: ({ fit: { start } }, names) => {
+    if (start.split !== undefined) return `split of ${names.theme(start.split.theme)}`;
+    return start.kind === 'warm' ? 're-fit' : 'fit from scratch';
+  },
   fitRemoved: () => 'removal of a fit',
   fitChosen: () => 'choice of a fit',
   fitRenamed: () => 'name of a fit',

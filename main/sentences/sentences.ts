@@ -107,6 +107,8 @@ export function sentenceForFit(
       return `There are ${refusal.themes} themes and only ${refusal.passages} passages with counted words; ask for fewer themes, or add transcripts.`;
     case 'word without a theme':
       return `“${refusal.word ?? ''}” is shut out of every theme that is fitted, so its occurrences would belong nowhere; let it into one, or add it to the stop words.`;
+    case 'does not split':
+      return 'Nothing in this theme stands apart from the rest of it, so it was not split; look for seed words of the part that you have in mind, and add a theme with them.';
     case 'no themes':
       return 'There is no theme to fit; ask for at least one.';
     case 'no fit to start from':

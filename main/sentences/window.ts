@@ -26,6 +26,7 @@ export const windowSentences = {
     'The transcripts of the demo study could not be read; install Understory again, or start a study of your own.',
   'fit running': () => 'A fit is running already; wait for it, or stop it first.',
   'evidence running': () => 'The fit is being measured already; wait for it, or stop it first.',
+  'no passages marked': () => 'No passages are marked; mark at least one for the theme.',
   'no fit': () => 'There is no fit yet; fit the study in Shape first.',
   'place changed': () =>
     'The passages were divided in another way in the meantime; open the passage again, then decide.',

@@ -23,10 +23,11 @@ export async function fitForWindow(
       onProgress({ sweep, bound, change, fraction }),
   });
   if (made.ok) return give(made.value.fit);
-  return {
-    code: made.code,
-    refused: isFitRefusal(made) ? sentenceForFit(made) : sentenceFor(made),
-  };
+  return isFitRefusal(made) ? fitRefused(made) : { code: made.code, refused: sentenceFor(made) };
+}
+
+export function fitRefused(refusal: Parameters<typeof sentenceForFit>[0]): Refused {
+  return { code: refusal.code, refused: sentenceForFit(refusal) };
 }
 
 type NotMade = Exclude<FitMade, { readonly ok: true }>;
@@ -36,6 +37,7 @@ const fitCodes = {
   'no words left': true,
   'more themes than passages': true,
   'no themes': true,
+  'does not split': true,
   'word without a theme': true,
   'no fit to start from': true,
   'changed while fitting': true,

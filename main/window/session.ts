@@ -18,10 +18,12 @@ import type { Handlers, Session, Surroundings } from './session-types.ts';
 import { seedCheck } from './seed-check.ts';
 import { shapeView } from './shape-view.ts';
 import { strataFigure } from './strata-figure.ts';
+import { splitHandlers } from './split.ts';
 import { strata } from './strata.ts';
 import { themeDecisions } from './theme-decisions.ts';
 import { themePassages } from './theme-passages.ts';
 import { themeSpread } from './theme-spread.ts';
+import { themeFromPassages } from './theme-from-passages.ts';
 import { themeView } from './theme-view.ts';
 import { wordView } from './word-view.ts';
 
@@ -35,6 +37,8 @@ export function createSession(surroundings: Surroundings): Session {
     ...gatheringHandlers(room),
     ...fitHandlers(room),
     ...evidenceHandlers(room),
+    ...splitHandlers(room),
+    ...themeFromPassages(room),
     ...themeDecisions(room),
     ...headingHandlers(room),
     ...readingHandlers(room),

@@ -63,7 +63,7 @@ export function fitRows({ study, now }: OpenStudy): FitRow[] {
 /** "3: from scratch, 12 themes", with "quick answer" where it is one. */
 function labelOf(study: Study, fit: Fit, number: number): string {
   const quick = fit.start.kind === 'fresh' && answerOf(study, fit) === 'quick';
-  return `${number}: ${kindOf(fit)}, ${fit.themes.length} themes${quick ? ', quick answer' : ''}`;
+  return `${number}: ${fit.start.split === undefined ? kindOf(fit) : 'split'}, ${fit.themes.length} themes${quick ? ', quick answer' : ''}`;
 }
 
 function kindOf({ start }: Fit): FitView['kind'] {

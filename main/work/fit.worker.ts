@@ -6,6 +6,7 @@ import {
   prepareFit,
   type ModelFit,
   type Run,
+  type Watcher,
 } from '../../engine/model/index.ts';
 import { beginFit, packFit, type FitBegun } from '../../engine/themes/index.ts';
 import { makeRuns, sharedCounts, type SharedPool } from './pool.ts';
@@ -16,7 +17,13 @@ const stopped = new Int32Array(stop);
 
 const post = (message: FitMessage): void => parentPort?.postMessage(message);
 
-const begun = beginFit(job);
+const watcher: Watcher = {
+  progress: (point, fraction) => {
+    post({ kind: 'progress', run: 0, runs: 1, point, fraction });
+    return Atomics.load(stopped, 0) === 0;
+  },
+};
+const begun = beginFit(job, watcher);
 if (!begun.ok) post({ kind: 'done', result: begun });
 else {
   const fit = await modelOf(begun);
@@ -29,12 +36,7 @@ async function modelOf({ words, priors, start }: FitBegun): Promise<ModelFit> {
   const pays = always || isLarge(words.counts.indices.length);
   const others = pays ? Math.min(helpers, runs - 1) : 0;
   if (others < 1 || start.kind !== 'fresh') {
-    return fitModel(words.counts, priors, start, job.model, {
-      progress: (point, fraction) => {
-        post({ kind: 'progress', run: 0, runs: 1, point, fraction });
-        return Atomics.load(stopped, 0) === 0;
-      },
-    });
+    return fitModel(words.counts, priors, start, job.model, watcher);
   }
   const counts = sharedCounts(words.counts);
   const next = new SharedArrayBuffer(4);

@@ -10,7 +10,7 @@ import { golden, type Golden } from './golden.ts';
 // These are our own results: they say that bits have not changed, not that they are right. Where
 // they change on purpose, raise `methodNumber`, and take these from what the test prints.
 const committed = {
-  method: 1,
+  method: 2,
   hashes: {
     functions: '7a356fbe82bfa9defb7da3b87dc4aea74129026efaf572a97877de95056c4754',
     corpus: 'f118f2109d4dc78c4bac2a65a9e3317ea8ea591d361d4230640e6e24b643f986',

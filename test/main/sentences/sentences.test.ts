@@ -75,6 +75,7 @@ describe('every refusal is one sentence that says what to do', () => {
     'no words left': true,
     'more themes than passages': true,
     'no themes': true,
+    'does not split': true,
     'word without a theme': true,
     'no fit to start from': true,
     'changed while fitting': true,
