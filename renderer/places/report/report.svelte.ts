@@ -1,6 +1,6 @@
 import type { About, ReportFormat, ReportRequest, ReportStanding } from '../../../main/api.ts';
 import type { StudyState } from '../../state/study.svelte.ts';
-import { handOver } from './hand-over.ts';
+import { handOver } from '../../parts/hand-over.ts';
 
 /** In the order in which they are offered and sent. */
 export const standings: readonly ReportStanding[] = [

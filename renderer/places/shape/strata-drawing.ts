@@ -17,203 +17,319 @@ export interface StrataColours {
   readonly cursor: string;
 }
 
-/** A band's place on the canvas and the passages along it. */
+/** A band's place along its line. */
 interface BandPlace {
-  readonly top: number;
-  readonly left: number;
   readonly width: number;
   /** x of the start of each passage, and of the end of the last. */
   readonly edges: Float64Array;
 }
 
+/** The shares of a band in columns of a few pixels, columns x themes. */
+interface Columns {
+  readonly count: number;
+  readonly spacing: number;
+  readonly values: Float32Array;
+}
+
 const tickRoom = 4;
+const leastPitch = 14;
+const mostPitch = 30;
 
 /** The layout for a number of bands in the room there is. */
 export function layoutFor(width: number, bands: number, room: number): StrataLayout {
   const labelWidth = width < 700 ? 88 : 128;
-  const pitch = Math.max(14, Math.min(30, Math.floor(room / Math.max(1, bands))));
+  const fitting = Math.floor(room / Math.max(1, bands));
+  const pitch = Math.max(leastPitch, Math.min(mostPitch, fitting));
   return { width, labelWidth, pitch, bandHeight: pitch - tickRoom - (pitch > 20 ? 2 : 1) };
 }
 
-export function heightOf(strata: Strata, layout: StrataLayout): number {
-  return strata.bands.length * layout.pitch + 2;
-}
+/**
+ * The strata at one size and in one order of bands. What a band needs to be drawn is worked out when
+ * it first comes into sight, and kept; only lines in sight are ever drawn.
+ */
+export class StrataPicture {
+  readonly strata: Strata;
+  readonly layout: StrataLayout;
+  /** Bands from top to bottom, as indices. */
+  readonly order: readonly number[];
+  readonly #longest: number;
+  readonly #totals: readonly number[];
+  readonly #lineOf: Int32Array;
+  readonly #places = new Map<number, BandPlace>();
+  readonly #columns = new Map<number, Columns>();
+  readonly #ticks = new Map<number, Map<number, number[]>>();
 
-/** Where each band lies: as long as its transcript has words, the longest over the whole width. */
-export function placesOf(strata: Strata, layout: StrataLayout): BandPlace[] {
-  const totals = strata.bands.map(({ from, passages }) => {
-    let words = 0;
-    for (let i = from; i < from + passages; i++) words += Math.max(1, strata.words[i]);
-    return words;
-  });
-  const longest = Math.max(1, ...totals);
-  const room = layout.width - layout.labelWidth;
-  return strata.bands.map(({ from, passages }, band) => {
-    const width = (totals[band] / longest) * room;
+  constructor(strata: Strata, layout: StrataLayout, order: readonly number[]) {
+    this.strata = strata;
+    this.layout = layout;
+    this.order = order;
+    this.#totals = strata.bands.map(({ from, passages }) => {
+      let words = 0;
+      for (let i = from; i < from + passages; i++) words += Math.max(1, strata.words[i]);
+      return words;
+    });
+    this.#longest = Math.max(1, ...this.#totals);
+    this.#lineOf = new Int32Array(strata.bands.length).fill(-1);
+    order.forEach((band, line) => (this.#lineOf[band] = line));
+    for (let t = 0; t < strata.ticks.length; t += 2) {
+      const band = bandOf(strata, strata.ticks[t]);
+      const own = this.#ticks.get(band) ?? new Map<number, number[]>();
+      this.#ticks.set(band, own);
+      const theme = own.get(strata.ticks[t + 1]) ?? [];
+      own.set(strata.ticks[t + 1], theme);
+      theme.push(strata.ticks[t]);
+    }
+  }
+
+  get height(): number {
+    return this.order.length * this.layout.pitch + 2;
+  }
+
+  /** The lines that a stretch from one y to another touches: first and after the last. */
+  linesIn(top: number, bottom: number): { readonly first: number; readonly last: number } {
+    const { pitch } = this.layout;
+    return {
+      first: Math.max(0, Math.floor((top - 1) / pitch)),
+      last: Math.min(this.order.length, Math.ceil((bottom - 1) / pitch)),
+    };
+  }
+
+  /**
+   * Draws the lines in sight: all themes as quiet layers that add to one, the chosen one inked and
+   * lowest, so that its height is its strength; gaps where an interviewer speaks; ticks under
+   * decided passages. The context's origin is the top of the stretch in sight.
+   */
+  draw(
+    context: CanvasRenderingContext2D,
+    { top, bottom }: { readonly top: number; readonly bottom: number },
+    chosen: number,
+    colours: StrataColours,
+  ): void {
+    const { strata, layout } = this;
+    const themes = strata.themes.map((_, index) => index).filter((index) => index !== chosen);
+    const layers = chosen >= 0 ? [chosen, ...themes] : themes;
+    const { first, last } = this.linesIn(top, bottom);
+    for (let line = first; line < last; line++) {
+      const band = this.order[line];
+      const { from, passages } = strata.bands[band];
+      if (passages === 0) continue;
+      const y = line * layout.pitch + 1 - top;
+      this.#drawLayers(context, band, y, layers, chosen, colours);
+      const { edges } = this.#placeOf(band);
+      context.fillStyle = colours.ground;
+      for (let i = 1; i < passages; i++) {
+        if (strata.gaps[from + i] === 1 && edges[i + 1] - edges[i] > 6) {
+          context.fillRect(Math.round(edges[i]) - 1, y, 1.5, layout.bandHeight);
+        }
+      }
+      context.fillStyle = colours.tick;
+      for (const passage of this.#ticks.get(band)?.get(chosen) ?? []) {
+        const i = passage - from;
+        const x = Math.round((edges[i] + edges[i + 1]) / 2);
+        if (chosen >= 0) context.fillRect(x - 2, y + layout.bandHeight + 1, 4, 2.5);
+      }
+    }
+  }
+
+  #drawLayers(
+    context: CanvasRenderingContext2D,
+    band: number,
+    y: number,
+    layers: readonly number[],
+    chosen: number,
+    colours: StrataColours,
+  ): void {
+    const { bandHeight, labelWidth } = this.layout;
+    const { count, spacing, values } = this.#columnsOf(band);
+    const themes = this.strata.themes.length;
+    const ratio = context.getTransform().a;
+    const high = Math.round(bandHeight * ratio);
+    const wide = Math.max(1, Math.round(count * spacing * ratio));
+    // Pixel by pixel: with many themes and no help from a graphics card, outlines to fill take
+    // ten times as long.
+    const image = context.createImageData(wide, high);
+    const colourOf = layers.map((theme, rank) => {
+      const grey = chosen >= 0 ? rank - 1 : rank;
+      return theme === chosen ? colours.ink : colours.layers[grey % colours.layers.length];
+    });
+    const rgb = colourOf.map(channels);
+    const column = new Float32Array(4 * high);
+    for (let x = 0; x < wide; x++) {
+      column.fill(0);
+      const at = Math.min(count - 1, Math.max(0, (x + 0.5) / ratio / spacing - 0.5));
+      const one = Math.floor(at);
+      const two = Math.min(count - 1, one + 1);
+      const t = at - one;
+      let base = 0;
+      layers.forEach((theme, rank) => {
+        const share = values[one * themes + theme] * (1 - t) + values[two * themes + theme] * t;
+        const top = Math.min(high, base + share * high);
+        const [red, green, blue] = rgb[rank];
+        for (let row = Math.floor(base); row < top; row++) {
+          const part = Math.min(row + 1, top) - Math.max(row, base);
+          const cell = 4 * (high - 1 - row);
+          column[cell] += red * part;
+          column[cell + 1] += green * part;
+          column[cell + 2] += blue * part;
+          column[cell + 3] += part;
+        }
+        base = top;
+      });
+      for (let row = 0; row < high; row++) {
+        const part = column[4 * row + 3];
+        if (part <= 0) continue;
+        const pixel = 4 * (row * wide + x);
+        for (let channel = 0; channel < 3; channel++) {
+          image.data[pixel + channel] = column[4 * row + channel] / part;
+        }
+        image.data[pixel + 3] = 255 * part;
+      }
+    }
+    context.putImageData(image, Math.round(labelWidth * ratio), Math.round(y * ratio));
+  }
+
+  /** Frames one passage's place, where the cursor is. */
+  drawCursor(
+    context: CanvasRenderingContext2D,
+    top: number,
+    passage: number,
+    colours: StrataColours,
+  ): void {
+    const spot = this.spotOf(passage);
+    if (spot === null) return;
+    context.strokeStyle = colours.cursor;
+    context.lineWidth = 2;
+    context.strokeRect(spot.x, spot.y - top - 0.5, spot.width, this.layout.bandHeight + 1);
+  }
+
+  /** Where a passage lies, or null for none. */
+  spotOf(
+    passage: number,
+  ): { readonly x: number; readonly y: number; readonly width: number } | null {
+    const band = bandOf(this.strata, passage);
+    if (band < 0 || this.#lineOf[band] < 0) return null;
+    const { edges } = this.#placeOf(band);
+    const index = passage - this.strata.bands[band].from;
+    return {
+      x: edges[index],
+      y: this.#lineOf[band] * this.layout.pitch + 1,
+      width: Math.max(3, edges[index + 1] - edges[index]),
+    };
+  }
+
+  /** The passage under a point, or -1. */
+  passageAt(x: number, y: number): number {
+    const line = Math.floor((y - 1) / this.layout.pitch);
+    if (line < 0 || line >= this.order.length) return -1;
+    const band = this.order[line];
+    const { edges } = this.#placeOf(band);
+    if (x < edges[0] || x >= edges[edges.length - 1]) return -1;
+    let low = 0;
+    let high = edges.length - 2;
+    while (low < high) {
+      const middle = (low + high + 1) >> 1;
+      if (edges[middle] <= x) low = middle;
+      else high = middle - 1;
+    }
+    return this.strata.bands[band].from + low;
+  }
+
+  /** The passage that an arrow key leads to. */
+  step(passage: number, key: string): number {
+    const { bands } = this.strata;
+    const band = bandOf(this.strata, passage);
+    if (band < 0) {
+      const start = this.order.find((each) => bands[each].passages > 0);
+      return start === undefined ? -1 : bands[start].from;
+    }
+    const { from, passages } = bands[band];
+    if (key === 'ArrowLeft') return Math.max(from, passage - 1);
+    if (key === 'ArrowRight') return Math.min(from + passages - 1, passage + 1);
+    if (key === 'Home') return from;
+    if (key === 'End') return from + passages - 1;
+    const by = key === 'ArrowUp' ? -1 : 1;
+    let line = this.#lineOf[band] + by;
+    while (bands[this.order[line]]?.passages === 0) line += by;
+    const next = bands[this.order[line]];
+    if (next === undefined) return passage;
+    const along = (passage - from) / Math.max(1, passages - 1);
+    return next.from + Math.round(along * (next.passages - 1));
+  }
+
+  /** As long as its transcript has words, the longest over the whole width. */
+  #placeOf(band: number): BandPlace {
+    const known = this.#places.get(band);
+    if (known !== undefined) return known;
+    const { strata, layout } = this;
+    const { from, passages } = strata.bands[band];
+    const width = (this.#totals[band] / this.#longest) * (layout.width - layout.labelWidth);
     const edges = new Float64Array(passages + 1);
     edges[0] = layout.labelWidth;
     let words = 0;
     for (let i = 0; i < passages; i++) {
       words += Math.max(1, strata.words[from + i]);
-      edges[i + 1] = layout.labelWidth + (words / totals[band]) * width;
+      edges[i + 1] = layout.labelWidth + (words / this.#totals[band]) * width;
     }
-    return { top: band * layout.pitch + 1, left: layout.labelWidth, width, edges };
-  });
-}
+    const place = { width, edges };
+    this.#places.set(band, place);
+    return place;
+  }
 
-/**
- * Draws every band: all themes as quiet layers that add to one, the chosen one inked and lowest, so
- * that its height is its strength; gaps where an interviewer speaks; ticks under decided passages.
- */
-export function drawStrata(
-  context: CanvasRenderingContext2D,
-  strata: Strata,
-  layout: StrataLayout,
-  chosen: number,
-  colours: StrataColours,
-): void {
-  const places = placesOf(strata, layout);
-  const order = strata.themes.map((_, index) => index).filter((index) => index !== chosen);
-  if (chosen >= 0) order.unshift(chosen);
-  const rank = new Map(order.filter((index) => index !== chosen).map((index, i) => [index, i]));
-  strata.bands.forEach(({ from, passages }, band) => {
-    if (passages === 0) return;
-    const place = places[band];
-    const columns = columnsOf(strata, from, place);
-    const base = place.top + layout.bandHeight;
-    const below = new Float64Array(columns.count);
-    for (const theme of order) {
-      const above = new Float64Array(columns.count);
-      for (let c = 0; c < columns.count; c++) above[c] = below[c] + columns.share(c, theme);
-      context.beginPath();
-      context.moveTo(columns.x(0), base - below[0] * layout.bandHeight);
-      for (let c = 0; c < columns.count; c++) {
-        context.lineTo(columns.x(c), base - above[c] * layout.bandHeight);
-      }
-      for (let c = columns.count - 1; c >= 0; c--) {
-        context.lineTo(columns.x(c), base - below[c] * layout.bandHeight);
-      }
-      context.closePath();
-      context.fillStyle =
-        theme === chosen
-          ? colours.ink
-          : colours.layers[(rank.get(theme) ?? 0) % colours.layers.length];
-      context.fill();
-      below.set(above);
-    }
-    context.fillStyle = colours.ground;
-    for (let i = 1; i < passages; i++) {
-      if (strata.gaps[from + i] === 1 && place.edges[i + 1] - place.edges[i] > 6) {
-        context.fillRect(Math.round(place.edges[i]) - 1, place.top, 1.5, layout.bandHeight);
+  /**
+   * Between the middles of two passages shares go over smoothly; where passages are narrower than a
+   * column, the one at its start stands for it.
+   */
+  #columnsOf(band: number): Columns {
+    const known = this.#columns.get(band);
+    if (known !== undefined) return known;
+    const { shares, themes: ids, bands } = this.strata;
+    const { width, edges } = this.#placeOf(band);
+    const { from } = bands[band];
+    const themes = ids.length;
+    const passages = edges.length - 1;
+    const left = edges[0];
+    const count = Math.max(1, Math.ceil(width / 2.5));
+    const spacing = width / count;
+    const values = new Float32Array(count * themes);
+    const middle = (i: number): number => (edges[i] + edges[i + 1]) / 2;
+    let at = 0;
+    for (let c = 0; c < count; c++) {
+      const x = left + (c + 0.5) * spacing;
+      while (at < passages - 1 && middle(at + 1) <= x) at++;
+      const after = Math.min(passages - 1, x < middle(at) ? at : at + 1);
+      const span = middle(after) - middle(at);
+      const t = span <= 0 ? 0 : Math.min(1, Math.max(0, (x - middle(at)) / span));
+      const eased = t * t * (3 - 2 * t);
+      const one = (from + at) * themes;
+      const two = (from + after) * themes;
+      for (let k = 0; k < themes; k++) {
+        values[c * themes + k] = shares[one + k] + (shares[two + k] - shares[one + k]) * eased;
       }
     }
-  });
-  context.fillStyle = colours.tick;
-  for (let t = 0; t < strata.ticks.length; t += 2) {
-    if (strata.ticks[t + 1] !== chosen || chosen < 0) continue;
-    const spot = spotOf(strata, places, strata.ticks[t]);
-    if (spot !== null) {
-      context.fillRect(Math.round(spot.x) - 2, spot.top + layout.bandHeight + 1, 4, 2.5);
-    }
+    const columns = { count, spacing, values };
+    this.#columns.set(band, columns);
+    return columns;
   }
 }
 
-/** Frames one passage's place, where the cursor is. */
-export function drawCursor(
-  context: CanvasRenderingContext2D,
-  strata: Strata,
-  layout: StrataLayout,
-  passage: number,
-  colours: StrataColours,
-): void {
-  const places = placesOf(strata, layout);
-  const band = bandOf(strata, passage);
-  if (band < 0) return;
-  const { edges, top } = places[band];
-  const index = passage - strata.bands[band].from;
-  context.strokeStyle = colours.cursor;
-  context.lineWidth = 2;
-  context.strokeRect(
-    edges[index],
-    top - 0.5,
-    Math.max(3, edges[index + 1] - edges[index]),
-    layout.bandHeight + 1,
-  );
-}
-
-/** The passage under a point, or -1. */
-export function passageAt(strata: Strata, layout: StrataLayout, x: number, y: number): number {
-  const band = Math.floor((y - 1) / layout.pitch);
-  if (band < 0 || band >= strata.bands.length) return -1;
-  const { edges } = placesOf(strata, layout)[band];
-  if (x < edges[0] || x >= edges[edges.length - 1]) return -1;
+/** The band that a passage lies in, or -1. */
+export function bandOf({ bands }: Strata, passage: number): number {
+  if (passage < 0) return -1;
   let low = 0;
-  let high = edges.length - 2;
+  let high = bands.length - 1;
   while (low < high) {
     const middle = (low + high + 1) >> 1;
-    if (edges[middle] <= x) low = middle;
+    if (bands[middle].from <= passage) low = middle;
     else high = middle - 1;
   }
-  return strata.bands[band].from + low;
+  const band = bands[low];
+  return band !== undefined && passage >= band.from && passage < band.from + band.passages
+    ? low
+    : -1;
 }
 
-export function bandOf(strata: Strata, passage: number): number {
-  return strata.bands.findIndex(
-    ({ from, passages }) => passage >= from && passage < from + passages,
-  );
-}
-
-/** The passage that an arrow key leads to. */
-export function step(strata: Strata, passage: number, key: string): number {
-  const band = bandOf(strata, passage);
-  if (band < 0) return strata.bands.find(({ passages }) => passages > 0)?.from ?? -1;
-  const { from, passages } = strata.bands[band];
-  if (key === 'ArrowLeft') return Math.max(from, passage - 1);
-  if (key === 'ArrowRight') return Math.min(from + passages - 1, passage + 1);
-  if (key === 'Home') return from;
-  if (key === 'End') return from + passages - 1;
-  const next = strata.bands[key === 'ArrowUp' ? band - 1 : band + 1];
-  if (next === undefined || next.passages === 0) return passage;
-  const along = (passage - from) / Math.max(1, passages - 1);
-  return next.from + Math.round(along * (next.passages - 1));
-}
-
-function spotOf(strata: Strata, places: readonly BandPlace[], passage: number) {
-  const band = bandOf(strata, passage);
-  if (band < 0) return null;
-  const { edges, top } = places[band];
-  const index = passage - strata.bands[band].from;
-  return { x: (edges[index] + edges[index + 1]) / 2, top };
-}
-
-/**
- * The band in columns of a few pixels. Between the middles of two passages shares go over smoothly;
- * where passages are narrower than a column they are averaged by the words that fall into it.
- */
-function columnsOf(strata: Strata, from: number, { left, width, edges }: BandPlace) {
-  const themes = strata.themes.length;
-  const count = Math.max(2, Math.ceil(width / 2.5) + 1);
-  const passages = edges.length - 1;
-  const values = new Float64Array(count * themes);
-  const spacing = width / (count - 1);
-  const middle = (i: number): number => (edges[i] + edges[i + 1]) / 2;
-  let at = 0;
-  for (let c = 0; c < count; c++) {
-    const x = left + c * spacing;
-    while (at < passages - 1 && middle(at + 1) <= x) at++;
-    const after = Math.min(passages - 1, x < middle(at) ? at : at + 1);
-    const span = middle(after) - middle(at);
-    const t = span <= 0 ? 0 : Math.min(1, Math.max(0, (x - middle(at)) / span));
-    const eased = t * t * (3 - 2 * t);
-    for (let theme = 0; theme < themes; theme++) {
-      const a = strata.shares[(from + at) * themes + theme];
-      const b = strata.shares[(from + after) * themes + theme];
-      values[c * themes + theme] = a + (b - a) * eased;
-    }
-  }
-  return {
-    count,
-    x: (c: number): number => left + c * spacing,
-    share: (c: number, theme: number): number => values[c * themes + theme],
-  };
+/** Red, green and blue of a colour written as #rrggbb. */
+function channels(colour: string): readonly [number, number, number] {
+  const value = Number.parseInt(colour.slice(1), 16);
+  return [(value >> 16) & 255, (value >> 8) & 255, value & 255];
 }

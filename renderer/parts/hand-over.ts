@@ -1,10 +1,12 @@
-import type { NamedFile } from '../../../main/api.ts';
+import type { NamedFile } from '../../main/api.ts';
 
 const kinds: Readonly<Record<string, string>> = {
   csv: 'text/csv;charset=utf-8',
   json: 'application/json',
   html: 'text/html;charset=utf-8',
   md: 'text/markdown;charset=utf-8',
+  svg: 'image/svg+xml',
+  png: 'image/png',
   docx: 'application/vnd.openxmlformats-officedocument.wordprocessingml.document',
 };
 
