@@ -114,6 +114,8 @@ export interface Overview {
   readonly stale: boolean;
   /** Decisions that the next fit will take up, in words ("2 words seeded"). */
   readonly waiting: readonly string[];
+  /** Whether a re-fit follows each decision that it would take up. */
+  readonly followChanges: boolean;
   /** What undo and redo would take back, in words; null where there is nothing. */
   readonly undo: string | null;
   readonly redo: string | null;
@@ -905,7 +907,11 @@ export interface Api {
   orderThemes: { takes: { themes: readonly string[] }; gives: Overview };
   /** A heading over themes, and those that come to stand under it. */
   addHeading: { takes: { name: string; themes: readonly string[] }; gives: Overview };
-  renameHeading: { takes: { heading: string; name: string }; gives: Overview };
+  /** Its name, and all the themes that stand under it from now on. */
+  changeHeading: {
+    takes: { heading: string; name: string; themes: readonly string[] };
+    gives: Overview;
+  };
   /** What stood under it stands under none. */
   removeHeading: { takes: { heading: string }; gives: Overview };
   putUnder: { takes: { theme: string; heading: string | null }; gives: Overview };
@@ -1025,7 +1031,7 @@ export const methods = [
   'mergeThemes',
   'orderThemes',
   'addHeading',
-  'renameHeading',
+  'changeHeading',
   'removeHeading',
   'putUnder',
   'seedWord',

@@ -12,6 +12,7 @@ export const defaultSettings = {
   eta: 0.1,
   suggestionStrength: 0.5,
   suggestionCountedWords: 1,
+  followChanges: false,
   'text.language': defaultTextSettings.language,
   'text.passageMinimumWords': defaultTextSettings.passageMinimumWords,
   'text.passageMaximumWords': defaultTextSettings.passageMaximumWords,
@@ -34,6 +35,8 @@ export interface StudySettings {
   readonly seed: number;
   readonly alpha: number;
   readonly eta: number;
+  /** Whether a re-fit follows each decision that it would take up. */
+  readonly followChanges: boolean;
   readonly suggestions: { readonly strength: number; readonly countedWords: number };
   readonly text: TextSettings;
   readonly model: FitSettings;
@@ -47,6 +50,7 @@ export function settingsOf(values: SettingValues): StudySettings {
     seed: all.seed,
     alpha: all.alpha,
     eta: all.eta,
+    followChanges: all.followChanges,
     suggestions: { strength: all.suggestionStrength, countedWords: all.suggestionCountedWords },
     text: {
       language: all['text.language'],
@@ -105,6 +109,7 @@ const checks: Record<SettingKey, (value: SettingValue) => string | null> = {
   eta: real(0.001, 100),
   suggestionStrength: real(0, 1),
   suggestionCountedWords: whole(1, 1000),
+  followChanges: yesOrNo,
   'text.language': (value) =>
     typeof value === 'string' && isLanguage(value)
       ? null

@@ -152,7 +152,7 @@ export const payloads = {
   mergeThemes: v.strictObject({ into: id, from: ids }),
   orderThemes: v.strictObject({ themes: ids }),
   addHeading: v.strictObject({ name, themes: ids }),
-  renameHeading: v.strictObject({ heading: id, name }),
+  changeHeading: v.strictObject({ heading: id, name, themes: ids }),
   removeHeading: v.strictObject({ heading: id }),
   putUnder: v.strictObject({ theme: id, heading: v.nullable(id) }),
   seedWord: v.strictObject({ theme: id, word: name, seeded: v.boolean() }),

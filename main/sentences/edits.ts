@@ -163,6 +163,7 @@ const settings: Readonly<Record<string, string>> = {
   seed: 'the seed of fits',
   answer: 'the kind of fit',
   suggestionStrength: 'the strength from which a theme is suggested',
+  followChanges: 'whether re-fits follow each change',
   suggestionCountedWords: 'the counted words that a suggestion needs',
   'text.language': 'the language',
   'text.passageMinimumWords': 'the shortest passage',

@@ -7,7 +7,7 @@ import type { Handlers } from './session-types.ts';
 /** Decisions on headings over themes. What is so already is let be. */
 export function headingHandlers(
   room: Room,
-): Pick<Handlers, 'addHeading' | 'renameHeading' | 'removeHeading' | 'putUnder'> {
+): Pick<Handlers, 'addHeading' | 'changeHeading' | 'removeHeading' | 'putUnder'> {
   return {
     addHeading: room.decide((open, { name, themes }: Api['addHeading']['takes']) => {
       const heading: Heading = { id: open.desk.context.mintId('heading'), name: name.trim() };
@@ -17,13 +17,21 @@ export function headingHandlers(
       ]);
     }),
 
-    renameHeading: room.decide((open, { heading: id, name }: Api['renameHeading']['takes']) => {
+    changeHeading: room.decide((open, takes: Api['changeHeading']['takes']) => {
+      const { heading: id, name, themes } = takes;
       const heading = open.study.headings.get(id);
       if (heading === undefined) return unknown(open, id);
       const to = name.trim();
-      return to === heading.name
-        ? null
-        : open.decide([{ kind: 'headingRenamed', heading: id, from: heading.name, to }]);
+      const leaving = [...open.study.under].flatMap(([theme, over]) =>
+        over === id && isVisible(open, theme) && !themes.includes(theme) ? [theme] : [],
+      );
+      return open.decide([
+        ...(to === heading.name
+          ? []
+          : [{ kind: 'headingRenamed', heading: id, from: heading.name, to } as const]),
+        ...leaving.flatMap((theme) => putting(open, theme, null)),
+        ...[...new Set(themes)].flatMap((theme) => putting(open, theme, id)),
+      ]);
     }),
 
     removeHeading: room.decide((open, { heading: id }: Api['removeHeading']['takes']) => {
@@ -41,6 +49,11 @@ export function headingHandlers(
       open.decide(putting(open, theme, heading)),
     ),
   };
+}
+
+/** A theme that was merged away goes where it came from when the merge is undone. */
+function isVisible({ study }: OpenStudy, theme: string): boolean {
+  return study.themes.get(theme)?.mergedInto === null;
 }
 
 function putting({ study }: OpenStudy, theme: string, to: string | null): Edit[] {

@@ -35,6 +35,7 @@ export function overview(open: OpenStudy): Overview {
     refining: refinement === null ? null : { fit: refinement.fit, fraction: refinement.fraction },
     stale: now.since?.stale ?? false,
     waiting: waitingInWords(now),
+    followChanges: now.settings.followChanges,
     undo: file.readOnly ? null : undoInWords(open),
     redo: file.readOnly ? null : redoInWords(open),
     reader: { id: open.reader.id, name: open.reader.name },

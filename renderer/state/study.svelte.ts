@@ -1,11 +1,21 @@
 import { untrack } from 'svelte';
-import type { Api, FitProgress, Link, Method, Overview } from '../../main/api.ts';
+import type {
+  Api,
+  FitProgress,
+  Link,
+  Method,
+  Overview,
+  ReadingListRequest,
+} from '../../main/api.ts';
 import type { Connection, WindowLink } from '../link.ts';
 
 /** A link that may tell how it stands with the rest of the program. */
 type Watched = Link & Partial<Pick<WindowLink, 'onConnection'>>;
 
 export type PlaceName = 'gather' | 'read' | 'shape' | 'report';
+
+/** Milliseconds without a decision after which a re-fit follows. */
+const followsAfter = 1200;
 
 /** What a person is told in the line under the header. */
 export interface Message {
@@ -31,6 +41,9 @@ export class StudyState {
   /** Where Read should go next: set by other places, taken by Read. */
   goal = $state.raw<{ transcript: string; start: number; end: number } | null>(null);
   finding = $state(false);
+  /** A reading list that another place draws up: taken by Read. */
+  list = $state.raw<ReadingListRequest | null>(null);
+  #following: ReturnType<typeof setTimeout> | undefined;
 
   constructor(link: Watched) {
     this.link = link;
@@ -105,7 +118,24 @@ export class StudyState {
     const overview = await this.ask(method, takes);
     if (overview === undefined) return false;
     this.#take(overview as Overview);
+    this.#follow();
     return true;
+  }
+
+  /**
+   * A re-fit follows decisions that wait for one, where the study says so: a moment later, so that
+   * several in a row share it. Taking something back is no such decision, or it could not be done.
+   */
+  #follow(): void {
+    clearTimeout(this.#following);
+    const { followChanges, waiting } = this.#overview ?? { followChanges: false, waiting: [] };
+    if (!followChanges || waiting.length === 0) return;
+    this.#following = setTimeout(() => {
+      if (this.#progress !== null) this.#follow();
+      else if (this.#overview !== null && this.#overview.waiting.length > 0) {
+        void this.fit('re-fit');
+      }
+    }, followsAfter);
   }
 
   async undo(): Promise<void> {
@@ -162,6 +192,7 @@ export class StudyState {
 
   async #back(method: 'undo' | 'redo'): Promise<void> {
     this.hush();
+    clearTimeout(this.#following);
     const result = await this.ask(method, null);
     if (result === undefined) return;
     this.#take(result.overview);
@@ -189,6 +220,8 @@ export class StudyState {
   }
 
   #leave(): void {
+    clearTimeout(this.#following);
+    this.list = null;
     this.#overview = null;
     this.#message = null;
     this.theme = null;

@@ -129,6 +129,7 @@ export class Reading {
   get theme(): string | null {
     const passage = this.passage;
     if (passage === null) return this.#chosen ?? this.#study.theme;
+    if (this.#request.kind === 'earlier wording') return this.#chosen ?? this.#request.theme;
     const offered = passage.suggestions.map(({ theme }) => theme);
     const wanted = [this.#chosen, this.#request.theme];
     const found = wanted.find((theme) => theme !== null && offered.includes(theme));
@@ -155,10 +156,10 @@ export class Reading {
     }
     const { kind, unreadOnly, count, seed } = stopped;
     const theme = this.#themes[stopped.theme]?.id ?? null;
-    const needsFit = !['in order', 'random draw', 'one theme'].includes(kind);
+    const needsFit = !['in order', 'random draw', 'one theme', 'earlier wording'].includes(kind);
     const possible =
       (!needsFit || this.#study.overview?.fitted === true) &&
-      (kind !== 'one theme' || theme !== null);
+      ((kind !== 'one theme' && kind !== 'earlier wording') || theme !== null);
     const transcript = this.#names[stopped.only]?.id ?? null;
     await this.read(
       possible ? { kind, unreadOnly, count, seed, theme, transcript } : firstRequest,

@@ -72,6 +72,7 @@ export const overview: Overview = {
   refining: null,
   stale: false,
   waiting: [],
+  followChanges: false,
   undo: null,
   redo: null,
   reader: { id: 'r1', name: 'Ada' },

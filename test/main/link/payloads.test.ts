@@ -82,7 +82,7 @@ const samples: { readonly [Name in Method]: Api[Name]['takes'] } = {
   mergeThemes: { into: 'a', from: ['b'] },
   orderThemes: { themes: ['b', 'a'] },
   addHeading: { name: 'Getting about', themes: ['a'] },
-  renameHeading: { heading: 'h1', name: 'Travel' },
+  changeHeading: { heading: 'h1', name: 'Travel', themes: ['b'] },
   removeHeading: { heading: 'h1' },
   putUnder: { theme: 'a', heading: null },
   seedWord: { theme: 'a', word: 'boat', seeded: true },

@@ -119,7 +119,11 @@ describe('headings', () => {
     expect(heading.name).toBe('Getting about');
     expect(view.themes.map((row) => row.heading)).toEqual([heading.id, null]);
     await table.ask('putUnder', { theme: two.id, heading: heading.id });
-    await table.ask('renameHeading', { heading: heading.id, name: 'Travel' });
+    await table.ask('changeHeading', {
+      heading: heading.id,
+      name: 'Travel',
+      themes: [one.id, two.id],
+    });
     await table.ask('removeHeading', { heading: heading.id });
     view = await table.ask('shapeView', null);
     expect(view.headings).toEqual([]);
@@ -131,14 +135,16 @@ describe('headings', () => {
     expect(view.themes.map((row) => row.heading)).toEqual([heading.id, heading.id]);
     // No model: nothing waits for a re-fit.
     expect((await table.ask('overview', null))!.waiting).toEqual([]);
-    await table.ask('renameHeading', { heading: heading.id, name: 'Travel ' });
+    await table.ask('changeHeading', { heading: heading.id, name: 'Travel ', themes: [two.id] });
+    view = await table.ask('shapeView', null);
+    expect(view.themes.map((row) => row.heading)).toEqual([null, heading.id]);
     expect(await table.refused('addHeading', { name: 'travel', themes: [] })).toBe('name taken');
     expect(await table.refused('addHeading', { name: ' ', themes: [] })).toBe('empty name');
     expect(await table.refused('putUnder', { theme: one.id, heading: 'x' })).toBe(
       'unknown heading',
     );
     expect(await table.refused('removeHeading', { heading: 'x' })).toBe('unknown heading');
-    expect(await table.refused('renameHeading', { heading: 'x', name: 'A' })).toBe(
+    expect(await table.refused('changeHeading', { heading: 'x', name: 'A', themes: [] })).toBe(
       'unknown heading',
     );
   });

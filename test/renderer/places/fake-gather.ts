@@ -142,6 +142,7 @@ export function fakeGather(options: FakeOptions = {}): FakeLink {
       refining: null,
       stale: options.stale ?? false,
       waiting: [],
+      followChanges: false,
       undo: null,
       redo: null,
       reader: { id: 'reader-1', name: 'Ada' },
