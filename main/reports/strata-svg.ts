@@ -15,7 +15,7 @@ const quiet = '#58635c';
 const greys = ['#d9d6cc', '#e4e1d8', '#c9c6bb'];
 const width = 1200;
 const left = 190;
-const top = 84;
+const top = 104;
 const pitch = 26;
 const height = 18;
 /** Above this many corners the other layers are drawn as one, so that the file stays small. */
@@ -84,8 +84,9 @@ export function strataSvg(strata: Strata, { order, chosen, label, study }: Strat
       58,
       13,
       quiet,
-      shortened(`A band a transcript, from first word to last. ${inked}`, 175),
+      'A band a transcript, from first word to last, as long as it has words.',
     ),
+    written(20, 76, 13, quiet, shortened(inked, 175)),
     ...parts,
     '</svg>',
     '',
