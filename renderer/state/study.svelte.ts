@@ -32,6 +32,7 @@ export class StudyState {
   #overview = $state.raw<Overview | null>(null);
   #message = $state.raw<Message | null>(null);
   #progress = $state.raw<readonly FitProgress[] | null>(null);
+  #refining = $state<number | null>(null);
   #fitting: AbortController | null = null;
   #lost: string | null = null;
   #busy = $state(0);
@@ -54,6 +55,10 @@ export class StudyState {
     const ends = [
       this.link.on('changed', (overview) => this.#take(overview)),
       this.link.on('closed', () => this.#leave()),
+      this.link.on('refining', ({ fraction, said }) => {
+        this.#refining = fraction;
+        if (said !== null) this.say('caution', said);
+      }),
       this.link.onConnection?.((connection) => this.#connected(connection)) ?? (() => {}),
     ];
     void this.ask('overview', null).then((overview) => {
@@ -77,6 +82,11 @@ export class StudyState {
   /** The points of the running fit, or null where none runs. */
   get progress(): readonly FitProgress[] | null {
     return this.#progress;
+  }
+
+  /** How far the full answer behind the quick one is, 0 to 1; null where none is made. */
+  get refining(): number | null {
+    return this.#refining;
   }
 
   get busy(): boolean {
@@ -217,6 +227,7 @@ export class StudyState {
       if (overview.revision < current.revision) return;
     }
     this.#overview = overview;
+    this.#refining = overview.refining?.fraction ?? null;
   }
 
   #leave(): void {

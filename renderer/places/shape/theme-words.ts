@@ -17,3 +17,8 @@ export function percent(share: number): string {
 export function firstWords(theme: ThemeRowView): string {
   return theme.words.length === 0 ? theme.label : `${theme.words.slice(0, 3).join(', ')} …`;
 }
+
+/** A share, strength or cosine: two decimals, as in "0.91". */
+export function share(value: number): string {
+  return value.toFixed(2);
+}
