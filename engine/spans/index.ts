@@ -6,4 +6,5 @@ export {
   type Replacement,
   type Side,
 } from './replacements.ts';
+export { identifierKinds, type IdentifierKind } from './identifier-kind.ts';
 export type { Detail, Role, Turn } from './turn.ts';

@@ -1,4 +1,4 @@
-import type { Detail, Role, Span, Turn } from '../spans/index.ts';
+import type { Detail, IdentifierKind, Role, Span, Turn } from '../spans/index.ts';
 
 /** An id is minted outside the engine and never changes. */
 export type ReaderId = string;
@@ -85,22 +85,6 @@ export interface GuideQuestion {
   readonly id: QuestionId;
   readonly text: string;
 }
-
-export const identifierKinds = [
-  'person',
-  'place',
-  'organisation',
-  'e-mail',
-  'telephone',
-  'web',
-  'date',
-  'age',
-  'postcode',
-  'number',
-] as const;
-
-/** What kind of thing could tell who somebody is. */
-export type IdentifierKind = (typeof identifierKinds)[number];
 
 /** A stretch of one transcript. */
 export interface TranscriptPlace {

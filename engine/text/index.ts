@@ -1,4 +1,5 @@
 export { countedForm } from './counted-form.ts';
+export * from './identifiers/index.ts';
 export { guessInterviewers } from './interviewers.ts';
 export { isLanguage, languages, type Language } from './language.ts';
 export { passagesOf, type Passage } from './passages.ts';

@@ -1,5 +1,6 @@
+import { identifierKinds } from '../../spans/index.ts';
 import { done, refused, type Refusal } from '../refusal.ts';
-import { identifierKinds, type Identifier, type Study } from '../study.ts';
+import type { Identifier, Study } from '../study.ts';
 import { spanFault } from './codings.ts';
 import { sameJson, withEntry, withoutEntry, type Rules } from './rule.ts';
 
