@@ -87,7 +87,10 @@ function write(file, names) {
 }
 write('given-names.txt', givenNames);
 write('family-names.txt', familyNames);
-write('places.txt', [...places].filter((name) => name.length >= 3));
+write(
+  'places.txt',
+  [...places].filter((name) => name.length >= 3),
+);
 write(
   'words-eng.txt',
   [...ordinary].filter((w) => givenNames.has(w) || familyNames.has(w) || places.has(w)),

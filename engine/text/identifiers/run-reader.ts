@@ -215,7 +215,7 @@ export class RunReader {
       if (isGiven || known || (family.has(key) && (afterGiven || (!noun && known)))) {
         found.push({ kind: 'person', start, end });
         // "Ruths Haus" is no Mr Haus.
-        afterGiven = key === raw;
+        afterGiven = key === raw && !/s$/u.test(raw);
         continue;
       }
       afterGiven = false;
@@ -333,7 +333,7 @@ export class RunReader {
     return (
       this.#isGiven(words[0]!.key) &&
       institutionIn(words, this.#cues) === null &&
-      (this.#language !== 'deu' || this.#lists.family.has(word.key))
+      (this.#language !== 'deu' || (this.#lists.family.has(word.key) && !isGermanNoun(word.key)))
     );
   }
 
