@@ -6,6 +6,7 @@ import type {
   Method,
   Overview,
   ReadingListRequest,
+  Refused,
 } from '../../main/api.ts';
 import type { Connection, WindowLink } from '../link.ts';
 
@@ -21,6 +22,21 @@ const followsAfter = 1200;
 export interface Message {
   readonly kind: 'refused' | 'done' | 'caution';
   readonly text: string;
+}
+
+/** Refusals to open a study that are no dead end. */
+export const troubles = [
+  'noted elsewhere',
+  'open elsewhere',
+  'damaged',
+  'cannot lock',
+  'not allowed',
+] as const;
+
+export interface Trouble {
+  readonly code: (typeof troubles)[number];
+  readonly text: string;
+  readonly path: string;
 }
 
 /**
@@ -45,6 +61,9 @@ export class StudyState {
   /** A reading list that another place draws up: taken by Read. */
   list = $state.raw<ReadingListRequest | null>(null);
   #following: ReturnType<typeof setTimeout> | undefined;
+  /** A study that did not open, and to which there is another way. */
+  trouble = $state.raw<Trouble | null>(null);
+  #refusal: Refused | null = null;
 
   constructor(link: Watched) {
     this.link = link;
@@ -59,6 +78,7 @@ export class StudyState {
         this.#refining = fraction;
         if (said !== null) this.say('caution', said);
       }),
+      this.link.on('caution', (sentence) => this.say('caution', sentence)),
       this.link.onConnection?.((connection) => this.#connected(connection)) ?? (() => {}),
     ];
     void this.ask('overview', null).then((overview) => {
@@ -112,6 +132,7 @@ export class StudyState {
     try {
       const answer = await this.link.call(method, takes, options);
       if ('value' in answer) return answer.value;
+      this.#refusal = answer;
       this.say('refused', answer.refused);
       return undefined;
     } finally {
@@ -157,7 +178,7 @@ export class StudyState {
   }
 
   /** Opens, starts or shows a study; true where one is open afterwards. */
-  async enter<Name extends 'openDemo' | 'openStudy' | 'startStudy'>(
+  async enter<Name extends 'openDemo' | 'openStudy' | 'startStudy' | 'openBackup'>(
     method: Name,
     takes: Api[Name]['takes'],
   ): Promise<boolean> {
@@ -165,12 +186,28 @@ export class StudyState {
     this.#progress = method === 'openDemo' ? [] : null;
     const overview = await this.ask(method, takes, { onProgress: (point) => this.#trace(point) });
     this.#progress = null;
+    if (overview === undefined) this.#seeTrouble();
     if (overview === undefined || overview === null) return false;
+    this.show(overview);
+    return true;
+  }
+
+  /** Another study is open now, or the same from another file. */
+  show(overview: Overview, stay = false): void {
+    this.trouble = null;
     this.#overview = overview;
+    if (stay) return;
     this.theme = null;
     this.goal = null;
     this.place = overview.fitted ? 'shape' : 'gather';
-    return true;
+  }
+
+  #seeTrouble(): void {
+    const { code = '', refused: text = '', path } = this.#refusal ?? {};
+    const known = troubles.find((one) => one === code);
+    if (known === undefined || path === undefined) return;
+    this.hush();
+    this.trouble = { code: known, text, path };
   }
 
   async close(): Promise<void> {
