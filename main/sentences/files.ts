@@ -1,9 +1,10 @@
+import { timeInWords } from './time.ts';
 import type { StudyFileFailure, StudyFileCode } from '../project/index.ts';
 
 type Say = (failure: StudyFileFailure) => string;
 
 const owner = ({ owner: who }: StudyFileFailure): string =>
-  who === undefined ? '' : ` (${who.name} on ${who.host}, since ${who.since})`;
+  who === undefined ? '' : ` (${who.name} on ${who.host}, since ${timeInWords(who.since)})`;
 
 const file = ({ path }: StudyFileFailure): string => `“${path}”`;
 

@@ -1,9 +1,13 @@
 import type { Edit } from '../../engine/study/index.ts';
 import type { Missing } from '../recovered.ts';
 import { editInWords, type Names } from './edits.ts';
+import { timeInWords } from './time.ts';
 
 /** What is missing from a recovered study, by the decision that speaks of it where one does. */
-export function missingInWords({ sequence, kind, of, after, before }: Missing): string {
+export function missingInWords(missing: Missing): string {
+  const { sequence, kind, of } = missing;
+  const after = missing.after === null ? null : timeInWords(missing.after);
+  const before = missing.before === null ? null : timeInWords(missing.before);
   const record = `record ${sequence}`;
   if (of !== null) return `${contentOf(of)} (${record})`;
   if (kind === 'seal') return `what was removed on purpose, and why (${record})`;
@@ -16,7 +20,7 @@ export function missingInWords({ sequence, kind, of, after, before }: Missing): 
 }
 
 export function leftOutInWords(edit: Edit, at: string, names: Names): string {
-  return `${editInWords(edit, names)} (${at})`;
+  return `${editInWords(edit, names)} (${timeInWords(at)})`;
 }
 
 function contentOf(edit: Edit): string {

@@ -33,7 +33,7 @@ for (const colorScheme of ['light', 'dark'] as const) {
       await page.goto(await app.address());
       const found: string[] = [];
       for (const scene of scenes) {
-        await scene.reach(page);
+        await scene.reach(page, app.home);
         await page.waitForTimeout(150);
         await page.evaluate(axe);
         const violations = (await page.evaluate(

@@ -1,9 +1,13 @@
+import { closeSync, openSync, readFileSync, rmSync, writeFileSync, writeSync } from 'node:fs';
+import { join } from 'node:path';
 import type { Page } from 'playwright-core';
+import { nameBeside } from '../../main/project/name-beside.ts';
 
 /** A view worth looking at: reached from the one before in the same window. */
 export interface Scene {
   readonly name: string;
-  readonly reach: (page: Page) => Promise<unknown>;
+  /** `home` is the person's home folder, for what lies beside a study. */
+  readonly reach: (page: Page, home: string) => Promise<unknown>;
 }
 
 const button = (page: Page, name: string | RegExp) => page.getByRole('button', { name });
@@ -13,6 +17,12 @@ const closeDialog = async (page: Page): Promise<void> => {
   await page.keyboard.press('Escape');
   await page.getByRole('dialog').waitFor({ state: 'detached' });
 };
+const fromStudy = async (page: Page, item: string): Promise<void> => {
+  await button(page, /^Study/u).click();
+  await page.getByRole('menuitem', { name: item }).click();
+};
+const emptyStudy = (home: string): string =>
+  join(home, 'Documents', 'Understory', 'An empty study.understory');
 const fromMore = async (page: Page, item: string): Promise<void> => {
   await button(page, /^More/u).click();
   await page.getByRole('menuitem', { name: item }).click();
@@ -51,6 +61,39 @@ export const scenes: readonly Scene[] = [
     },
   },
   {
+    name: 'study-save-as',
+    reach: async (page) => {
+      await closeDialog(page);
+      await fromStudy(page, 'Save as …');
+      await page.getByRole('dialog').waitFor();
+    },
+  },
+  {
+    name: 'study-backups',
+    reach: async (page) => {
+      await closeDialog(page);
+      await fromStudy(page, 'Backups …');
+      await button(page, /^Open a copy of backup/u)
+        .first()
+        .waitFor();
+    },
+  },
+  {
+    name: 'study-backups-remove',
+    reach: (page) =>
+      button(page, /^Remove backup/u)
+        .first()
+        .click(),
+  },
+  {
+    name: 'study-compact',
+    reach: async (page) => {
+      await closeDialog(page);
+      await fromStudy(page, 'Compact the file …');
+      await page.getByText('Nothing can go').waitFor();
+    },
+  },
+  {
     name: 'first-run-open',
     reach: async (page) => {
       await closeDialog(page);
@@ -61,9 +104,39 @@ export const scenes: readonly Scene[] = [
     },
   },
   {
+    name: 'open-noted',
+    reach: async (page, home) => {
+      const owner = { host: 'north-office', name: 'ruth', since: '2026-02-01T09:00:00.000Z' };
+      writeFileSync(nameBeside(emptyStudy(home), 'open'), JSON.stringify(owner));
+      await button(page, 'Open').last().click();
+      await button(page, 'Open for writing all the same').waitFor();
+    },
+  },
+  {
+    name: 'open-damaged',
+    reach: async (page, home) => {
+      await closeDialog(page);
+      const file = emptyStudy(home);
+      rmSync(nameBeside(file, 'open'));
+      const handle = openSync(file, 'r+');
+      writeSync(handle, 'damage!', readFileSync(file).length - 20);
+      closeSync(handle);
+      await page.getByRole('button', { name: /^An empty study/u }).click();
+      await button(page, 'Recover into a new file').waitFor();
+    },
+  },
+  {
+    name: 'recovered',
+    reach: async (page) => {
+      await button(page, 'Recover into a new file').click();
+      await button(page, 'Go on in the new file').waitFor();
+    },
+  },
+  {
     name: 'shape',
     reach: async (page) => {
-      await closeDialog(page);
+      await button(page, 'Go on in the new file').click();
+      await fromStudy(page, 'Close the study');
       await button(page, 'Open the demo study').click();
       await page.getByRole('heading', { name: 'Strata' }).waitFor({ timeout: 120_000 });
       await page.getByText('Strongest passages').waitFor();

@@ -21,7 +21,7 @@ for (const colorScheme of ['light', 'dark'] as const) {
         page.on('pageerror', (error) => faults.push(error.message));
         await page.goto(await app.address());
         for (const [index, scene] of scenes.entries()) {
-          await scene.reach(page);
+          await scene.reach(page, app.home);
           await page.waitForTimeout(250);
           const number = String(index + 1).padStart(2, '0');
           await page.screenshot({
