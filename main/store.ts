@@ -15,7 +15,7 @@ export interface Store {
  */
 export class BufferedStore implements Store {
   readonly #base: Store | null;
-  readonly #acts: { blobs: readonly Uint8Array[]; edit: unknown }[] = [];
+  readonly #acts: { sequence: number; blobs: readonly Uint8Array[]; edit: unknown }[] = [];
   readonly #blobs = new Map<number, Uint8Array>();
   #next: number;
 
@@ -39,7 +39,7 @@ export class BufferedStore implements Store {
         return this.#next++;
       });
       const sequence = this.#next++;
-      this.#acts.push({ blobs, edit: edit(own, sequence) });
+      this.#acts.push({ sequence, blobs, edit: edit(own, sequence) });
       return sequence;
     });
     return { ok: true, value: sequences };
@@ -50,6 +50,15 @@ export class BufferedStore implements Store {
     if (own !== undefined) return own;
     if (this.#base === null) throw new Error(`BufferedStore.readBlob: no blob ${sequence}`);
     return this.#base.readBlob(sequence);
+  }
+
+  /** Everything kept back, in order, each edit with its number. */
+  get kept(): readonly {
+    readonly sequence: number;
+    readonly blobs: readonly Uint8Array[];
+    readonly edit: unknown;
+  }[] {
+    return this.#acts;
   }
 
   /** Hands everything kept back to `target`, whose numbering must go on from the same number. */
