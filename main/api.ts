@@ -743,6 +743,95 @@ export interface Found {
   })[];
 }
 
+export interface VerifyView {
+  readonly outcome: 'holds' | 'differs' | 'not checked';
+  readonly sentence: string;
+  /** What is wrong with the file or the trail, a sentence each. */
+  readonly faults: readonly string[];
+  /** A line a fit. */
+  readonly fits: readonly string[];
+  /** What was found of the noted hash, or what cannot be known without one. */
+  readonly noted: string;
+  /** The chain's last hash; empty where the file is damaged. */
+  readonly head: string;
+}
+
+export interface TrailRequest {
+  readonly by: string | null;
+  readonly kind: string | null;
+  /** The beginning of a time, ISO 8601. */
+  readonly since: string | null;
+  readonly theme: string | null;
+}
+
+export interface TrailView {
+  readonly head: string;
+  /** How many decisions there are in all. */
+  readonly of: number;
+  readonly readers: readonly string[];
+  readonly kinds: readonly { readonly kind: string; readonly label: string }[];
+  /** Newest first. */
+  readonly lines: readonly {
+    readonly record: number;
+    readonly at: string;
+    readonly by: string;
+    readonly heading: string;
+    readonly what: string;
+    readonly on: readonly string[];
+    readonly undoes: number | null;
+    readonly takenBack: boolean;
+  }[];
+}
+
+export interface WithdrawalRequestView {
+  readonly participant: string;
+  /** Names by which others speak of the person. */
+  readonly names: readonly string[];
+}
+
+/** What a withdrawal takes away. */
+export interface WithdrawalView {
+  readonly participant: string;
+  readonly transcripts: readonly string[];
+  /** Transcripts with others, in which their turns lose their words. */
+  readonly shared: readonly string[];
+  readonly codings: number;
+  readonly memos: number;
+  readonly fits: number;
+  readonly exported: readonly string[];
+  readonly names: readonly string[];
+  /** Where the names stand besides, in words. */
+  readonly mentions: readonly string[];
+  readonly beyondReach: string;
+}
+
+/** What a seal takes away. */
+export interface SealView {
+  readonly transcripts: readonly string[];
+  readonly wordings: number;
+  readonly originals: number;
+  readonly fits: number;
+  readonly exported: readonly string[];
+  readonly names: readonly {
+    readonly name: string;
+    readonly standIn: string;
+    readonly person: boolean;
+    readonly mentions: readonly string[];
+  }[];
+  readonly beyondReach: string;
+}
+
+/** What an act of erasing came to. */
+export interface ErasedView {
+  readonly overview: Overview;
+  readonly records: number;
+  readonly fits: number;
+  readonly refitted: boolean;
+  readonly backupsRemoved: number;
+  /** Why backups that hold what was erased are still there. */
+  readonly backupsLeft: readonly string[];
+}
+
 /** How a decision about a passage came about: stored with it. */
 export interface UnderView {
   /** The reading list's name. */
@@ -946,6 +1035,18 @@ export interface Api {
   find: { takes: { text: string }; gives: Found };
   reportPreview: { takes: ReportRequest; gives: ReportPreview };
   report: { takes: ReportRequest & { format: ReportFormat }; gives: NamedFile };
+  /** Reads every byte, makes every fit again and compares; reports progress, can be cancelled. */
+  verifyStudy: { takes: { head: string | null }; gives: VerifyView };
+  trailView: { takes: TrailRequest; gives: TrailView };
+  trailFile: { takes: TrailRequest & { format: 'csv' | 'markdown' }; gives: NamedFile };
+  withdrawalView: { takes: WithdrawalRequestView; gives: WithdrawalView };
+  /** Erases for good; with `refit` the study is fitted again first, which reports progress. */
+  withdrawParticipant: { takes: WithdrawalRequestView & { refit: boolean }; gives: ErasedView };
+  /** Null where there is nothing to seal. */
+  sealView: { takes: null; gives: SealView | null };
+  /** `names`: originals that are replaced by their stand-ins wherever they stand. */
+  sealOriginals: { takes: { names: readonly string[]; refit: boolean }; gives: ErasedView };
+
   /** Shows the system's dialog and writes the file; the path, or null where cancelled. */
   saveFile: { takes: NamedFile; gives: string | null };
 }
@@ -1050,6 +1151,13 @@ export const methods = [
   'find',
   'reportPreview',
   'report',
+  'verifyStudy',
+  'trailView',
+  'trailFile',
+  'withdrawalView',
+  'withdrawParticipant',
+  'sealView',
+  'sealOriginals',
   'saveFile',
 ] as const satisfies readonly Method[];
 

@@ -75,10 +75,7 @@ export async function withdrawCommand(
 }
 
 /** Seals the originals behind stand-ins; without --yes it only says what would go. */
-export async function sealCommand(
-  words: readonly string[],
-  terminal: Terminal,
-): Promise<ExitCode> {
+export async function sealCommand(words: readonly string[], terminal: Terminal): Promise<ExitCode> {
   const { values, positionals } = readOptions(words, shared, sealUsage);
   if (positionals.length !== 1) throw usageStop('Name one study.', sealUsage);
   const yes = values.yes === true;
@@ -101,10 +98,16 @@ export async function sealCommand(
           .join(''),
     );
     if (!yes) return notYet(terminal);
-    const done = await seal(file, desk, desk.context, { names }, {
-      refit: values['no-refit'] !== true,
-      fit: fitting(terminal),
-    });
+    const done = await seal(
+      file,
+      desk,
+      desk.context,
+      { names },
+      {
+        refit: values['no-refit'] !== true,
+        fit: fitting(terminal),
+      },
+    );
     return finished(done, file, terminal);
   } finally {
     file.close();

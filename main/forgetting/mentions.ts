@@ -23,6 +23,7 @@ export interface Mention {
     | 'memo on a coding'
     | 'setting'
     | 'stand-in'
+    | 'field note'
     | 'the trail';
   /** What it stands in or on, as a person calls it. */
   readonly on: string;
@@ -34,7 +35,7 @@ export interface Mention {
  * in any case; a nickname, an initial or a misspelling is not found.
  */
 export function mentionsOf(
-  desk: Pick<Desk, 'study' | 'text' | 'entries'>,
+  desk: Pick<Desk, 'study' | 'text' | 'entries' | 'store'>,
   names: readonly string[],
   except: ReadonlySet<string>,
 ): Mention[] {
@@ -82,6 +83,11 @@ export function mentionsOf(
   }
   for (const { forms, replacement } of study.identifiers.values()) {
     look('stand-in', replacement ?? 'a name that was left', ...forms, replacement ?? '');
+  }
+  for (const { name, transcript, text } of study.fieldNotes.values()) {
+    if (transcript !== null && except.has(transcript)) continue;
+    const note = Buffer.from(desk.store.readBlob(text.sequence)).toString('utf8');
+    look('field note', name, name, note);
   }
   const earlier = [...desk.entries].filter((entry) => speaksOf(entry, finder)).length;
   if (earlier > 0) found.push({ where: 'the trail', on: 'earlier decisions', count: earlier });

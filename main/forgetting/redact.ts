@@ -93,6 +93,11 @@ function goes(edit: Edit, { transcripts, fits }: Redaction, decided: ReadonlySet
     }
     case 'memoRevised':
       return decided.has(edit.memo);
+    case 'fieldNoteKept':
+    case 'fieldNoteLetGo':
+      return decided.has(edit.note.id);
+    case 'fieldNoteDescribed':
+      return decided.has(edit.note);
     case 'evidenceGathered':
       return fits.has(edit.fit);
     default:
@@ -105,8 +110,8 @@ function goes(edit: Edit, { transcripts, fits }: Redaction, decided: ReadonlySet
 }
 
 /**
- * Codings, nones and memos that ever lay on the person's turns of a shared transcript, and memos on
- * transcripts that go: later edits name these by their ids alone.
+ * Codings, nones and memos that ever lay on the person's turns of a shared transcript, and memos and
+ * field notes on transcripts that go: later edits name these by their ids alone.
  */
 function idsOnSharedTurns(
   entries: readonly Entry[],
@@ -135,6 +140,11 @@ function idsOnSharedTurns(
       const { subject, id } = edit.memo;
       if (subject.kind === 'passage') look(subject.transcript, subject.span, id);
       if ('transcript' in subject && transcripts.has(subject.transcript)) ids.add(id);
+    } else if (edit.kind === 'fieldNoteKept') {
+      if (transcripts.has(edit.note.transcript ?? '')) ids.add(edit.note.id);
+    } else if (edit.kind === 'fieldNoteDescribed') {
+      if (transcripts.has(edit.to.transcript ?? '')) ids.add(edit.note);
+      else ids.delete(edit.note);
     }
   }
   return ids;

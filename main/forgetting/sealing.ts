@@ -31,6 +31,9 @@ export type SealPlanned =
   | { readonly ok: true; readonly value: SealPlan }
   | { readonly ok: false; readonly code: 'nothing to seal' };
 
+/** The list of stand-ins itself forgets its originals, and so do the edits that made it. */
+const goesAnyway: ReadonlySet<Mention['where']> = new Set(['stand-in', 'the trail']);
+
 /** What would go, before anything does. */
 export function planSeal(file: StudyFile, desk: Desk): SealPlanned {
   const { study } = desk;
@@ -43,7 +46,7 @@ export function planSeal(file: StudyFile, desk: Desk): SealPlanned {
   }
   const names = namesOf(replaced)
     .map((each) => ({ ...each, mentions: mentionsOf(desk, [each.name], new Set()) }))
-    .filter(({ mentions }) => mentions.some(({ where }) => where !== 'stand-in'));
+    .filter(({ mentions }) => mentions.some(({ where }) => !goesAnyway.has(where)));
   return {
     ok: true,
     value: {

@@ -48,6 +48,13 @@ const reportRequest = {
   guard: v.boolean(),
 };
 
+const trailRequest = {
+  by: v.nullable(name),
+  kind: v.nullable(name),
+  since: v.nullable(name),
+  theme: v.nullable(id),
+};
+
 /** How the payload of each method is read from an unknown value. */
 export const payloads = {
   about: nothing,
@@ -200,6 +207,13 @@ export const payloads = {
     ...reportRequest,
     format: v.picklist(['csv', 'json', 'html', 'docx', 'themes csv', 'methods']),
   }),
+  verifyStudy: v.strictObject({ head: v.nullable(name) }),
+  trailView: v.strictObject(trailRequest),
+  trailFile: v.strictObject({ ...trailRequest, format: v.picklist(['csv', 'markdown']) }),
+  withdrawalView: v.strictObject({ participant: id, names: words }),
+  withdrawParticipant: v.strictObject({ participant: id, names: words, refit: v.boolean() }),
+  sealView: nothing,
+  sealOriginals: v.strictObject({ names: words, refit: v.boolean() }),
   saveFile: v.strictObject({ fileName: id, bytes }),
 } as const satisfies {
   readonly [Name in Method]: v.GenericSchema<unknown, Api[Name]['takes']>;

@@ -7,8 +7,7 @@ export const beyondReach =
   'synchronised folder, copies elsewhere, reports that were saved or sent, and what a drive still ' +
   'holds of deleted files are not.';
 
-export const noWayBack =
-  'This cannot be undone, and nothing before it can be undone afterwards.';
+export const noWayBack = 'This cannot be undone, and nothing before it can be undone afterwards.';
 
 export function mentionInWords({ where, on, count }: Mention): string {
   const times = count === 1 ? '' : ` (${count} times)`;
@@ -23,6 +22,8 @@ export function mentionInWords({ where, on, count }: Mention): string {
     case 'name of a participant':
     case 'name of a theme':
       return `the ${where} ${on}`;
+    case 'field note':
+      return `the field note ${on}${times}, whose text is left as it is: let it go, or keep it knowingly`;
     case 'setting':
       return `a setting, ${on}${times}`;
     case 'heading':
@@ -49,6 +50,5 @@ export const forgettingSentences = {
     'What would be left does not follow from one another any more, so nothing was erased; leave one of the names out, then try again.',
   'nothing to seal':
     'No transcript was reworded and no name has a stand-in, so there are no originals to seal; put stand-ins in place first.',
-  'names remain':
-    'Nothing was chosen to be erased; choose a person.',
+  'names remain': 'Nothing was chosen to be erased; choose a person.',
 } as const;

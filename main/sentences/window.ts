@@ -52,6 +52,10 @@ export const windowSentences = {
   'no files': () => 'No files were handed over; choose at least one.',
   'order out of date': () =>
     'The list of themes changed in the meantime; look at it again, then put it in order.',
+  'erased for good': () =>
+    'Something was erased for good, so nothing up to then can be taken back; go on from here.',
+  'no chain hash': (s) =>
+    `This is no hash of the chain; paste the ${s} to 64 digits from 0 to f that a report prints.`,
   'passage limits': () =>
     'The shortest passage must be shorter than the longest; change one of the two numbers.',
 } satisfies Record<string, Say>;

@@ -1,5 +1,6 @@
 import { exportExcerpts, exportUsage } from '../commands/export.ts';
 import { endingOf } from '../commands/fault.ts';
+import { sealCommand, sealUsage, withdrawCommand, withdrawUsage } from '../commands/forgetting.ts';
 import { howMany, howManyUsage } from '../commands/how-many.ts';
 import { moved, movedUsage } from '../commands/moved.ts';
 import { refit, refitUsage } from '../commands/refit.ts';
@@ -20,6 +21,8 @@ const commands: Record<string, Command> = {
   howmany: howMany,
   verify: verifyStudy,
   trail,
+  withdraw: withdrawCommand,
+  seal: sealCommand,
 };
 
 const help = `Understory: theme and code interview transcripts on this machine alone.
@@ -43,6 +46,10 @@ const help = `Understory: theme and code interview transcripts on this machine a
       exit code 0: all holds, 1: something differs or was tampered with, 3: could not be checked
   ${trailUsage}
       prints who decided what, when and on what, or writes it under the headings of an audit trail
+  ${withdrawUsage}
+      erases a participant's text, codings, memos and attributes for good; says first what goes
+  ${sealUsage}
+      erases the originals behind stand-ins for good; says first what goes
 
 Run it as: npm run -s understory -- theme resources/demo --themes 12 --seed 1 --out demo-themes
 `;

@@ -101,8 +101,13 @@ export class OpenStudy {
   }
 
   close(): void {
-    this.closing.abort();
+    this.leave();
     this.file.close();
+  }
+
+  /** Ends what goes on here; the file stays open for whoever has it next. */
+  leave(): void {
+    this.closing.abort();
   }
 
   #inWords(subject: string): string {

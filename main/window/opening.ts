@@ -155,6 +155,24 @@ async function take(room: Room, file: StudyFile): Promise<Answer<Overview>> {
   return enter(room, open);
 }
 
+/** Shows the study of an open file anew, after its records were changed under the desk. */
+export async function loadAgain(
+  room: Room,
+  before: OpenStudy,
+): Promise<{ readonly value: Overview } | Refused> {
+  const { readerName, now } = room.surroundings;
+  const open = new OpenStudy(before.file, { accountName: readerName, now });
+  const fault = load(open);
+  if (fault !== null) {
+    closeStudy(room);
+    return fault;
+  }
+  if (open.study.readers.has(before.reader.id)) open.chooseReader(before.reader.id);
+  before.leave();
+  room.open = open;
+  return room.afterwards(open);
+}
+
 function load({ desk, file }: OpenStudy): Refused | null {
   const name = basename(file.path, ending);
   try {

@@ -43,7 +43,13 @@ export function reportHandlers(
 
     report: room.look(async (open, request: Api['report']['takes']) => {
       const excerpts = excerptsFor(open, request);
-      return isRefused(excerpts) ? excerpts : reportFile(open, request, excerpts);
+      if (isRefused(excerpts)) return excerpts;
+      const file = await reportFile(open, request, excerpts);
+      if (isRefused(file) || open.file.readOnly) return file;
+      const refused = recordExport(open, request.format, file.value.fileName, excerpts);
+      if (refused !== null) return refused;
+      const after = await room.afterwards(open);
+      return isRefused(after) ? after : file;
     }),
 
     saveFile: async ({ fileName, bytes }) => {
@@ -55,6 +61,47 @@ export function reportHandlers(
       return failure === null ? give(path) : { code: failure.code, refused: sentenceFor(failure) };
     },
   };
+}
+
+/** Whose words left the study has to be known if one of them withdraws. */
+function recordExport(
+  open: OpenStudy,
+  format: ReportFormat,
+  fileName: string,
+  excerpts: readonly CodedExcerpt[],
+): Refused | null {
+  const { study, reader, desk } = open;
+  const quotes = format !== 'themes csv' && format !== 'methods';
+  const named = <Item extends { readonly id: string; readonly name: string }>(
+    items: ReadonlyMap<string, Item>,
+    names: readonly string[],
+  ): string[] => {
+    const wanted = new Set(names);
+    return [...items.values()].filter(({ name }) => wanted.has(name)).map(({ id }) => id);
+  };
+  return open.decide([
+    {
+      kind: 'reportExported',
+      report: {
+        what: format,
+        fileName,
+        transcripts: quotes
+          ? named(
+              study.transcripts,
+              excerpts.map(({ transcript }) => transcript),
+            )
+          : [],
+        participants: quotes
+          ? named(
+              study.participants,
+              excerpts.map(({ participant }) => participant),
+            )
+          : [],
+        at: desk.context.now(),
+        reader: reader.id,
+      },
+    },
+  ]);
 }
 
 const kept = new WeakMap<OpenStudy, Map<string, Kept<CodedExcerpt[]>>>();

@@ -1,8 +1,10 @@
 import type { Strata } from '../api.ts';
-import { give } from './answers.ts';
+import { closesTrail } from '../../engine/study/index.ts';
+import { give, refuse } from './answers.ts';
 import { evidenceHandlers } from './evidence.ts';
 import { find } from './find.ts';
 import { fitHandlers } from './fits.ts';
+import { forgettingHandlers } from './forgetting.ts';
 import { gatheringHandlers } from './gathering.ts';
 import { headingHandlers } from './headings.ts';
 import { redoInWords, undoInWords } from './history.ts';
@@ -11,6 +13,7 @@ import { keepingHandlers } from './keeping.ts';
 import { recoveringHandlers } from './recovering.ts';
 import { closeStudy, openingHandlers, openStudy } from './opening.ts';
 import type { OpenStudy } from './open-study.ts';
+import { provingHandlers } from './proving.ts';
 import { readingHandlers } from './reading.ts';
 import { reportHandlers } from './report.ts';
 import { Room } from './room.ts';
@@ -43,6 +46,8 @@ export function createSession(surroundings: Surroundings): Session {
     ...headingHandlers(room),
     ...readingHandlers(room),
     ...reportHandlers(room),
+    ...provingHandlers(room),
+    ...forgettingHandlers(room),
     undo: room.look((open) => takeBack(room, open, 'undo')),
     redo: room.look((open) => takeBack(room, open, 'redo')),
     shapeView: room.look<null, ReturnType<typeof shapeView>>((open) => give(shapeView(open))),
@@ -69,10 +74,18 @@ export function createSession(surroundings: Surroundings): Session {
 
 async function takeBack(room: Room, open: OpenStudy, which: 'undo' | 'redo') {
   const did = which === 'undo' ? undoInWords(open) : redoInWords(open);
+  if (did === null && which === 'undo' && isClosed(open)) return refuse('erased for good');
   const made = did === null ? null : open.desk[which]();
   if (made !== null && !made.ok) return open.refusal(made);
   const after = await room.afterwards(open);
   return 'refused' in after
     ? after
     : give({ did: made === null ? null : did, overview: after.value });
+}
+
+/** Whether what could be undone ends at an act of erasing. */
+function isClosed({ study, desk }: OpenStudy): boolean {
+  if (study.undo !== null) return false;
+  for (const { edit } of desk.entries) if (closesTrail(edit.kind)) return true;
+  return false;
 }

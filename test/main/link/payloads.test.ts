@@ -108,6 +108,13 @@ const samples: { readonly [Name in Method]: Api[Name]['takes'] } = {
   find: { text: 'boat' },
   reportPreview: { standings: ['confirmed'], themes: null, guard: true },
   report: { standings: ['by hand'], themes: ['a'], guard: false, format: 'themes csv' },
+  verifyStudy: { head: null },
+  trailView: { by: null, kind: null, since: null, theme: null },
+  trailFile: { by: 'Ada', kind: 'codingMade', since: '2026', theme: 'a', format: 'csv' },
+  withdrawalView: { participant: 'p', names: ['Ruth'] },
+  withdrawParticipant: { participant: 'p', names: [], refit: true },
+  sealView: null,
+  sealOriginals: { names: ['Ruth'], refit: false },
   saveFile: { fileName: 'excerpts.csv', bytes },
 };
 
