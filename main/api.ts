@@ -694,6 +694,13 @@ export interface MovedView {
   readonly gone: readonly string[];
 }
 
+/** What moves between a fit and a re-fit of it without any new decision. */
+export interface MovedFloor {
+  readonly passages: number;
+  /** Themes that gained or lost words among their first ones. */
+  readonly themes: number;
+}
+
 export type ReportStanding = 'confirmed' | 'by hand' | 'suggested' | 'rejected';
 export type ReportFormat = 'csv' | 'json' | 'html' | 'docx' | 'themes csv' | 'methods';
 
@@ -934,6 +941,8 @@ export interface Api {
    */
   fit: { takes: FitRequest; gives: { overview: Overview; moved: MovedView | null } };
   moved: { takes: null; gives: MovedView | null };
+  /** What a re-fit moves by itself; null where the fit on screen is no re-fit. Takes a moment. */
+  movedFloor: { takes: null; gives: MovedFloor | null };
   chooseFit: { takes: { fit: string }; gives: Overview };
   /** An empty name takes it away. */
   nameFit: { takes: { fit: string; name: string }; gives: Overview };
@@ -1106,6 +1115,7 @@ export const methods = [
   'changeSettings',
   'fit',
   'moved',
+  'movedFloor',
   'chooseFit',
   'nameFit',
   'compareFits',

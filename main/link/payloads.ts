@@ -112,6 +112,7 @@ export const payloads = {
     themes: v.nullable(count),
   }),
   moved: nothing,
+  movedFloor: nothing,
   chooseFit: v.strictObject({ fit: id }),
   nameFit: v.strictObject({ fit: id, name }),
   compareFits: v.strictObject({ first: id, second: id }),

@@ -11,6 +11,7 @@ import { redoInWords, undoInWords } from './history.ts';
 import { mergePreview } from './merge-preview.ts';
 import { keepingHandlers } from './keeping.ts';
 import { recoveringHandlers } from './recovering.ts';
+import { movedFloor } from './moved-floor.ts';
 import { closeStudy, openingHandlers, openStudy } from './opening.ts';
 import type { OpenStudy } from './open-study.ts';
 import { provingHandlers } from './proving.ts';
@@ -56,6 +57,7 @@ export function createSession(surroundings: Surroundings): Session {
     themeView: room.look(themeView),
     themePassages: room.look(themePassages),
     themeSpread: room.look(themeSpread),
+    movedFloor: room.look(movedFloor),
     mergePreview: room.look(mergePreview),
     seedCheck: room.look(seedCheck),
     wordView: room.look(wordView),

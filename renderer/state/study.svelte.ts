@@ -5,6 +5,7 @@ import type {
   Link,
   Method,
   Overview,
+  PassagePlace,
   ReadingListRequest,
   Refused,
 } from '../../main/api.ts';
@@ -60,6 +61,8 @@ export class StudyState {
   finding = $state(false);
   /** A reading list that another place draws up: taken by Read. */
   list = $state.raw<ReadingListRequest | null>(null);
+  /** Passages marked for a theme to be made from them, in the order in which they were marked. */
+  marked = $state.raw<readonly PassagePlace[]>([]);
   #following: ReturnType<typeof setTimeout> | undefined;
   /** A study that did not open, and to which there is another way. */
   trouble = $state.raw<Trouble | null>(null);
@@ -111,6 +114,20 @@ export class StudyState {
 
   get busy(): boolean {
     return this.#busy > 0;
+  }
+
+  isMarked({ transcript, start, end }: PassagePlace): boolean {
+    return this.marked.some(
+      (one) => one.transcript === transcript && one.start === start && one.end === end,
+    );
+  }
+
+  mark(place: PassagePlace, marked: boolean): void {
+    const { transcript, start, end } = place;
+    const others = this.marked.filter(
+      (one) => one.transcript !== transcript || one.start !== start || one.end !== end,
+    );
+    this.marked = marked ? [...others, { transcript, start, end }] : others;
   }
 
   say(kind: Message['kind'], text: string): void {
@@ -199,6 +216,7 @@ export class StudyState {
     if (stay) return;
     this.theme = null;
     this.goal = null;
+    this.marked = [];
     this.place = overview.fitted ? 'shape' : 'gather';
   }
 
@@ -270,6 +288,7 @@ export class StudyState {
   #leave(): void {
     clearTimeout(this.#following);
     this.list = null;
+    this.marked = [];
     this.#overview = null;
     this.#message = null;
     this.theme = null;

@@ -204,6 +204,71 @@ export const scenes: readonly Scene[] = [
     },
   },
   {
+    name: 'shape-heading',
+    reach: async (page) => {
+      await closeDialog(page);
+      await fromMore(page, 'Put under a heading …');
+      await page.getByLabel('Name', { exact: true }).fill('Getting about');
+    },
+  },
+  {
+    name: 'shape-headed',
+    reach: async (page) => {
+      await button(page, 'Add the heading').click();
+      await page.getByRole('dialog').waitFor({ state: 'detached' });
+      await page.getByRole('heading', { name: 'Under no heading' }).waitFor();
+    },
+  },
+  {
+    name: 'shape-wordings',
+    reach: async (page) => {
+      await button(page, 'See the earlier ones').click();
+      await page.getByRole('dialog').waitFor();
+    },
+  },
+  {
+    name: 'shape-for-whom',
+    reach: async (page) => {
+      await closeDialog(page);
+      await page.getByText('For whom, and after which question').click();
+      await page.getByText('After which question', { exact: true }).waitFor();
+    },
+  },
+  {
+    name: 'shape-table',
+    reach: async (page) => {
+      await page.getByText('For whom, and after which question').click();
+      await button(page, /^Picture/u).click();
+      await page.getByRole('menuitem', { name: 'Show a table of the same' }).click();
+      await page.getByRole('columnheader', { name: 'Strongest in' }).waitFor();
+    },
+  },
+  {
+    name: 'shape-split',
+    reach: async (page) => {
+      await button(page, /^Table/u).click();
+      await page.getByRole('menuitem', { name: 'Show the picture' }).click();
+      await fromMore(page, 'Split in two …');
+      await page.getByRole('heading', { name: 'A new candidate' }).waitFor({ timeout: 60_000 });
+    },
+  },
+  {
+    name: 'shape-steady',
+    reach: async (page) => {
+      await closeDialog(page);
+      await button(page, 'Measure it').click();
+      await page.getByRole('dialog').waitFor();
+    },
+  },
+  {
+    name: 'shape-how-many',
+    reach: async (page) => {
+      await closeDialog(page);
+      await button(page, 'How many themes?').click();
+      await page.getByRole('dialog').waitFor();
+    },
+  },
+  {
     name: 'shape-memo',
     reach: async (page) => {
       await closeDialog(page);
@@ -237,9 +302,17 @@ export const scenes: readonly Scene[] = [
     },
   },
   {
-    name: 'shape-scratch',
+    name: 'shape-fits',
     reach: async (page) => {
       await button(page, 'Keep this fit').click();
+      await page.getByRole('button', { name: 'Fits', exact: true }).click();
+      await page.getByText(/^Leading themes agree/u).waitFor();
+    },
+  },
+  {
+    name: 'shape-scratch',
+    reach: async (page) => {
+      await closeDialog(page);
       await button(page, /From scratch/u).click();
       await page.getByRole('dialog').waitFor();
     },

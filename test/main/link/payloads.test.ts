@@ -48,6 +48,7 @@ const samples: { readonly [Name in Method]: Api[Name]['takes'] } = {
   changeSettings: { settings: { themes: 12, stemming: true, language: 'eng', extra: ['uh'] } },
   fit: { kind: 'from scratch', themes: 12 },
   moved: null,
+  movedFloor: null,
   chooseFit: { fit: 'f1' },
   nameFit: { fit: 'f1', name: 'First look' },
   compareFits: { first: 'f1', second: 'f2' },

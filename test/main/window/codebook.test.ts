@@ -269,6 +269,19 @@ describe('fits that are kept', () => {
   });
 });
 
+describe('the floor of what moved', () => {
+  test('is what a re-fit moves without any new decision, and none for a fit from scratch', async () => {
+    const table = await newStudy(3, { fitted: true });
+    expect(await table.ask('movedFloor', null)).toBeNull();
+    const { place, view } = await passageOf(table);
+    const { theme } = view.suggestions[0];
+    await table.ask('reject', { place, theme, memo: '', ...seen });
+    const { moved } = await table.ask('fit', { kind: 're-fit', themes: null });
+    expect(moved!.passages.length).toBeGreaterThan(0);
+    expect(await table.ask('movedFloor', null)).toEqual({ passages: 0, themes: 0 });
+  });
+});
+
 describe('the strata as a drawing', () => {
   test('have a band a transcript in the order asked for, with the chosen theme inked', async () => {
     const table = await newStudy(3, { fitted: true });
