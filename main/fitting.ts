@@ -45,6 +45,8 @@ export interface FitStudyOptions extends FitOptions {
   readonly answer?: 'quick' | 'full';
   /** Let go of the result of a fit that was stopped, so that the study stays as it was. */
   readonly discardStopped?: boolean;
+  /** What carries out the job; workers unless told. */
+  readonly run?: typeof runFit;
 }
 
 /**
@@ -96,7 +98,7 @@ export async function fit(
         : rememberedThemes(before, kept, previous.fit, (id) => desk.fitted(id)),
   };
   const basis = basisOf(before, kind);
-  const done = await runFit(job, options);
+  const done = await (options.run ?? runFit)(job, options);
   if (options.discardStopped === true && options.signal?.aborted === true) {
     return { ok: false, code: 'stopped' };
   }
@@ -150,7 +152,10 @@ export function recordFit(
     stopReason: done.stopReason,
     bound: done.bound,
     boundTerms: { ...done.boundTerms },
-    trace: done.trace,
+    trace: done.trace.map((point) => ({
+      ...point,
+      terms: point.terms === null ? null : { ...point.terms },
+    })),
     hashes: { ...done.hashes, previousResult: previous?.fit.hashes.result ?? null },
     words,
     result,

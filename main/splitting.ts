@@ -60,7 +60,7 @@ export async function trySplit(
   desk: Desk,
   theme: string,
   lists: WordLists,
-  options: FitOptions = {},
+  { run = runFit, ...options }: FitOptions & { readonly run?: typeof runFit } = {},
 ): Promise<{ readonly ok: true; readonly value: SplitTried } | NotSplit> {
   const { study } = desk;
   const before = desk.fitted(study.fit);
@@ -81,7 +81,7 @@ export async function trySplit(
     { words, hash: fit.hashes.words },
     (id) => desk.fitted(id),
   );
-  const done = await runFit(job, { ...options, workers: 1 });
+  const done = await run(job, { ...options, workers: 1 });
   if (options.signal?.aborted === true) return { ok: false, code: 'stopped' };
   if (!done.ok) return done;
   if (desk.study.fit !== fit.id || splitFault(desk, before, theme, lists) !== null) {

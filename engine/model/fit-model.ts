@@ -87,6 +87,7 @@ function finishFit(
   const answer: TracePoint = {
     sweep: trace.length + 1,
     bound: boundOf(terms),
+    terms,
     // The words of a fold have been seen by it: no prediction.
     likelihood: null,
     change: 0,

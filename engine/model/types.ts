@@ -76,6 +76,8 @@ export interface TracePoint {
   readonly sweep: number;
   /** Evidence lower bound in nats, evaluated at this sweep; null where it was not evaluated. */
   readonly bound: number | null;
+  /** The terms that the bound adds up; null where it was not evaluated. */
+  readonly terms: BoundTerms | null;
   /**
    * Predictive log likelihood a counted word, in nats, each occurrence given all the others; null
    * where it was not evaluated.

@@ -264,6 +264,8 @@ export interface Fit {
   readonly trace: readonly {
     readonly sweep: number;
     readonly bound: number | null;
+    /** Absent in older fits. */
+    readonly terms?: Readonly<Record<string, number>> | null;
     readonly likelihood: number | null;
     readonly change: number;
   }[];

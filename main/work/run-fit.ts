@@ -1,7 +1,8 @@
 import { availableParallelism } from 'node:os';
 import { Worker } from 'node:worker_threads';
 import type { Run, TracePoint } from '../../engine/model/index.ts';
-import type { FitDone, FitJob, FitRefused } from '../../engine/themes/index.ts';
+import type { Prepared } from '../../engine/text/index.ts';
+import type { FitDone, FitJob, FitRefused, PreviousFit } from '../../engine/themes/index.ts';
 import { workerPath } from './find-worker.ts';
 import type { RunProgress, SharedPool } from './pool.ts';
 
@@ -56,7 +57,12 @@ export function runFit(
   return new Promise((resolve, reject) => {
     const stop = new SharedArrayBuffer(4);
     const helpers = (workers ?? Math.min(availableParallelism(), mostWorkers)) - 1;
-    const workerData: FitWorkerData = { job, stop, helpers, always: workers !== undefined };
+    const workerData: FitWorkerData = {
+      job: light(job),
+      stop,
+      helpers,
+      always: workers !== undefined,
+    };
     const ask = (): void => {
       Atomics.store(new Int32Array(stop), 0, 1);
     };
@@ -122,4 +128,32 @@ export function runFit(
       );
     };
   });
+}
+
+/**
+ * A job without what no fit asks of words that are counted already: where they stand in the text, and
+ * how they are written. What travels to a worker is copied whole.
+ */
+function light(job: FitJob): FitJob {
+  const known = new Map<Prepared, Prepared>();
+  const without = (words: Prepared): Prepared => {
+    const slim = known.get(words) ?? {
+      ...words,
+      passages: words.passages.map((passage) => ({ ...passage, segments: [] })),
+      occurrences: { offsets: new Int32Array(), words: new Int32Array() },
+      surfaces: [],
+    };
+    known.set(words, slim);
+    return slim;
+  };
+  const before = (fit: PreviousFit | null): PreviousFit | null =>
+    fit === null ? null : { ...fit, words: without(fit.words) };
+  const { counted, previous, pinnedFrom, rowsFrom = null } = job;
+  return {
+    ...job,
+    ...(counted === undefined ? {} : { counted: { ...counted, words: without(counted.words) } }),
+    previous: before(previous),
+    pinnedFrom: before(pinnedFrom),
+    rowsFrom: before(rowsFrom),
+  };
 }

@@ -265,7 +265,7 @@ const results = corpora.map(([corpus, themes]) => {
 
 const all = quick ? 200_000 : 1_000_000;
 const figures = (quick ? [12] : [12, 20, 40]).map((themes) => large(all, themes));
-say(`\nA generated study of ${all} spoken words, seconds; whole fits with their words counted anew`);
+say(`\nA generated study of ${all} spoken words, seconds; fits with their words counted, re-fits with them stored`);
 say(
   table(
     [
@@ -279,6 +279,7 @@ say(
       'fold, model',
       'how many, one',
       'peak MB',
+      'processor: quick, full, re-fit',
     ],
     figures.map((row) => [
       String(row.themes),
@@ -291,6 +292,9 @@ say(
       row.foldModel.toFixed(2),
       figure(row.howMany, 1),
       row.peakMegabytes.toFixed(0),
+      Object.values(row.processor)
+        .map((value) => value.toFixed(1))
+        .join(', '),
     ]),
   ),
 );

@@ -97,10 +97,13 @@ function sweepOnce(
   const { kernel, state } = prepared;
   const changed = kernel.sweep(state, exponent);
   if (sweep % settings.recountEvery === 0) kernel.recount(state);
+  const evaluated = boundEvery > 0 && sweep % boundEvery === 0;
+  const terms = evaluated ? collapsedBound(prepared) : null;
   const judged = exponent === 1 && sweep % settings.judgeEvery === 0;
   return {
     sweep,
-    bound: boundEvery > 0 && sweep % boundEvery === 0 ? boundOf(collapsedBound(prepared)) : null,
+    bound: terms === null ? null : boundOf(terms),
+    terms,
     likelihood: judged ? predictiveLikelihood(prepared) : null,
     change: prepared.countedWords > 0 ? changed / prepared.countedWords : 0,
   };

@@ -107,7 +107,11 @@ export function golden(): Golden {
 
 function hashedFit(fit: ModelFit): string {
   const { boundTerms: terms, trace, sweeps, stopReason } = fit;
-  const history = new TextEncoder().encode(JSON.stringify({ terms, trace, sweeps, stopReason }));
+  // The terms of each point add up to its bound, which is hashed.
+  const points = trace.map(({ terms: _terms, ...point }) => point);
+  const history = new TextEncoder().encode(
+    JSON.stringify({ terms, trace: points, sweeps, stopReason }),
+  );
   return hashed(fit.theta, fit.phi, fit.themeWords, fit.unexplained, history);
 }
 
