@@ -3,19 +3,19 @@ import * as fs from 'node:fs';
 import { tmpdir } from 'node:os';
 import * as path from 'node:path';
 import { fileURLToPath } from 'node:url';
-import { build } from 'vite';
 
-/** Builds children/study-child.ts into a folder of its own; the built file. */
-export async function buildChild(): Promise<{
+/** Builds a program of children/ into a folder of its own; the built file. */
+export async function buildChild(name = 'study-child'): Promise<{
   readonly script: string;
   readonly remove: () => void;
 }> {
   const folder = fs.mkdtempSync(path.join(tmpdir(), 'understory-child-'));
+  const { build } = await import('vite');
   await build({
     configFile: false,
     logLevel: 'silent',
     build: {
-      ssr: fileURLToPath(new URL('./children/study-child.ts', import.meta.url)),
+      ssr: fileURLToPath(new URL(`./children/${name}.ts`, import.meta.url)),
       outDir: folder,
       emptyOutDir: false,
       target: 'node20',
