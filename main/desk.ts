@@ -19,6 +19,7 @@ import { unpackFitted, unpackWords, type Fitted } from '../engine/themes/index.t
 import { hashOf, type MintId } from './ids.ts';
 import type { StudyFileFailure } from './project/index.ts';
 import type { Store } from './store.ts';
+import { upcast } from './upcast.ts';
 
 /** One decision to be made: the edit, told where its blobs will stand. */
 export interface Draft {
@@ -66,7 +67,9 @@ export class Desk {
   /** Folds a stored trail into the study; throws where an entry of it cannot be applied. */
   load(edits: Iterable<{ readonly sequence: number; readonly json: unknown }>): void {
     for (const { sequence, json } of edits) {
-      const entry = { ...(json as Omit<Entry, 'sequence'>), sequence };
+      const brought = upcast(json);
+      if (!brought.ok) throw new Error(`Desk.load: entry ${sequence}: ${brought.code}`);
+      const entry: Entry = { ...brought.entry, sequence };
       const next = apply(this.#study, entry);
       if (!next.ok) {
         throw new Error(`Desk.load: entry ${sequence} (${entry.edit.kind}): ${next.code}`);

@@ -15,6 +15,7 @@ import {
   type StudyFileFailure,
 } from '../project/index.ts';
 import { sentenceFor } from '../sentences/sentences.ts';
+import { upcast } from '../upcast.ts';
 import { give, isRefused, refuse } from './answers.ts';
 import { buildDemo, demoName } from './demo.ts';
 import { safeFileName } from './file-names.ts';
@@ -178,7 +179,8 @@ function load({ desk, file }: OpenStudy): Refused | null {
   try {
     const known = new Set<string>(editKinds);
     for (const { json } of file.edits()) {
-      const kind = (json as { readonly edit?: { readonly kind?: unknown } }).edit?.kind;
+      const brought = upcast(json);
+      const kind = brought.ok ? (brought.entry.edit as { kind?: string } | undefined)?.kind : null;
       if (typeof kind !== 'string' || !known.has(kind)) return refuse('newer decisions', name);
     }
     desk.load(file.edits());
