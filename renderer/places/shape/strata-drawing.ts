@@ -58,6 +58,9 @@ export class StrataPicture {
   readonly #places = new Map<number, BandPlace>();
   readonly #columns = new Map<number, Columns>();
   readonly #ticks = new Map<number, Map<number, number[]>>();
+  /** Bands as they were drawn last, for one inked theme. */
+  readonly #images = new Map<number, ImageData>();
+  #imagesFor = '';
 
   constructor(strata: Strata, layout: StrataLayout, order: readonly number[]) {
     this.strata = strata;
@@ -95,64 +98,87 @@ export class StrataPicture {
   }
 
   /**
-   * Draws the lines in sight: all themes as quiet layers that add to one, the chosen one inked and
-   * lowest, so that its height is its strength; gaps where an interviewer speaks; ticks under
-   * decided passages. The context's origin is the top of the stretch in sight.
+   * Draws lines in sight, from one on, until the time is up (at least one): all themes as quiet layers
+   * that add to one, the chosen one inked and lowest, so that its height is its strength; gaps where
+   * an interviewer speaks; ticks under decided passages. Gives the line to go on with. The context's
+   * origin is the top of the stretch in sight.
    */
   draw(
     context: CanvasRenderingContext2D,
     { top, bottom }: { readonly top: number; readonly bottom: number },
     chosen: number,
     colours: StrataColours,
-  ): void {
+    { from: start, until }: { readonly from: number; readonly until: number },
+  ): number {
     const { strata, layout } = this;
-    const themes = strata.themes.map((_, index) => index).filter((index) => index !== chosen);
-    const layers = chosen >= 0 ? [chosen, ...themes] : themes;
     const { first, last } = this.linesIn(top, bottom);
-    for (let line = first; line < last; line++) {
+    let line = Math.max(first, start);
+    do {
       const band = this.order[line];
+      if (line >= last || band === undefined) return last;
       const { from, passages } = strata.bands[band];
-      if (passages === 0) continue;
-      const y = line * layout.pitch + 1 - top;
-      this.#drawLayers(context, band, y, layers, chosen, colours);
-      const { edges } = this.#placeOf(band);
-      context.fillStyle = colours.ground;
-      for (let i = 1; i < passages; i++) {
-        if (strata.gaps[from + i] === 1 && edges[i + 1] - edges[i] > 6) {
-          context.fillRect(Math.round(edges[i]) - 1, y, 1.5, layout.bandHeight);
+      if (passages > 0) {
+        const y = line * layout.pitch + 1 - top;
+        this.#drawLayers(context, band, y, chosen, colours);
+        const { edges } = this.#placeOf(band);
+        context.fillStyle = colours.ground;
+        for (let i = 1; i < passages; i++) {
+          if (strata.gaps[from + i] === 1 && edges[i + 1] - edges[i] > 6) {
+            context.fillRect(Math.round(edges[i]) - 1, y, 1.5, layout.bandHeight);
+          }
+        }
+        context.fillStyle = colours.tick;
+        for (const passage of chosen < 0 ? [] : (this.#ticks.get(band)?.get(chosen) ?? [])) {
+          const i = passage - from;
+          const x = Math.round((edges[i] + edges[i + 1]) / 2);
+          context.fillRect(x - 2, y + layout.bandHeight + 1, 4, 2.5);
         }
       }
-      context.fillStyle = colours.tick;
-      for (const passage of this.#ticks.get(band)?.get(chosen) ?? []) {
-        const i = passage - from;
-        const x = Math.round((edges[i] + edges[i + 1]) / 2);
-        if (chosen >= 0) context.fillRect(x - 2, y + layout.bandHeight + 1, 4, 2.5);
-      }
-    }
+      line++;
+    } while (performance.now() < until);
+    return line;
   }
 
   #drawLayers(
     context: CanvasRenderingContext2D,
     band: number,
     y: number,
-    layers: readonly number[],
     chosen: number,
     colours: StrataColours,
   ): void {
-    const { bandHeight, labelWidth } = this.layout;
+    const ratio = context.getTransform().a;
+    const key = `${chosen} ${ratio} ${colours.ink}`;
+    if (key !== this.#imagesFor) {
+      this.#images.clear();
+      this.#imagesFor = key;
+    }
+    let image = this.#images.get(band);
+    if (image === undefined) {
+      image = this.#imageOf(context, band, chosen, colours, ratio);
+      this.#images.set(band, image);
+    }
+    const { labelWidth } = this.layout;
+    context.putImageData(image, Math.round(labelWidth * ratio), Math.round(y * ratio));
+  }
+
+  /**
+   * The layers of a band, pixel by pixel: with many themes and no help from a graphics card, outlines
+   * to fill take ten times as long.
+   */
+  #imageOf(
+    context: CanvasRenderingContext2D,
+    band: number,
+    chosen: number,
+    colours: StrataColours,
+    ratio: number,
+  ): ImageData {
     const { count, spacing, values } = this.#columnsOf(band);
     const themes = this.strata.themes.length;
-    const ratio = context.getTransform().a;
-    const high = Math.round(bandHeight * ratio);
+    const high = Math.max(1, Math.round(this.layout.bandHeight * ratio));
     const wide = Math.max(1, Math.round(count * spacing * ratio));
-    // Pixel by pixel: with many themes and no help from a graphics card, outlines to fill take
-    // ten times as long.
     const image = context.createImageData(wide, high);
-    const colourOf = layers.map((theme, rank) => {
-      const grey = chosen >= 0 ? rank - 1 : rank;
-      return theme === chosen ? colours.ink : colours.layers[grey % colours.layers.length];
-    });
-    const rgb = colourOf.map(channels);
+    const { data } = image;
+    const { layers, rgb } = paints(themes, chosen, colours);
     const column = new Float32Array(4 * high);
     for (let x = 0; x < wide; x++) {
       column.fill(0);
@@ -161,31 +187,32 @@ export class StrataPicture {
       const two = Math.min(count - 1, one + 1);
       const t = at - one;
       let base = 0;
-      layers.forEach((theme, rank) => {
+      for (let rank = 0; rank < themes; rank++) {
+        const theme = layers[rank];
         const share = values[one * themes + theme] * (1 - t) + values[two * themes + theme] * t;
+        if (share <= 0) continue;
         const top = Math.min(high, base + share * high);
-        const [red, green, blue] = rgb[rank];
         for (let row = Math.floor(base); row < top; row++) {
           const part = Math.min(row + 1, top) - Math.max(row, base);
           const cell = 4 * (high - 1 - row);
-          column[cell] += red * part;
-          column[cell + 1] += green * part;
-          column[cell + 2] += blue * part;
+          column[cell] += rgb[3 * rank] * part;
+          column[cell + 1] += rgb[3 * rank + 1] * part;
+          column[cell + 2] += rgb[3 * rank + 2] * part;
           column[cell + 3] += part;
         }
         base = top;
-      });
+      }
       for (let row = 0; row < high; row++) {
         const part = column[4 * row + 3];
         if (part <= 0) continue;
         const pixel = 4 * (row * wide + x);
-        for (let channel = 0; channel < 3; channel++) {
-          image.data[pixel + channel] = column[4 * row + channel] / part;
-        }
-        image.data[pixel + 3] = 255 * part;
+        data[pixel] = column[4 * row] / part;
+        data[pixel + 1] = column[4 * row + 1] / part;
+        data[pixel + 2] = column[4 * row + 2] / part;
+        data[pixel + 3] = 255 * part;
       }
     }
-    context.putImageData(image, Math.round(labelWidth * ratio), Math.round(y * ratio));
+    return image;
   }
 
   /** Frames one passage's place, where the cursor is. */
@@ -326,6 +353,20 @@ export function bandOf({ bands }: Strata, passage: number): number {
   return band !== undefined && passage >= band.from && passage < band.from + band.passages
     ? low
     : -1;
+}
+
+/** The layers from the lowest up, and red, green and blue of each. */
+function paints(themes: number, chosen: number, colours: StrataColours) {
+  const layers = Int32Array.from({ length: themes }, (_, rank) =>
+    chosen < 0 ? rank : rank === 0 ? chosen : rank <= chosen ? rank - 1 : rank,
+  );
+  const rgb = new Float32Array(3 * themes);
+  layers.forEach((theme, rank) => {
+    const grey = chosen >= 0 ? rank - 1 : rank;
+    const colour = theme === chosen ? colours.ink : colours.layers[grey % colours.layers.length];
+    rgb.set(channels(colour), 3 * rank);
+  });
+  return { layers, rgb };
 }
 
 /** Red, green and blue of a colour written as #rrggbb. */
