@@ -207,7 +207,7 @@ export const scenes: readonly Scene[] = [
     name: 'shape-heading',
     reach: async (page) => {
       await closeDialog(page);
-      await fromMore(page, 'Put under a heading …');
+      await fromMore(page, 'Put under a new heading …');
       await page.getByLabel('Name', { exact: true }).fill('Getting about');
     },
   },
