@@ -139,7 +139,7 @@ export const scenes: readonly Scene[] = [
       await fromStudy(page, 'Close the study');
       await button(page, 'Open the demo study').click();
       await page.getByRole('heading', { name: 'Strata' }).waitFor({ timeout: 120_000 });
-      await page.getByText('Strongest passages').waitFor();
+      await page.getByLabel('Which passages').waitFor();
     },
   },
   {
