@@ -120,6 +120,12 @@ export interface Overview {
   readonly undo: string | null;
   readonly redo: string | null;
   readonly reader: { readonly id: string; readonly name: string };
+  /** The cold sample, and how far it was read; null where none was drawn. */
+  readonly coldSample: {
+    readonly places: number;
+    readonly read: number;
+    readonly scored: boolean;
+  } | null;
 }
 
 export interface Refining {
@@ -217,6 +223,10 @@ export interface CodingView {
   readonly reader: string;
   readonly at: string;
   readonly strengthAtDecision: number | null;
+  /** What the fit on screen would give without the decisions on this passage; null for no theme there. */
+  readonly strengthWithout: number | null;
+  /** How many were coded in one gesture; null for one by one. */
+  readonly together: number | null;
 }
 
 export interface SuggestionView {
@@ -225,6 +235,11 @@ export interface SuggestionView {
   readonly strength: number;
   /** Where the words stand that carry the theme here, strongest first. */
   readonly carriedBy: readonly Span[];
+  /**
+   * Of suggestions about as strong in random draws, how many a person judged and how many of them
+   * were confirmed; null below ten.
+   */
+  readonly alike: { readonly judged: number; readonly confirmed: number } | null;
 }
 
 export interface PassageView extends Span {
@@ -242,6 +257,8 @@ export interface PassageView extends Span {
   /** The strongest themes whatever their strength, for "another theme"; at most five. */
   readonly strongest: readonly SuggestionView[];
   readonly codings: readonly CodingView[];
+  /** In a cold sample that was not scored yet: nothing is suggested here. */
+  readonly heldBack: boolean;
   /** Set where it was read and no theme applies. */
   readonly none: { readonly id: string; readonly reader: string; readonly at: string } | null;
   readonly memos: readonly MemoView[];
@@ -271,8 +288,43 @@ export type ReadingListKind =
   | 'nearest the edge'
   | 'unexplained'
   | 'random draw'
+  | 'cold sample'
   | 'one theme'
-  | 'earlier wording';
+  | 'earlier wording'
+  | 'keyword in context';
+
+/** What is looked for in everything that participants say. */
+export interface SearchRequest {
+  readonly text: string;
+  /**
+   * 'words': each word as typed; 'stems': in all its forms; 'phrase': the words one after the other
+   * as typed; 'near': in all their forms, each within some words of the first. A word that ends in *
+   * stands for every word that begins so.
+   */
+  readonly mode: 'words' | 'stems' | 'phrase' | 'near';
+  /** For 'near': how many words away at most, from 1 to 100. */
+  readonly within: number;
+  /** Lines in the order of the text, or by the words before or after. */
+  readonly order: 'place' | 'left' | 'right';
+}
+
+/** Keyword in context. */
+export interface SearchResult {
+  /** Places found, and the passages and people that they lie in. */
+  readonly lines: number;
+  readonly passages: number;
+  readonly people: number;
+  /** Words of the text that nobody says. */
+  readonly unheard: readonly string[];
+  readonly shown: readonly (PassagePlace & {
+    readonly transcriptName: string;
+    readonly participant: string;
+    readonly before: string;
+    readonly match: string;
+    readonly after: string;
+    readonly read: boolean;
+  })[];
+}
 
 export interface ReadingListRequest {
   readonly kind: ReadingListKind;
@@ -285,6 +337,113 @@ export interface ReadingListRequest {
   readonly count: number;
   /** For a random draw: its seed, recorded with each decision. */
   readonly seed: number;
+  /** For 'keyword in context'. */
+  readonly search?: SearchRequest;
+}
+
+export interface DrawRequest {
+  readonly kind: 'random draw' | 'cold sample';
+  readonly count: number;
+  readonly seed: number;
+  readonly unreadOnly: boolean;
+}
+
+/** x of n with the interval that belongs to it; shares from 0 to 1. */
+export interface Rate {
+  readonly count: number;
+  readonly of: number;
+  readonly low: number;
+  readonly high: number;
+}
+
+/** What random draws say about the suggestions and about what is left to read. */
+export interface ReadingEvidence {
+  /** In the order in which they were drawn. */
+  readonly draws: readonly {
+    readonly name: string;
+    readonly kind: 'random draw' | 'cold sample';
+    readonly at: string;
+    readonly reader: string;
+    readonly places: number;
+    readonly read: number;
+  }[];
+  /** Passages of the study that nobody has read. */
+  readonly unread: number;
+  /**
+   * Of unread passages drawn at random and read since: how many hold something that was coded, and how
+   * many something that was not suggested. `atMost`: the share in what is left (95 %, one-sided; exact
+   * binomial: Clopper & Pearson 1934; for 0 Hanley & Lippman-Hand 1983).
+   */
+  readonly stopping: {
+    readonly read: number;
+    readonly coded: number;
+    readonly codedAtMost: number;
+    readonly missed: number;
+    readonly missedAtMost: number;
+  } | null;
+  /** Suggestions in random draws that a person judged, by their strength then. */
+  readonly calibration: {
+    readonly judged: number;
+    readonly confirmed: number;
+    /** With Wilson's interval (1927); empty below ten judged. */
+    readonly bins: readonly (Rate & { readonly from: number; readonly to: number })[];
+  };
+  readonly coldSample: ColdSampleView | null;
+}
+
+export interface ColdSampleView {
+  readonly name: string;
+  readonly at: string;
+  readonly reader: string;
+  readonly places: number;
+  readonly read: number;
+  /** When it was scored; null before. */
+  readonly scoredAt: string | null;
+  /** How the suggestions of the fit it was scored against stand to what was coded; null before. */
+  readonly score: {
+    readonly fit: string;
+    /** Passages with a coding: those for which something is suggested. */
+    readonly coded: Rate;
+    /** Passages to which no theme applies: those for which something is suggested all the same. */
+    readonly none: Rate;
+    /** Codings with themes of the fit: those that are suggested too. */
+    readonly found: Rate;
+    /** Suggestions: those that were coded too. */
+    readonly right: Rate;
+    /** Codings with themes that the fit has no words for, which it cannot suggest. */
+    readonly beyond: number;
+    readonly themes: readonly {
+      readonly id: string;
+      readonly label: string;
+      readonly coded: number;
+      readonly suggested: number;
+      readonly both: number;
+      readonly modelled: boolean;
+    }[];
+  } | null;
+}
+
+/** How a person likes to read: kept on this machine, in no study. */
+export interface ReadingPreferences {
+  readonly suggestions: boolean;
+  readonly goOn: boolean;
+  /** Whether a letter or digit alone does something (WCAG 2.1.4). */
+  readonly singleKeys: boolean;
+  /** Other keys than the usual ones: what they do, and the key. */
+  readonly keys: Readonly<Record<string, string>>;
+}
+
+/** Where a reader stopped: numbers only, so that nothing of a study lies outside its file. */
+export interface StoppedAt {
+  readonly kind: ReadingListKind;
+  readonly unreadOnly: boolean;
+  readonly count: number;
+  readonly seed: number;
+  /** Places in the codebook and in the order of gathering; -1 for none. */
+  readonly theme: number;
+  readonly only: number;
+  readonly transcript: number;
+  readonly start: number;
 }
 
 export interface ReadingList {
@@ -1027,6 +1186,31 @@ export interface Api {
   removeCoding: { takes: { transcript: string; coding: string }; gives: Overview };
   markNone: { takes: UnderView & { place: PassagePlace }; gives: Overview };
   clearNone: { takes: { transcript: string; none: string }; gives: Overview };
+  /** Gives a coding another theme: a decision of its own, with what is known now. */
+  moveCoding: {
+    takes: UnderView & { transcript: string; coding: string; theme: string };
+    gives: Overview;
+  };
+  /** Codes several passages in one gesture, each of which was opened before; recorded as such. */
+  codeTogether: {
+    takes: UnderView & { places: readonly PassagePlace[]; theme: string };
+    gives: Overview;
+  };
+  /** Draws passages by chance and records which; a draw that was made already stays as it was. */
+  drawSample: { takes: DrawRequest; gives: Overview };
+  /** Holds the cold sample against the fit on screen; its decisions enter priors from then on. */
+  scoreColdSample: { takes: null; gives: Overview };
+  readingEvidence: { takes: null; gives: ReadingEvidence };
+  search: { takes: SearchRequest & { from: number; count: number }; gives: SearchResult };
+  /** What this machine keeps for whoever reads here; `stopped` in the open study. */
+  readingKept: {
+    takes: null;
+    gives: { preferences: ReadingPreferences | null; stopped: StoppedAt | null };
+  };
+  keepReading: {
+    takes: { preferences: ReadingPreferences | null; stopped: StoppedAt | null };
+    gives: null;
+  };
   writeMemo: {
     takes: {
       on:
@@ -1156,6 +1340,14 @@ export const methods = [
   'removeCoding',
   'markNone',
   'clearNone',
+  'moveCoding',
+  'codeTogether',
+  'drawSample',
+  'scoreColdSample',
+  'readingEvidence',
+  'search',
+  'readingKept',
+  'keepReading',
   'writeMemo',
   'reviseMemo',
   'find',

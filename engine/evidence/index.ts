@@ -1,7 +1,16 @@
 export type { Base } from './base.ts';
+export {
+  alike,
+  calibration,
+  fewestJudged,
+  type Calibration,
+  type CalibrationBin,
+  type Judged,
+} from './calibration.ts';
 export { coherence } from './coherence.ts';
 export { concentration, type Concentration } from './concentration.ts';
 export type { NumberScores } from './how-many.ts';
+export { atMost, wilson, type Interval } from './interval.ts';
 export { dealt, fewestPeople, leftOut, leftOutEach } from './left-out.ts';
 export { materialOf, peopleHeard, type Asked, type Material } from './material.ts';
 export {

@@ -2,6 +2,7 @@ import type { Edit, EditKind, Entry } from './edit.ts';
 import { codingRules } from './edits/codings.ts';
 import { copyRules } from './edits/copies.ts';
 import { fieldNoteRules } from './edits/field-notes.ts';
+import { drawRules } from './edits/draws.ts';
 import { fitRules } from './edits/fits.ts';
 import { forgettingRules } from './edits/forgetting.ts';
 import { headingRules } from './edits/headings.ts';
@@ -30,6 +31,7 @@ const rules: Rules<EditKind> = {
   ...wordRules,
   ...codingRules,
   ...memoRules,
+  ...drawRules,
   ...fitRules,
   ...forgettingRules,
   ...copyRules,

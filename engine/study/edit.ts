@@ -4,6 +4,8 @@ import type {
   Coding,
   CodingId,
   Definition,
+  Draw,
+  DrawId,
   EvidenceKind,
   Exported,
   FieldNote,
@@ -23,6 +25,7 @@ import type {
   PlainValue,
   QuestionId,
   Reader,
+  Scored,
   SettingValue,
   Speaker,
   TakenIn,
@@ -47,9 +50,14 @@ export interface TranscriptDescription {
   /** Null for nothing said. */
   readonly facts: TranscriptFacts | null;
 }
+/** What was known and in sight when a coding got its theme. */
+export type CodingKnown = Pick<Coding, 'under' | 'strength' | 'codebookVersion'>;
 
 /** The part of a coding that can be changed afterwards. */
-export type CodingState = Pick<Coding, 'theme' | 'standing' | 'span' | 'memo'>;
+export type CodingState = Pick<Coding, 'theme' | 'standing' | 'span' | 'memo'> & {
+  /** Needed where the theme changes: another theme is another decision. */
+  readonly known?: CodingKnown;
+};
 
 /**
  * One decision, in the past tense, as plain data. Each carries what it replaces, so that its inverse
@@ -238,6 +246,15 @@ export type Edit =
       readonly memo: MemoId;
       readonly from: string;
       readonly to: string;
+    }
+  | { readonly kind: 'drawMade'; readonly draw: Draw }
+  | { readonly kind: 'drawRemoved'; readonly draw: Draw }
+  | {
+      /** A cold sample is held against a fit; from then on its decisions enter priors. */
+      readonly kind: 'drawScored';
+      readonly draw: DrawId;
+      readonly from: Scored | null;
+      readonly to: Scored | null;
     }
   | {
       readonly kind: 'modelFitted';

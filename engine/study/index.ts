@@ -1,5 +1,6 @@
 export * from './study.ts';
 export type {
+  CodingKnown,
   CodingState,
   Edit,
   EditKind,
@@ -18,6 +19,7 @@ export {
 } from './refusal.ts';
 export { apply, closesTrail, editKinds, fold, inverse } from './apply.ts';
 export { takingBack, type TakingBack } from './undo.ts';
+export { coldSampleOf, isHeldBack } from './draws.ts';
 export { turnsOf } from './edits/forgetting.ts';
 export { descriptionOf, spansLost } from './edits/transcripts.ts';
 export { spanFault } from './edits/codings.ts';

@@ -13,6 +13,7 @@ export type HeadingId = string;
 export type IdentifierId = string;
 export type QuestionId = string;
 export type FieldNoteId = string;
+export type DrawId = string;
 
 /** Bytes kept in the study file, addressed by the sequence number of their record. */
 export interface BlobRef {
@@ -182,6 +183,8 @@ export interface DecidedUnder {
   readonly seenSuggestion: boolean;
   /** The fit on screen, or null before the first. */
   readonly fit: FitId | null;
+  /** How many were decided in one gesture, each looked at before; absent for one by one. */
+  readonly together?: number;
 }
 
 /** One theme on one span of one transcript, decided by a person. */
@@ -205,6 +208,43 @@ export interface None {
   readonly transcript: TranscriptId;
   readonly span: Span;
   readonly under: DecidedUnder;
+}
+
+/** Where a drawn passage stands; it has no other name. */
+export interface DrawnPlace {
+  readonly transcript: TranscriptId;
+  readonly span: Span;
+}
+
+/**
+ * Passages drawn by chance, as they were when they were drawn. A cold sample is drawn before the
+ * first fit and read without suggestions: what is decided in it enters no prior, and nothing is
+ * suggested for it, until it has been scored.
+ */
+export interface Draw {
+  readonly id: DrawId;
+  readonly kind: 'random draw' | 'cold sample';
+  /** As each decision in it records it (`DecidedUnder.drawnBy`); unique. */
+  readonly name: string;
+  readonly seed: number;
+  /** How many were asked for; there may have been fewer. */
+  readonly count: number;
+  /** Whether only passages without a decision could be drawn. */
+  readonly unreadOnly: boolean;
+  /** In the order of the draw. */
+  readonly places: readonly DrawnPlace[];
+  readonly reader: ReaderId;
+  /** ISO 8601 in UTC. */
+  readonly at: string;
+  /** The fit that a cold sample was first held against; null until then and for other draws. */
+  readonly scored: Scored | null;
+}
+
+export interface Scored {
+  readonly fit: FitId;
+  readonly reader: ReaderId;
+  /** ISO 8601 in UTC. */
+  readonly at: string;
 }
 
 export type MemoSubject =
@@ -357,6 +397,7 @@ export interface Study {
   /** The interview guide, in its order. */
   readonly guide: readonly GuideQuestion[];
   readonly fits: ReadonlyMap<FitId, Fit>;
+  readonly draws: ReadonlyMap<DrawId, Draw>;
   /** The fit on screen. */
   readonly fit: FitId | null;
   /** Fits that codings may refer to and that are not here: erased, or another copy's. */
@@ -389,6 +430,7 @@ export const emptyStudy: Study = {
   identifiers: new Map(),
   guide: [],
   fits: new Map(),
+  draws: new Map(),
   fit: null,
   absentFits: new Set(),
   withdrawn: new Map(),

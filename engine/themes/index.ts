@@ -43,3 +43,4 @@ export {
 export { passagesLed, suggestions, type Suggestion, type SuggestionLimits } from './suggestions.ts';
 export { termScores } from './term-scores.ts';
 export { candidateWords, topWords, type ThemeWord } from './top-words.ts';
+export { proportionsWithoutDecisions, themeAlphaOf } from './without-decisions.ts';

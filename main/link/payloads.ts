@@ -54,6 +54,43 @@ const trailRequest = {
   since: v.nullable(name),
   theme: v.nullable(id),
 };
+const listKind = v.picklist([
+  'in order',
+  'strongest first',
+  'nearest the edge',
+  'unexplained',
+  'random draw',
+  'cold sample',
+  'one theme',
+  'earlier wording',
+  'keyword in context',
+]);
+const searched = {
+  text: name,
+  mode: v.picklist(['words', 'stems', 'phrase', 'near']),
+  within: v.pipe(v.number(), v.safeInteger(), v.minValue(1), v.maxValue(100)),
+  order: v.picklist(['place', 'left', 'right']),
+};
+const drawn = v.pipe(v.number(), v.safeInteger(), v.minValue(0), v.maxValue(1_000_000));
+const seed = v.pipe(v.number(), v.safeInteger());
+const rank = v.pipe(v.number(), v.safeInteger(), v.minValue(-1));
+
+const preferences = v.strictObject({
+  suggestions: v.boolean(),
+  goOn: v.boolean(),
+  singleKeys: v.boolean(),
+  keys: entries(v.pipe(v.string(), v.maxLength(20))),
+});
+const stoppedAt = v.strictObject({
+  kind: listKind,
+  unreadOnly: v.boolean(),
+  count: drawn,
+  seed,
+  theme: rank,
+  only: rank,
+  transcript: rank,
+  start: offset,
+});
 
 /** How the payload of each method is read from an unknown value. */
 export const payloads = {
@@ -167,20 +204,13 @@ export const payloads = {
   shutOutWord: v.strictObject({ theme: id, word: name, shutOut: v.boolean() }),
 
   readingList: v.strictObject({
-    kind: v.picklist([
-      'in order',
-      'strongest first',
-      'nearest the edge',
-      'unexplained',
-      'random draw',
-      'one theme',
-      'earlier wording',
-    ]),
+    kind: listKind,
     theme: v.nullable(id),
     transcript: v.nullable(id),
     unreadOnly: v.boolean(),
-    count: v.pipe(v.number(), v.safeInteger(), v.minValue(0), v.maxValue(1_000_000)),
-    seed: v.pipe(v.number(), v.safeInteger()),
+    count: drawn,
+    seed,
+    search: v.exactOptional(v.strictObject(searched)),
   }),
   passageView: v.strictObject({ place }),
   confirm: code,
@@ -190,6 +220,26 @@ export const payloads = {
   removeCoding: v.strictObject({ transcript: id, coding: id }),
   markNone: v.strictObject({ place, ...underView }),
   clearNone: v.strictObject({ transcript: id, none: id }),
+  moveCoding: v.strictObject({ transcript: id, coding: id, theme: id, ...underView }),
+  codeTogether: v.strictObject({ places: listOf(place), theme: id, ...underView }),
+  drawSample: v.strictObject({
+    kind: v.picklist(['random draw', 'cold sample']),
+    count,
+    seed: v.pipe(seed, v.minValue(0), v.maxValue(4_294_967_295)),
+    unreadOnly: v.boolean(),
+  }),
+  scoreColdSample: nothing,
+  readingEvidence: nothing,
+  search: v.strictObject({
+    ...searched,
+    from: drawn,
+    count: v.pipe(count, v.maxValue(limits.list)),
+  }),
+  readingKept: nothing,
+  keepReading: v.strictObject({
+    preferences: v.nullable(preferences),
+    stopped: v.nullable(stoppedAt),
+  }),
   writeMemo: v.strictObject({
     on: v.variant('kind', [
       v.strictObject({ kind: v.literal('study') }),

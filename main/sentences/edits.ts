@@ -68,9 +68,11 @@ const phrases: Phrases = {
   },
   codingRemoved: ({ coding }, names) => `removal of a coding with ${names.theme(coding.theme)}`,
   codingRevised: ({ from, to }, names) =>
-    from.memo === to.memo
-      ? `change of a coding with ${names.theme(to.theme)}`
-      : `memo on a coding with ${names.theme(to.theme)}`,
+    from.theme !== to.theme
+      ? `move of a coding to ${names.theme(to.theme)}`
+      : from.memo === to.memo
+        ? `change of a coding with ${names.theme(to.theme)}`
+        : `memo on a coding with ${names.theme(to.theme)}`,
   codingLookedAtAgain: ({ to }) => `keeping of a coding under wording ${to}`,
   noneMarked: () => 'mark that no theme applies',
   noneCleared: () => 'clearing of a mark that no theme applies',
@@ -81,6 +83,10 @@ const phrases: Phrases = {
     if (start.split !== undefined) return `split of ${names.theme(start.split.theme)}`;
     return start.kind === 'warm' ? 're-fit' : 'fit from scratch';
   },
+  drawMade: ({ draw }) => draw.name,
+  drawRemoved: ({ draw }) => `removal of the ${draw.name}`,
+  drawScored: ({ to }) =>
+    to === null ? 'taking back of the score of the cold sample' : 'score of the cold sample',
   fitRemoved: () => 'removal of a fit',
   fitChosen: () => 'choice of a fit',
   fitRenamed: () => 'name of a fit',

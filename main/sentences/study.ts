@@ -18,6 +18,8 @@ export const studySentences: Record<RefusalCode, Say> = {
   'fit is in use': () => 'This fit is on screen; choose another one first.',
   'heading in use': (s) =>
     `Themes still stand under ${quoted(s)}; take them out from under it first.`,
+  'fitted already': () =>
+    'The study was fitted before, so nobody could read a cold sample without knowing what was found; use a random draw.',
   'memos remain': (s) => `${quoted(s)} still carries memos; erase them first, or keep it.`,
   'merged theme': (s) =>
     `${quoted(s)} was merged into another theme; change that one, or undo the merge.`,
@@ -51,6 +53,7 @@ export const studySentences: Record<RefusalCode, Say> = {
   'unknown coding': () => 'That coding is not in the study any more; look at the passage again.',
   'unknown field note': (s) =>
     `The field note ${quoted(s)} is not in the study any more; look at the list again.`,
+  'unknown draw': () => 'That draw is not in the study; draw the passages again.',
   'unknown fit': () => 'That fit is not in the study; choose one from the list of fits.',
   'unknown heading': () => 'That heading is not in the study any more; choose another one.',
   'unknown memo': () => 'That memo is not in the study any more; write a new one.',

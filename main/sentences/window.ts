@@ -30,6 +30,18 @@ export const windowSentences = {
   'no fit': () => 'There is no fit yet; fit the study in Shape first.',
   'place changed': () =>
     'The passages were divided in another way in the meantime; open the passage again, then decide.',
+  'cold sample there': (s) => `The ${s} was drawn already; read that one, or undo its draw first.`,
+  'no cold sample': () =>
+    'No cold sample was drawn in this study; choose another list, or use a random draw.',
+  'cold sample unread': () =>
+    'Nothing was decided in the cold sample yet; read some of it first, then score it.',
+  'nothing to draw': () =>
+    'There is no passage to draw from; add transcripts, or draw among passages that were read too.',
+  'nothing to search': () => 'There is nothing to look for; type at least one word.',
+  'moved rejection': () =>
+    'A rejection cannot be moved to another theme; take it back, then code the passage.',
+  'coded already': (s) =>
+    `These words carry ${quoted(s)} already; remove one of the two codings first.`,
   'nothing selected': () => 'No words are selected; select at least one word to code.',
   'several speakers': () =>
     'The selection runs over several speakers; code each one’s words by themselves.',

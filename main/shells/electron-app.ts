@@ -34,6 +34,7 @@ import {
 } from './electron-guards.ts';
 import { menuTemplate } from './menu.ts';
 import { placesOfApp, studiesFolder } from './places.ts';
+import { machineSettings } from './machine-settings.ts';
 import { recentPaths } from './recent-paths.ts';
 import { StaticFiles } from './static-files.ts';
 import { placement, readWindowState, smallest, writeWindowState } from './window-state.ts';
@@ -175,6 +176,7 @@ class ElectronShell {
       dialogs: systemDialogs({ dialog, window: () => this.#window, studiesFolder: folder }),
       recent: recentPaths(this.#settings('recent.json')),
       backups: backupStore(this.#settings('backups.json')),
+      machine: machineSettings(this.#settings('machine.json')),
       demoFolder: this.#places.demo,
       now: () => new Date().toISOString(),
       readerName: accountName(),

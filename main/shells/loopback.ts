@@ -8,6 +8,7 @@ import type { Session, Surroundings } from '../window/session-types.ts';
 import { accountName } from './account-name.ts';
 import { openerFailed } from './browser.ts';
 import { startLoopback, type Loopback } from './loopback-server.ts';
+import { machineSettings } from './machine-settings.ts';
 import { placesOfApp, settingsFolder, studiesFolder } from './places.ts';
 import { recentPaths } from './recent-paths.ts';
 import { StaticFiles } from './static-files.ts';
@@ -112,6 +113,7 @@ function surroundings(demoFolder: string, settings: string, comeForward: () => v
     dialogs: null,
     recent: recentPaths(join(settings, 'recent.json')),
     backups: backupStore(join(settings, 'backups.json')),
+    machine: machineSettings(join(settings, 'machine.json')),
     demoFolder,
     now: () => new Date().toISOString(),
     readerName: accountName(),

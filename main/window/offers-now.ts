@@ -23,7 +23,9 @@ const nobody = { count: 0, people: new Set<string>() } as const;
 /**
  * The same rule as the engine's `suggestions`, for one transcript, so that one decision costs the
  * work of one transcript: from the threshold on, in passages with enough counted words, unless the
- * theme was decided on there or the passage was read and nothing applies.
+ * theme was decided on there, the passage was read and nothing applies, or it is held back. Where
+ * something was rejected, `without` gives the strengths that the words alone would have: what was
+ * taken from one theme is not put forward for the next.
  */
 export function offersIn(
   placed: readonly Placed[],
@@ -31,10 +33,18 @@ export function offersIn(
   themes: ThemesNow,
   themeOf: (id: string) => string | undefined,
   limits: SuggestionLimits,
+  isHeldBack: (passage: Placed) => boolean,
+  without: (row: number) => Float64Array | null,
 ): OffersIn {
   const columns = new Map<number, { count: number; people: Set<string> }>();
   const passages = placed.map((passage, index) => {
-    const offers = offersFor(passage, decided.passages[index], themes, themeOf, limits);
+    if (isHeldBack(passage)) return none;
+    const here = decided.passages[index];
+    const rejects = here.codings.some(({ standing }) => standing === 'rejected');
+    const alone = rejects ? without(passage.row) : null;
+    const offers = offersFor(passage, here, themes, themeOf, limits).filter(
+      ({ column }) => alone === null || alone[column] >= limits.strength,
+    );
     for (const { column } of offers) {
       const known = columns.get(column) ?? { count: 0, people: new Set<string>() };
       columns.set(column, known);

@@ -6,6 +6,7 @@ import type { StudyFile, StudyFileFailure } from '../project/index.ts';
 import { sentenceFor } from '../sentences/sentences.ts';
 import { Kept } from './kept.ts';
 import { knownReader } from './readers.ts';
+import { SearchIndex } from './search-index.ts';
 import { StudyNow } from './study-now.ts';
 
 /** Decisions with which a study begins; nobody wants them taken back. */
@@ -25,6 +26,7 @@ export class OpenStudy {
   readonly file: StudyFile;
   readonly desk: Desk;
   readonly now: StudyNow;
+  readonly search: SearchIndex;
   readonly accountName: string;
   /** Aborted when the study is closed, so that a fit of it ends. */
   readonly closing = new AbortController();
@@ -53,6 +55,7 @@ export class OpenStudy {
       mintId: randomIds,
     });
     this.now = new StudyNow(this.desk);
+    this.search = new SearchIndex(this.now);
   }
 
   get study() {

@@ -1,9 +1,10 @@
-import { visibleThemes, type Entry, type Theme } from '../../engine/study/index.ts';
+import { coldSampleOf, visibleThemes, type Entry, type Theme } from '../../engine/study/index.ts';
 import type { Overview } from '../api.ts';
 import { isDecided } from './decided-now.ts';
 import { redoInWords, undoInWords } from './history.ts';
 import type { OpenStudy } from './open-study.ts';
 import type { Placed } from './passages-now.ts';
+import { progress } from './reading-evidence.ts';
 import { waitingInWords } from './waiting.ts';
 
 /** What the frame shows on every place. The study must be settled. */
@@ -20,6 +21,7 @@ export function overview(open: OpenStudy): Overview {
     unread += now.decidedIn(id).unread;
     if (wasReadBeforeFit(open, id)) transcriptsRead++;
   }
+  const cold = coldSampleOf(study);
   return {
     study: { id: study.id, name: study.name, path: file.path },
     readOnly: file.readOnly,
@@ -39,6 +41,7 @@ export function overview(open: OpenStudy): Overview {
     undo: file.readOnly ? null : undoInWords(open),
     redo: file.readOnly ? null : redoInWords(open),
     reader: { id: open.reader.id, name: open.reader.name },
+    coldSample: cold === null ? null : { ...progress(open, cold), scored: cold.scored !== null },
   };
 }
 

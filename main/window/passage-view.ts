@@ -1,12 +1,14 @@
-import type { Coding } from '../../engine/study/index.ts';
+import { isHeldBack, type Coding } from '../../engine/study/index.ts';
 import type { CodingView, PassagePlace, PassageView, Refused, SuggestionView } from '../api.ts';
 import { refuse } from './answers.ts';
 import { carriedBy } from './carried-by.ts';
+import { alikeNow } from './judged.ts';
 import { memosOnPassage } from './memos.ts';
 import type { Offer } from './offers-now.ts';
 import type { OpenStudy } from './open-study.ts';
 import type { Placed } from './passages-now.ts';
 import { strengthOf, strengthsOf } from './themes-now.ts';
+import { strengthsWithout } from './without-decisions.ts';
 
 // "Another theme" offers what the model sees a trace of; the rest is found by name.
 const mostOffered = 5;
@@ -28,6 +30,7 @@ export function passageView(open: OpenStudy, transcript: string, index: number):
   const passage = now.passagesIn(transcript)[index];
   const { codings, nones } = now.decidedIn(transcript).passages[index];
   const [none] = nones;
+  const without = codings.length === 0 ? null : strengthsWithout(now, passage.row);
   return {
     start: passage.start,
     end: passage.end,
@@ -43,7 +46,8 @@ export function passageView(open: OpenStudy, transcript: string, index: number):
       .offersIn(transcript)
       .passages[index].map((offer) => suggestionView(open, passage, offer)),
     strongest: strongestIn(open, passage).map((offer) => suggestionView(open, passage, offer)),
-    codings: codings.map((coding) => codingView(open, coding)),
+    codings: codings.map((coding) => codingView(open, coding, without)),
+    heldBack: isHeldBack(study, transcript, passage),
     none:
       none === undefined
         ? null
@@ -57,8 +61,9 @@ export function passageView(open: OpenStudy, transcript: string, index: number):
 }
 
 /** The themes that the model sees in a passage, whatever was decided on them; strongest first. */
-export function strongestIn({ now }: OpenStudy, passage: Placed): Offer[] {
+export function strongestIn({ study, now }: OpenStudy, passage: Placed): Offer[] {
   const { themes } = now;
+  if (isHeldBack(study, passage.transcript, passage)) return [];
   const strengths = strengthsOf(themes, passage.row);
   if (strengths === null) return [];
   return [...strengths]
@@ -68,10 +73,22 @@ export function strongestIn({ now }: OpenStudy, passage: Placed): Offer[] {
     .slice(0, mostOffered);
 }
 
-/** A theme's strength in a passage; null where the fit has none for it. */
-export function strengthIn({ now }: OpenStudy, passage: Placed, theme: string): number | null {
+/**
+ * A theme's strength in a passage as decisions record it: what its words alone would have, where
+ * something was decided there before. Null where the fit has none for it, or where it is held back.
+ */
+export function strengthIn(
+  { study, now }: OpenStudy,
+  passage: Placed,
+  theme: string,
+  decidedBefore: boolean,
+): number | null {
+  if (isHeldBack(study, passage.transcript, passage)) return null;
   const column = now.themes.columnOf.get(now.themeOf(theme) ?? '');
-  const strength = column === undefined ? null : strengthOf(now.themes, passage.row, column);
+  if (column === undefined) return null;
+  const strength = decidedBefore
+    ? (strengthsWithout(now, passage.row)?.[column] ?? null)
+    : strengthOf(now.themes, passage.row, column);
   // Sums of f32 may stand a hair above one.
   return strength === null ? null : Math.min(1, strength);
 }
@@ -88,11 +105,17 @@ function suggestionView(
     themeName: now.label(theme),
     strength,
     carriedBy: carriedBy(themes, row, column),
+    alike: alikeNow(now, strength),
   };
 }
 
-function codingView({ study, now }: OpenStudy, coding: Coding): CodingView {
+function codingView(
+  { study, now }: OpenStudy,
+  coding: Coding,
+  without: Float64Array | null,
+): CodingView {
   const theme = now.themeOf(coding.theme) ?? coding.theme;
+  const column = now.themes.columnOf.get(theme);
   return {
     id: coding.id,
     span: coding.span,
@@ -103,5 +126,7 @@ function codingView({ study, now }: OpenStudy, coding: Coding): CodingView {
     reader: study.readers.get(coding.under.reader)?.name ?? '',
     at: coding.under.at,
     strengthAtDecision: coding.strength,
+    strengthWithout: column === undefined ? null : (without?.[column] ?? null),
+    together: coding.under.together ?? null,
   };
 }

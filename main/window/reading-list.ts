@@ -1,4 +1,4 @@
-import { createGenerator } from '../../engine/numbers/index.ts';
+import { coldSampleOf, type Draw } from '../../engine/study/index.ts';
 import type {
   Api,
   PassagePlace,
@@ -9,9 +9,12 @@ import type {
 } from '../api.ts';
 import { give, refuse } from './answers.ts';
 import { isDecided, type DecidedPassage } from './decided-now.ts';
+import { draw } from './draw.ts';
+import { drawName, drawnNow, drawNamed } from './draws.ts';
 import type { OpenStudy } from './open-study.ts';
 import { oneEachFirst } from './one-each-first.ts';
 import type { Placed } from './passages-now.ts';
+import { keywordList } from './search.ts';
 import { strengthsOf } from './themes-now.ts';
 import { earlierCodings } from './wordings.ts';
 
@@ -27,7 +30,7 @@ interface Candidate {
 export function readingList(
   open: OpenStudy,
   request: Api['readingList']['takes'],
-): { readonly value: ReadingList } | Refused {
+): { readonly value: ReadingList } | Refused | Promise<{ readonly value: ReadingList } | Refused> {
   const { study, now } = open;
   const { kind, theme, transcript, unreadOnly } = request;
   if (theme !== null && !study.themes.has(theme)) {
@@ -41,6 +44,10 @@ export function readingList(
   }
   if (needsFit.has(kind) && now.fitted === null) return refuse('no fit');
 
+  if (kind === 'keyword in context') return keywordList(open, request);
+  const drawn = recordedDraw(open, request);
+  if (kind === 'cold sample' && drawn === null) return refuse('no cold sample');
+  if (drawn !== null) return drawnList(open, drawn);
   const name = nameOf(open, request);
   // Every passage of it was read, under the earlier wording.
   const isWanted = (one: Candidate): boolean =>
@@ -50,6 +57,26 @@ export function readingList(
     name,
     places: shown.map(placeOf),
     decided: shown.filter(({ decided }) => isDecided(decided)).length,
+  });
+}
+
+/** The draw that is meant, where it was recorded. */
+function recordedDraw({ study }: OpenStudy, request: ReadingListRequest): Draw | null {
+  const { kind, theme, transcript } = request;
+  if (kind === 'cold sample') return coldSampleOf(study);
+  if (kind !== 'random draw' || theme !== null || transcript !== null) return null;
+  return drawNamed(study, drawName({ ...request, kind })) ?? null;
+}
+
+/** A draw stays as it was made, whatever was read of it since. */
+function drawnList({ now }: OpenStudy, drawn: Draw): { readonly value: ReadingList } {
+  const all = drawnNow(now, drawn);
+  return give({
+    name: drawn.name,
+    places: all.map(({ passage }) => placeOf({ passage })),
+    decided: all.filter(({ transcript, index }) =>
+      isDecided(now.decidedIn(transcript).passages[index]),
+    ).length,
   });
 }
 
@@ -156,6 +183,9 @@ function inOrder(
       );
     case 'random draw':
       return draw(transcripts, count, seed, isWanted);
+    case 'cold sample':
+    case 'keyword in context':
+      throw new Error(`readingList: ${kind} has a list of its own`);
   }
 }
 
@@ -172,37 +202,6 @@ function by<One extends Candidate>(all: readonly One[], key: (one: One) => numbe
     .map(({ one }) => one);
 }
 
-/**
- * A draw without replacement, in parts that follow the transcripts' sizes (largest remainders), in a
- * random order. Each transcript is put into its random order before anything is left out of it, so
- * that a passage keeps its place in the draw while others are decided on.
- */
-function draw(
-  transcripts: readonly Candidate[][],
-  count: number,
-  seed: number,
-  isWanted: (one: Candidate) => boolean,
-): Candidate[] {
-  const chance = Math.abs(Math.trunc(seed));
-  const frames = transcripts.map((all, stream) =>
-    createGenerator(chance, stream + 1)
-      .shuffle([...all])
-      .filter(isWanted),
-  );
-  const total = frames.reduce((sum, frame) => sum + frame.length, 0);
-  const drawn = Math.min(count, total);
-  const exact = frames.map((frame) => (total === 0 ? 0 : (drawn * frame.length) / total));
-  const parts = exact.map(Math.floor);
-  const left = drawn - parts.reduce((sum, part) => sum + part, 0);
-  exact
-    .map((share, index) => ({ index, rest: share - parts[index] }))
-    .sort((a, b) => b.rest - a.rest || a.index - b.index)
-    .slice(0, left)
-    .forEach(({ index }) => parts[index]++);
-  const chosen = frames.flatMap((frame, index) => frame.slice(0, parts[index]));
-  return createGenerator(chance).shuffle(chosen);
-}
-
 /** Of the themes that can be suggested. */
 function largest(strengths: Float64Array, offered: Uint8Array): number {
   return strengths.reduce(
@@ -211,6 +210,8 @@ function largest(strengths: Float64Array, offered: Uint8Array): number {
   );
 }
 
-function placeOf({ passage: { transcript, start, end } }: Candidate): PassagePlace {
+function placeOf({
+  passage: { transcript, start, end },
+}: Pick<Candidate, 'passage'>): PassagePlace {
   return { transcript, start, end };
 }

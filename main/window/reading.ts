@@ -1,5 +1,6 @@
 import { sameSpan } from '../../engine/spans/index.ts';
 import {
+  isHeldBack,
   resolveTheme,
   type Coding,
   type DecidedUnder,
@@ -10,6 +11,7 @@ import {
 import type { Api, CodeRequest, PassageView, Refused, Span, UnderView } from '../api.ts';
 import { give, isRefused, refuse } from './answers.ts';
 import { passagesOfSpan } from './decided-now.ts';
+import { drawSample, scoreColdSample } from './draws.ts';
 import type { OpenStudy } from './open-study.ts';
 import { indexOf, passageView, strengthIn, strongestIn } from './passage-view.ts';
 import type { Placed } from './passages-now.ts';
@@ -33,6 +35,10 @@ export function readingHandlers(
   | 'removeCoding'
   | 'markNone'
   | 'clearNone'
+  | 'moveCoding'
+  | 'codeTogether'
+  | 'drawSample'
+  | 'scoreColdSample'
   | 'writeMemo'
   | 'reviseMemo'
 > {
@@ -71,6 +77,11 @@ export function readingHandlers(
         ? open.refusal({ ok: false, code: 'unknown coding', subject: id })
         : open.decide([{ kind: 'noneCleared', none }]);
     }),
+
+    moveCoding: room.decide(moveCoding),
+    codeTogether: room.decide(codeTogether),
+    drawSample: room.decide(drawSample),
+    scoreColdSample: room.decide(scoreColdSample),
 
     writeMemo: room.decide(writeMemo),
 
@@ -130,8 +141,7 @@ function confirm(open: OpenStudy, request: CodeRequest): Refused | null {
     (coding) => coding.standing !== 'rejected' && sameSpan(coding.span, span),
   );
   if (standing !== undefined) return again(open, standing, request.memo);
-  const { columns } = open.now.themes;
-  const offered = strongestIn(open, passage).some(({ column }) => columns[column] === theme.id);
+  const offered = offers(open, passage, theme.id);
   return open.decide([
     ...nonesOver(open, request.place.transcript, span),
     ...mine
@@ -207,9 +217,128 @@ function markNone(
     id: open.desk.context.mintId('none'),
     transcript: place.transcript,
     span: { start: place.start, end: place.end },
-    under: underOf(open, view),
+    under: underOf(open, view, open.now.passagesIn(place.transcript)[index]),
   };
   return open.decide([{ kind: 'noneMarked', none }]);
+}
+
+/**
+ * Another theme for a coding, in one decision: what was known about the theme of before is replaced
+ * by what is known about this one now.
+ */
+function moveCoding(
+  open: OpenStudy,
+  { transcript, coding: id, theme: wanted, ...view }: Api['moveCoding']['takes'],
+): Refused | null {
+  const coding = open.study.codings.get(transcript)?.get(id);
+  if (coding === undefined) {
+    return open.refusal({ ok: false, code: 'unknown coding', subject: id });
+  }
+  if (coding.standing === 'rejected') return refuse('moved rejection');
+  const theme = themeFor(open, wanted);
+  if (isRefused(theme)) return theme;
+  if (open.now.themeOf(coding.theme) === theme.id) return null;
+  const about = [...(open.study.codings.get(transcript)?.values() ?? [])].filter(
+    (other) =>
+      open.now.themeOf(other.theme) === theme.id && other.under.reader === coding.under.reader,
+  );
+  const twice = about.some(
+    (other) => other.standing !== 'rejected' && sameSpan(other.span, coding.span),
+  );
+  if (twice) return refuse('coded already', open.now.label(theme.id));
+  const home = homeOf(open, transcript, coding.span);
+  const passage = home === null ? null : open.now.passagesIn(transcript)[home];
+  const offered =
+    passage !== null &&
+    sameSpan(passage, coding.span) &&
+    view.seenSuggestion &&
+    offers(open, passage, theme.id);
+  const { theme: before, standing, span, memo, under, strength, codebookVersion } = coding;
+  return open.decide([
+    ...about
+      .filter(
+        (other) =>
+          other.standing === 'rejected' &&
+          home !== null &&
+          homeOf(open, transcript, other.span) === home,
+      )
+      .map((other): Edit => ({ kind: 'codingRemoved', coding: other })),
+    {
+      kind: 'codingRevised',
+      transcript,
+      coding: id,
+      from: { theme: before, standing, span, memo, known: { under, strength, codebookVersion } },
+      to: {
+        theme: theme.id,
+        standing: offered ? 'confirmed' : 'by hand',
+        span,
+        memo,
+        known: {
+          under: underOf(open, view, passage),
+          strength: home === null ? null : strengthAt(open, transcript, home, theme.id),
+          codebookVersion: theme.version,
+        },
+      },
+    },
+  ]);
+}
+
+/**
+ * Passages that were each opened before, coded by hand in one gesture. Those that carry the theme
+ * already are passed over; every coding says how many were made together.
+ */
+function codeTogether(
+  open: OpenStudy,
+  { places, theme: wanted, ...view }: Api['codeTogether']['takes'],
+): Refused | null {
+  const theme = themeFor(open, wanted);
+  if (isRefused(theme)) return theme;
+  const questions: Question[] = [];
+  for (const place of places) {
+    const question = questionOf(open, { place, theme: theme.id, memo: '', ...view });
+    if (isRefused(question)) return question;
+    const there = question.mine.some(
+      ({ standing, span }) => standing !== 'rejected' && sameSpan(span, question.span),
+    );
+    if (!there) questions.push(question);
+  }
+  return open.decide(
+    questions.flatMap(({ passage, span, mine }) => {
+      const place = { transcript: passage.transcript, ...span };
+      return [
+        ...nonesOver(open, place.transcript, span),
+        ...mine
+          .filter(({ standing }) => standing === 'rejected')
+          .map((coding): Edit => ({ kind: 'codingRemoved', coding })),
+        made(open, { place, theme: theme.id, memo: '', ...view }, passage, span, theme, 'by hand', {
+          together: questions.length,
+        }),
+      ];
+    }),
+  );
+}
+
+/** The passage that a span shares most with, as an index; null where it belongs to none. */
+function homeOf(open: OpenStudy, transcript: string, span: Span): number | null {
+  const placed = open.now.passagesIn(transcript);
+  const [home] = passagesOfSpan(placed, span).sort(([, a], [, b]) => b - a);
+  return home === undefined ? null : home[0];
+}
+
+function offers(open: OpenStudy, passage: Placed, theme: string): boolean {
+  const { columns } = open.now.themes;
+  return strongestIn(open, passage).some(({ column }) => columns[column] === theme);
+}
+
+function strengthAt(
+  open: OpenStudy,
+  transcript: string,
+  index: number,
+  theme: string,
+): number | null {
+  const { codings } = open.now.decidedIn(transcript).passages[index];
+  const passage = open.now.passagesIn(transcript)[index];
+  return strengthIn(open, passage, theme, codings.length > 0);
 }
 
 function writeMemo(open: OpenStudy, { on, text }: Api['writeMemo']['takes']): Refused | null {
@@ -256,24 +385,39 @@ function made(
   span: Span,
   theme: Theme,
   standing: Coding['standing'],
+  more: Pick<DecidedUnder, 'together'> = {},
 ): Edit {
+  const { transcript } = request.place;
+  const home = passage === null ? null : homeOf(open, transcript, passage);
   const coding: Coding = {
     id: open.desk.context.mintId('coding'),
-    transcript: request.place.transcript,
+    transcript,
     span,
     theme: theme.id,
     standing,
-    under: underOf(open, request),
-    strength: passage === null ? null : strengthIn(open, passage, theme.id),
+    under: { ...underOf(open, request, passage), ...more },
+    strength: home === null ? null : strengthAt(open, transcript, home, theme.id),
     codebookVersion: theme.version,
     memo: request.memo.trim() === '' ? '' : request.memo,
   };
   return { kind: 'codingMade', coding };
 }
 
-function underOf(open: OpenStudy, { drawnBy, seenSuggestion }: UnderView): DecidedUnder {
+/** In a cold sample nothing was in sight, whatever the window says. */
+function underOf(
+  open: OpenStudy,
+  { drawnBy, seenSuggestion }: UnderView,
+  passage: Placed | null,
+): DecidedUnder {
   const { study, reader, desk } = open;
-  return { reader: reader.id, at: desk.context.now(), drawnBy, seenSuggestion, fit: study.fit };
+  const held = passage !== null && isHeldBack(study, passage.transcript, passage);
+  return {
+    reader: reader.id,
+    at: desk.context.now(),
+    drawnBy,
+    seenSuggestion: seenSuggestion && !held,
+    fit: study.fit,
+  };
 }
 
 /** A coding of an earlier wording stands under the wording of now. */

@@ -31,6 +31,13 @@ export interface RecentPaths {
   readonly remove: (path: string) => Promise<void>;
 }
 
+/** Small things kept on this machine, by a fixed key each; nothing of a study's words. */
+export interface MachineSettings {
+  /** Plain JSON as it was kept; undefined where nothing was. To be checked: anybody may edit it. */
+  readonly get: (key: string) => Promise<unknown>;
+  readonly keep: (key: string, value: unknown) => Promise<void>;
+}
+
 /** Where a session stands: given by the shell, so that tests can say. */
 export interface Surroundings {
   readonly about: About;
@@ -38,6 +45,8 @@ export interface Surroundings {
   readonly recent: RecentPaths;
   /** How backups are kept; none are made without it. */
   readonly backups?: BackupStore;
+  /** Absent where nothing is kept. */
+  readonly machine?: MachineSettings;
   /** The folder of the demo's transcripts and of its attributes. */
   readonly demoFolder: string;
   readonly now: () => string;

@@ -1,4 +1,4 @@
-import type { Strata } from '../api.ts';
+import type { ReadingEvidence, Strata } from '../api.ts';
 import { closesTrail } from '../../engine/study/index.ts';
 import { give, refuse } from './answers.ts';
 import { evidenceHandlers } from './evidence.ts';
@@ -16,9 +16,12 @@ import { closeStudy, openingHandlers, openStudy } from './opening.ts';
 import type { OpenStudy } from './open-study.ts';
 import { provingHandlers } from './proving.ts';
 import { readingHandlers } from './reading.ts';
+import { readingEvidence } from './reading-evidence.ts';
+import { readingKeptHandlers } from './reading-kept.ts';
 import { reportHandlers } from './report.ts';
 import { Room } from './room.ts';
 import type { Handlers, Session, Surroundings } from './session-types.ts';
+import { search } from './search.ts';
 import { seedCheck } from './seed-check.ts';
 import { shapeView } from './shape-view.ts';
 import { strataFigure } from './strata-figure.ts';
@@ -46,6 +49,7 @@ export function createSession(surroundings: Surroundings): Session {
     ...themeDecisions(room),
     ...headingHandlers(room),
     ...readingHandlers(room),
+    ...readingKeptHandlers(room),
     ...reportHandlers(room),
     ...provingHandlers(room),
     ...forgettingHandlers(room),
@@ -61,6 +65,8 @@ export function createSession(surroundings: Surroundings): Session {
     mergePreview: room.look(mergePreview),
     seedCheck: room.look(seedCheck),
     wordView: room.look(wordView),
+    readingEvidence: room.look<null, ReadingEvidence>((open) => give(readingEvidence(open))),
+    search: room.look(search),
     find: room.look(async (open, { text }: { text: string }) => give(await find(open, text))),
   };
   return {

@@ -1,4 +1,10 @@
-import { resolveTheme, type Entry, type Study, type Transcript } from '../../engine/study/index.ts';
+import {
+  isHeldBack,
+  resolveTheme,
+  type Entry,
+  type Study,
+  type Transcript,
+} from '../../engine/study/index.ts';
 import type { Prepared } from '../../engine/text/index.ts';
 import {
   modelledThemes,
@@ -16,6 +22,7 @@ import { offersIn, type OffersIn } from './offers-now.ts';
 import { PassagesNow, type PassageBasis, type Placed } from './passages-now.ts';
 import { sinceFit, type SinceFit } from './since-fit.ts';
 import { columnsKey, themesNow, type ThemesNow } from './themes-now.ts';
+import { strengthsWithout } from './without-decisions.ts';
 
 /**
  * What the views read: the study as it stands, and everything that follows from it, each kept until
@@ -116,9 +123,17 @@ export class StudyNow {
   offersIn(transcript: string): OffersIn {
     const placed = this.passagesIn(transcript);
     const decided = this.decidedIn(transcript);
-    const { themes, settings } = this;
-    return this.#offers.get(transcript, [placed, decided, themes, settings], () =>
-      offersIn(placed, decided, themes, (id) => this.themeOf(id), settings.suggestions),
+    const { study, themes, settings } = this;
+    return this.#offers.get(transcript, [placed, decided, themes, settings, study.draws], () =>
+      offersIn(
+        placed,
+        decided,
+        themes,
+        (id) => this.themeOf(id),
+        settings.suggestions,
+        (passage) => isHeldBack(study, transcript, passage),
+        (row) => strengthsWithout(this, row),
+      ),
     );
   }
 

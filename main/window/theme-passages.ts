@@ -1,4 +1,4 @@
-import type { Coding } from '../../engine/study/index.ts';
+import { isHeldBack, type Coding } from '../../engine/study/index.ts';
 import type { Api, Refused, ThemePassageList, ThemePassageView } from '../api.ts';
 import { give } from './answers.ts';
 import { carriedBy } from './carried-by.ts';
@@ -37,7 +37,7 @@ export function passageViews(
   theme: string,
   list: ThemePassageList,
 ): readonly ThemePassageView[] {
-  const { now } = open;
+  const { study, now } = open;
   const column = now.themes.columnOf.get(theme);
   const all: Shown[] = [];
   const isShown = filterFor(open, theme, list);
@@ -45,7 +45,10 @@ export function passageViews(
     const { passages } = now.decidedIn(id);
     now.passagesIn(id).forEach((passage, index) => {
       const decided = passages[index];
-      const strength = column === undefined ? null : strengthOf(now.themes, passage.row, column);
+      const strength =
+        column === undefined || isHeldBack(study, id, passage)
+          ? null
+          : strengthOf(now.themes, passage.row, column);
       if (isShown(passage, decided, strength)) {
         all.push({ passage, decided, strength: strength ?? 0 });
       }

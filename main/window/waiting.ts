@@ -1,4 +1,4 @@
-import type { Coding, Edit } from '../../engine/study/index.ts';
+import { isHeldBack, type Coding, type Edit } from '../../engine/study/index.ts';
 import { defaultSettings } from '../../engine/themes/index.ts';
 import type { StudyNow } from './study-now.ts';
 
@@ -58,7 +58,17 @@ function texts({ since, fitted, study }: StudyNow): string[] {
 }
 
 type Kind =
-  'seed' | 'shut out' | 'pin' | 'aside' | 'merge' | 'theme' | 'confirmed' | 'by hand' | 'rejected';
+  | 'seed'
+  | 'shut out'
+  | 'pin'
+  | 'aside'
+  | 'merge'
+  | 'theme'
+  | 'confirmed'
+  | 'by hand'
+  | 'rejected'
+  | 'moved'
+  | 'scored';
 
 const kinds: readonly (readonly [Kind, string, string, string, string])[] = [
   ['theme', 'new theme', 'new themes', 'theme removed', 'themes removed'],
@@ -88,6 +98,8 @@ const kinds: readonly (readonly [Kind, string, string, string, string])[] = [
     'rejection removed',
     'rejections removed',
   ],
+  ['moved', 'coding moved', 'codings moved', 'coding moved', 'codings moved'],
+  ['scored', 'cold sample scored', 'cold samples scored', 'score taken back', 'scores taken back'],
 ];
 
 function phrase(count: number | undefined, one: string, more: string): string[] {
@@ -127,6 +139,12 @@ function weigh(edit: Edit, now: StudyNow, add: Add): void {
     case 'wordLetIn':
       add('shut out', `${edit.theme} ${edit.word}`, edit.kind === 'wordShutOut' ? 1 : -1);
       break;
+    case 'codingRevised':
+      if (edit.from.theme !== edit.to.theme) add('moved', edit.coding, 1);
+      break;
+    case 'drawScored':
+      add('scored', edit.draw, edit.to === null ? -1 : 1);
+      break;
     case 'codingMade':
     case 'codingRemoved':
       addCoding(edit.coding, now, add, edit.kind === 'codingMade' ? 1 : -1);
@@ -134,7 +152,9 @@ function weigh(edit: Edit, now: StudyNow, add: Add): void {
   }
 }
 
-/** A theme by hand has no part in the model, so its codings wait for nothing. */
-function addCoding({ id, theme, standing }: Coding, { study }: StudyNow, add: Add, by: 1 | -1) {
-  if (study.themes.get(theme)?.origin !== 'by hand') add(standing, id, by);
+/** A theme by hand has no part in the model, and a cold sample has none yet. */
+function addCoding(coding: Coding, { study }: StudyNow, add: Add, by: 1 | -1) {
+  const { id, theme, standing, transcript, span } = coding;
+  if (study.themes.get(theme)?.origin === 'by hand') return;
+  if (!isHeldBack(study, transcript, span)) add(standing, id, by);
 }

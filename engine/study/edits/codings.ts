@@ -1,6 +1,7 @@
 import { sameSpan, type Span } from '../../spans/index.ts';
 import { done, refused, type Refusal } from '../refusal.ts';
-import type { Coding, DecidedUnder, None, Study, ThemeId } from '../study.ts';
+import type { CodingKnown } from '../edit.ts';
+import type { Coding, CodingId, DecidedUnder, None, Study, ThemeId } from '../study.ts';
 import { resolveTheme } from '../themes.ts';
 import { label } from './themes.ts';
 import { sameJson, withEntry, withInner, withoutEntry, type Rules } from './rule.ts';
@@ -40,15 +41,25 @@ export const codingRules: Rules<
       const here = study.codings.get(transcript);
       const current = here?.get(id);
       if (here === undefined || current === undefined) return refused('unknown coding', id);
-      const { theme, standing, span, memo } = current;
-      if (!sameJson({ theme, standing, span, memo }, from)) return refused('changed since', id);
+      const { theme, standing, span, memo, under, strength, codebookVersion } = current;
+      const known = from.known === undefined ? {} : { known: { under, strength, codebookVersion } };
+      if (!sameJson({ theme, standing, span, memo, ...known }, from)) {
+        return refused('changed since', id);
+      }
+      // Without it the coding would keep what was known about another theme.
+      if (to.theme !== theme && (from.known === undefined || to.known === undefined)) {
+        return refused('unusable value', id);
+      }
       if (!restoring) {
         const fault =
           (sameSpan(to.span, span) ? null : spanFault(study, transcript, to.span)) ??
-          (to.theme === theme ? null : themeFault(study, to.theme));
+          (to.theme === theme ? null : themeFault(study, to.theme)) ??
+          (to.known === undefined ? null : knownFault(study, id, to.known));
         if (fault !== null) return fault;
       }
-      return done(withCodings(study, transcript, withEntry(here, id, { ...current, ...to })));
+      const { known: knownThen = {}, ...state } = to;
+      const revised = { ...current, ...state, ...knownThen };
+      return done(withCodings(study, transcript, withEntry(here, id, revised)));
     },
     inverse: ({ transcript, coding, from, to }) => ({
       kind: 'codingRevised',
@@ -137,15 +148,22 @@ export function spanFault(study: Study, transcript: string, span: Span): Refusal
 }
 
 function codingFault(study: Study, coding: Coding): Refusal | null {
-  const { strength } = coding;
-  if (strength !== null && !(strength >= 0 && strength <= 1)) {
-    return refused('unusable value', coding.id);
-  }
   return (
     spanFault(study, coding.transcript, coding.span) ??
     themeFault(study, coding.theme) ??
-    underFault(study, coding.under)
+    knownFault(study, coding.id, coding)
   );
+}
+
+function knownFault(
+  study: Study,
+  coding: CodingId,
+  { strength, under }: CodingKnown,
+): Refusal | null {
+  if (strength !== null && !(strength >= 0 && strength <= 1)) {
+    return refused('unusable value', coding);
+  }
+  return underFault(study, under);
 }
 
 function underFault(study: Study, { reader, fit }: DecidedUnder): Refusal | null {

@@ -114,5 +114,6 @@ function isFitInUse(study: Study, id: FitId): boolean {
   for (const byId of [...study.codings.values(), ...study.nones.values()]) {
     for (const { under } of byId.values()) if (under.fit === id) return true;
   }
+  for (const { scored } of study.draws.values()) if (scored?.fit === id) return true;
   return false;
 }

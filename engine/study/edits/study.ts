@@ -74,5 +74,8 @@ function isReaderInUse(study: Study, reader: ReaderId): boolean {
   for (const byId of [...study.codings.values(), ...study.nones.values()]) {
     for (const { under } of byId.values()) if (under.reader === reader) return true;
   }
+  for (const draw of study.draws.values()) {
+    if (draw.reader === reader || draw.scored?.reader === reader) return true;
+  }
   return false;
 }

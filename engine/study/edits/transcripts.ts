@@ -1,7 +1,7 @@
 import { mapSpan, sameSpan, invertReplacements, type Span } from '../../spans/index.ts';
 import type { EditOf, TranscriptDescription } from '../edit.ts';
 import { done, refused, type Refusal } from '../refusal.ts';
-import type { Identifier, IdentifierId, Memo, MemoId, Study, Transcript } from '../study.ts';
+import type { Draw, Identifier, IdentifierId, Memo, MemoId, Study, Transcript } from '../study.ts';
 import { sameJson, withEntry, withInner, withoutEntry, type Rules } from './rule.ts';
 
 interface PlacedSpan {
@@ -219,12 +219,45 @@ function spansOn(study: Study, transcript: string): PlacedSpan[] {
           : [],
       ),
     ),
+    ...drawnOn(study, transcript),
   ].map(({ id, span: { start, end } }) => ({ id, span: { start, end } }));
 }
 
 /** What an edit of a text calls the place of something that stays. */
 function placeId({ id }: Identifier, index: number): string {
   return `${id} ${index}`;
+}
+
+/** Drawn passages have no id of their own: they go by their draw and their place in it. */
+const drawnId = (draw: Draw, index: number): string => `${draw.id} ${index}`;
+
+function drawnOn(study: Study, transcript: string): PlacedSpan[] {
+  return [...study.draws.values()].flatMap((draw) =>
+    draw.places.flatMap((place, index) =>
+      place.transcript === transcript ? [{ id: drawnId(draw, index), span: place.span }] : [],
+    ),
+  );
+}
+
+function reviseDraws(
+  draws: Study['draws'],
+  transcript: string,
+  move: (id: string, span: Span) => Span,
+): Study['draws'] {
+  const touched = [...draws.values()].filter(({ places }) =>
+    places.some((place) => place.transcript === transcript),
+  );
+  if (touched.length === 0) return draws;
+  const revised = new Map(draws);
+  for (const draw of touched) {
+    const places = draw.places.map((place, index) =>
+      place.transcript === transcript
+        ? { ...place, span: move(drawnId(draw, index), place.span) }
+        : place,
+    );
+    revised.set(draw.id, { ...draw, places });
+  }
+  return revised;
 }
 
 function reviseText(study: Study, revised: Transcript, edit: EditOf<'textRevised'>): Study {
@@ -248,6 +281,7 @@ function reviseText(study: Study, revised: Transcript, edit: EditOf<'textRevised
     identifiers: staysHere ? movedPlaces(study, revised.id, move) : study.identifiers,
     codings: withInner(study.codings, revised.id, moveAll(study.codings.get(revised.id))),
     nones: withInner(study.nones, revised.id, moveAll(study.nones.get(revised.id))),
+    draws: reviseDraws(study.draws, revised.id, move),
   };
 }
 

@@ -1,52 +1,62 @@
-const key = 'understory.reading';
+import type { ReadingPreferences } from '../../../main/api.ts';
 
-/** How a person likes to read: kept on this machine, beside no study. */
+/** How a person likes to read: kept on this machine, in no study. */
 export class Preferences {
-  #suggestions = $state(true);
-  #goOn = $state(true);
-  #singleKeys = $state(true);
-  readonly #storage: Pick<Storage, 'getItem' | 'setItem'>;
+  #kept = $state.raw<ReadingPreferences>({
+    suggestions: true,
+    goOn: true,
+    singleKeys: true,
+    keys: {},
+  });
+  readonly #keep: (preferences: ReadingPreferences) => void;
 
-  constructor(storage: Pick<Storage, 'getItem' | 'setItem'>) {
-    this.#storage = storage;
-    const kept = (storage.getItem(key) ?? '').split(' ');
-    this.#suggestions = kept[0] !== '0';
-    this.#goOn = kept[1] !== '0';
-    this.#singleKeys = kept[2] !== '0';
+  constructor(keep: (preferences: ReadingPreferences) => void) {
+    this.#keep = keep;
+  }
+
+  /** Takes over what the machine kept; null where it kept nothing. */
+  take(kept: ReadingPreferences | null): void {
+    if (kept !== null) this.#kept = kept;
   }
 
   /** Whether suggestions are in sight; recorded with every decision. */
   get suggestions(): boolean {
-    return this.#suggestions;
+    return this.#kept.suggestions;
   }
 
-  set suggestions(value: boolean) {
-    this.#suggestions = value;
-    this.#keep();
+  set suggestions(suggestions: boolean) {
+    this.#change({ suggestions });
   }
 
   /** Whether a decision leads to the next passage. */
   get goOn(): boolean {
-    return this.#goOn;
+    return this.#kept.goOn;
   }
 
-  set goOn(value: boolean) {
-    this.#goOn = value;
-    this.#keep();
+  set goOn(goOn: boolean) {
+    this.#change({ goOn });
   }
 
   /** Whether a letter or digit alone does something (WCAG 2.1.4). */
   get singleKeys(): boolean {
-    return this.#singleKeys;
+    return this.#kept.singleKeys;
   }
 
-  set singleKeys(value: boolean) {
-    this.#singleKeys = value;
-    this.#keep();
+  set singleKeys(singleKeys: boolean) {
+    this.#change({ singleKeys });
   }
 
-  #keep(): void {
-    const values = [this.#suggestions, this.#goOn, this.#singleKeys];
-    this.#storage.setItem(key, values.map(Number).join(' '));
+  /** Keys other than the usual ones, by what they do. */
+  get keys(): Readonly<Record<string, string>> {
+    return this.#kept.keys;
+  }
+
+  set keys(keys: Readonly<Record<string, string>>) {
+    this.#change({ keys });
+  }
+
+  #change(change: Partial<ReadingPreferences>): void {
+    this.#kept = { ...this.#kept, ...change };
+    this.#keep(this.#kept);
   }
 }

@@ -6,6 +6,7 @@ import type {
   ReadingList,
   ReadingListRequest,
   Span,
+  StoppedAt,
   ThemeRowView,
   TranscriptView,
   UnderView,
@@ -13,7 +14,7 @@ import type {
 import type { StudyState } from '../../state/study.svelte.ts';
 import type { Preferences } from './preferences.svelte.ts';
 import { KeptTranscripts, keyOf, newlyDecided, Positions } from './kept-transcripts.ts';
-import { keepStopped, stoppedAt } from './stopped.ts';
+import { stoppedAt, takenUp } from './stopped.ts';
 
 export const firstRequest: ReadingListRequest = {
   kind: 'in order',
@@ -36,7 +37,6 @@ const keptTranscripts = 8;
 export class Reading {
   readonly #study: StudyState;
   readonly #preferences: Preferences;
-  readonly #storage: Pick<Storage, 'getItem' | 'setItem'>;
 
   #request = $state.raw<ReadingListRequest>(firstRequest);
   #list = $state.raw<ReadingList | null>(null);
@@ -54,18 +54,14 @@ export class Reading {
     [];
   #positions = new Positions();
   #deciding = 0;
+  #keeping: ReturnType<typeof setTimeout> | undefined;
   #seen = -1;
   /** Places of the decisions made here, newest last: where undo goes back to. */
   #made: PassagePlace[] = [];
 
-  constructor(
-    study: StudyState,
-    preferences: Preferences,
-    storage: Pick<Storage, 'getItem' | 'setItem'>,
-  ) {
+  constructor(study: StudyState, preferences: Preferences) {
     this.#study = study;
     this.#preferences = preferences;
-    this.#storage = storage;
   }
 
   get request(): ReadingListRequest {
@@ -145,26 +141,16 @@ export class Reading {
   }
 
   /** Takes up where the reader stopped, or goes where another place of the app pointed to. */
-  async begin(): Promise<void> {
+  async begin(stopped: StoppedAt | null): Promise<void> {
     this.#seen = this.#study.revision;
     await Promise.all([this.#loadNames(), this.loadThemes()]);
-    const id = this.#study.overview?.study.id;
-    const stopped = id === undefined ? null : stoppedAt(this.#storage, id);
-    if (stopped === null) {
+    const overview = this.#study.overview;
+    if (stopped === null || overview === null) {
       await this.read(firstRequest);
       return;
     }
-    const { kind, unreadOnly, count, seed } = stopped;
-    const theme = this.#themes[stopped.theme]?.id ?? null;
-    const needsFit = !['in order', 'random draw', 'one theme', 'earlier wording'].includes(kind);
-    const possible =
-      (!needsFit || this.#study.overview?.fitted === true) &&
-      ((kind !== 'one theme' && kind !== 'earlier wording') || theme !== null);
-    const transcript = this.#names[stopped.only]?.id ?? null;
-    await this.read(
-      possible ? { kind, unreadOnly, count, seed, theme, transcript } : firstRequest,
-      { transcript: this.#names[stopped.transcript]?.id ?? '', start: stopped.start },
-    );
+    const { request, at } = takenUp(stopped, this.#orders(), overview);
+    await this.read(request ?? firstRequest, at);
   }
 
   /** Draws up a list and goes to its first passage, or to the one where the reader stopped. */
@@ -403,7 +389,7 @@ export class Reading {
     if (position >= 0) this.#index = position;
     else this.#cameBy ??= pointedTo;
     void this.#load(place.transcript).then(() => this.#loadAhead());
-    this.#keep(place);
+    this.#keep();
   }
 
   #loadAhead(): void {
@@ -411,22 +397,22 @@ export class Reading {
     if (next !== undefined) void this.#load(next.transcript);
   }
 
-  #keep({ transcript, start }: PassagePlace): void {
-    const id = this.#study.overview?.study.id;
-    if (id === undefined) return;
-    const rank = (wanted: string | null): number =>
-      this.#names.findIndex(({ id: other }) => other === wanted);
-    const { kind, unreadOnly, count, seed, theme, transcript: only } = this.#request;
-    keepStopped(this.#storage, id, {
-      kind,
-      unreadOnly,
-      count,
-      seed,
-      theme: this.#themes.findIndex(({ id: other }) => other === theme),
-      only: rank(only),
-      transcript: rank(transcript),
-      start,
-    });
+  #orders() {
+    return { transcripts: this.#names, themes: this.#themes };
+  }
+
+  /** Told to the machine once one stays at a place for a moment. */
+  #keep(): void {
+    clearTimeout(this.#keeping);
+    this.#keeping = setTimeout(() => this.keepPlace(), 500);
+  }
+
+  /** Keeps where the reader is, on this machine. */
+  keepPlace(): void {
+    clearTimeout(this.#keeping);
+    if (this.#place === null || this.#study.overview === null) return;
+    const stopped = stoppedAt(this.#request, this.#place, this.#orders());
+    void this.#study.ask('keepReading', { preferences: null, stopped });
   }
 
   #load(id: string, anew = false): Promise<TranscriptView | undefined> {

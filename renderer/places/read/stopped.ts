@@ -1,63 +1,56 @@
-import type { ReadingListKind } from '../../../main/api.ts';
+import type { PassagePlace, ReadingListRequest, StoppedAt } from '../../../main/api.ts';
 
-/** The lists in the order of their numbers in storage: append only. */
-export const kinds = [
-  'in order',
-  'strongest first',
-  'nearest the edge',
-  'unexplained',
-  'random draw',
-  'one theme',
-  'earlier wording',
-] as const satisfies readonly ReadingListKind[];
-
-/** Where a reader stopped. Only numbers are kept, so that nothing of a study lies outside its file. */
-export interface Stopped {
-  readonly kind: ReadingListKind;
-  readonly unreadOnly: boolean;
-  readonly count: number;
-  readonly seed: number;
-  /** Places in the codebook and in the order of gathering; -1 for none. */
-  readonly theme: number;
-  readonly only: number;
-  readonly transcript: number;
-  readonly start: number;
+/** Transcripts and themes in the orders that a place is counted in. */
+interface Orders {
+  readonly transcripts: readonly { readonly id: string }[];
+  readonly themes: readonly { readonly id: string }[];
 }
 
-const keyOf = (study: string): string => `understory.stopped.${study}`;
+const rankOf = (all: readonly { readonly id: string }[], id: string | null): number =>
+  all.findIndex((one) => one.id === id);
 
-export function stoppedAt(storage: Pick<Storage, 'getItem'>, study: string): Stopped | null {
-  const numbers = (storage.getItem(keyOf(study)) ?? '').split(' ').map(Number);
-  if (numbers.length !== 8 || !numbers.every(Number.isSafeInteger)) return null;
-  const [kind, unreadOnly, count, seed, theme, only, transcript, start] = numbers as [
-    number,
-    number,
-    number,
-    number,
-    number,
-    number,
-    number,
-    number,
-  ];
-  const name = kinds[kind];
-  if (name === undefined) return null;
-  return { kind: name, unreadOnly: unreadOnly === 1, count, seed, theme, only, transcript, start };
-}
-
-export function keepStopped(
-  storage: Pick<Storage, 'setItem'>,
-  study: string,
-  { kind, unreadOnly, count, seed, theme, only, transcript, start }: Stopped,
-): void {
-  const numbers = [
-    kinds.indexOf(kind),
-    Number(unreadOnly),
+/**
+ * Where a reader is, in numbers: what was searched for stays in the study, so such a list is taken
+ * up again as the whole study in order.
+ */
+export function stoppedAt(
+  request: ReadingListRequest,
+  { transcript, start }: Pick<PassagePlace, 'transcript' | 'start'>,
+  { transcripts, themes }: Orders,
+): StoppedAt {
+  const { kind, unreadOnly, count, seed, theme, transcript: only } = request;
+  return {
+    kind: kind === 'keyword in context' ? 'in order' : kind,
+    unreadOnly,
     count,
     seed,
-    theme,
-    only,
-    transcript,
+    theme: rankOf(themes, theme),
+    only: rankOf(transcripts, only),
+    transcript: rankOf(transcripts, transcript),
     start,
-  ];
-  storage.setItem(keyOf(study), numbers.join(' '));
+  };
+}
+
+const needFit: readonly string[] = ['strongest first', 'nearest the edge', 'unexplained'];
+
+/** The list and the place to take up again; no list where it cannot be had any more. */
+export function takenUp(
+  stopped: StoppedAt,
+  { transcripts, themes }: Orders,
+  { fitted, coldSample }: { readonly fitted: boolean; readonly coldSample: unknown },
+): {
+  readonly request: ReadingListRequest | null;
+  readonly at: { readonly transcript: string; readonly start: number };
+} {
+  const { kind, unreadOnly, count, seed, start } = stopped;
+  const theme = themes[stopped.theme]?.id ?? null;
+  const possible =
+    (fitted || !needFit.includes(kind)) &&
+    ((kind !== 'one theme' && kind !== 'earlier wording') || theme !== null) &&
+    (kind !== 'cold sample' || coldSample !== null);
+  const transcript = transcripts[stopped.only]?.id ?? null;
+  return {
+    request: possible ? { kind, unreadOnly, count, seed, theme, transcript } : null,
+    at: { transcript: transcripts[stopped.transcript]?.id ?? '', start },
+  };
 }

@@ -19,6 +19,7 @@ import {
   after,
   candidate,
   coding,
+  draw,
   firstFit,
   fit,
   harbour,
@@ -163,6 +164,32 @@ const bookOfHarbour = {
   at: '2031-04-05T06:07:08.000Z',
   reader: 'reader-ada',
 };
+
+const knownOnHarbour = {
+  under: coding('any').under,
+  strength: 0.75,
+  codebookVersion: 1,
+};
+const knownLater = {
+  under: { ...coding('any').under, at: '2031-05-01T00:00:00.000Z', seenSuggestion: false },
+  strength: null,
+  codebookVersion: 3,
+};
+
+const cold = draw('cold', { kind: 'cold sample', name: 'cold sample of 2, seed 7' });
+const scored = { fit: 'first-fit', reader: 'reader-ada', at: '2031-05-01T00:00:00.000Z' };
+const drawn = after(island, { kind: 'drawMade', draw: draw('any') });
+const drawnCold = after(
+  started,
+  { kind: 'readerAdded', reader: ada },
+  { kind: 'participantAdded', participant: maren },
+  { kind: 'transcriptGathered', transcript: harbour },
+  { kind: 'transcriptGathered', transcript: mill },
+  { kind: 'themeAdded', theme: sea },
+  { kind: 'themeAdded', theme: work },
+  { kind: 'drawMade', draw: cold },
+  { kind: 'modelFitted', fit: firstFit, found: [candidate], before: null },
+);
 
 const steady = { themes: [{ steadiness: 0.75, passages: 4 }], floor: 0.5, note: null };
 
@@ -975,23 +1002,45 @@ const cases: { readonly [Kind in EditKind]: readonly Case<Kind>[] } = {
   ],
   codingRevised: [
     {
-      does: 'changes theme, standing, span and memo, and not what was known then',
+      does: 'changes standing, span and memo, and not what was known then',
       edit: {
         kind: 'codingRevised',
         transcript: 'harbour',
         coding: 'on-harbour',
         from: { theme: 'sea', standing: 'confirmed', span: span(11, 30), memo: '' },
-        to: { theme: 'silence', standing: 'by hand', span: span(12, 13), memo: 'A pause.' },
+        to: { theme: 'sea', standing: 'by hand', span: span(12, 13), memo: 'A pause.' },
       },
       expected: codings(
         'harbour',
         'on-harbour',
-        coding('on-harbour', {
+        coding('on-harbour', { standing: 'by hand', span: span(12, 13), memo: 'A pause.' }),
+      ),
+    },
+    {
+      does: 'moves a coding to another theme, with what is known about that one',
+      edit: {
+        kind: 'codingRevised',
+        transcript: 'harbour',
+        coding: 'on-harbour',
+        from: {
+          theme: 'sea',
+          standing: 'confirmed',
+          span: span(11, 30),
+          memo: '',
+          known: knownOnHarbour,
+        },
+        to: {
           theme: 'silence',
           standing: 'by hand',
-          span: span(12, 13),
-          memo: 'A pause.',
-        }),
+          span: span(11, 30),
+          memo: '',
+          known: knownLater,
+        },
+      },
+      expected: codings(
+        'harbour',
+        'on-harbour',
+        coding('on-harbour', { theme: 'silence', standing: 'by hand', ...knownLater }),
       ),
     },
     {
@@ -1001,13 +1050,30 @@ const cases: { readonly [Kind in EditKind]: readonly Case<Kind>[] } = {
         kind: 'codingRevised',
         transcript: 'mill',
         coding: 'on-mill',
-        from: { theme: 'work', standing: 'confirmed', span: span(0, 12), memo: '' },
-        to: { theme: 'silence', standing: 'confirmed', span: span(0, 12), memo: '' },
+        from: {
+          theme: 'work',
+          standing: 'confirmed',
+          span: span(0, 12),
+          memo: '',
+          known: knownOnHarbour,
+        },
+        to: {
+          theme: 'silence',
+          standing: 'confirmed',
+          span: span(0, 12),
+          memo: '',
+          known: knownLater,
+        },
       },
       expected: codings(
         'mill',
         'on-mill',
-        coding('on-mill', { transcript: 'mill', span: span(0, 12), theme: 'silence' }),
+        coding('on-mill', {
+          transcript: 'mill',
+          span: span(0, 12),
+          theme: 'silence',
+          ...knownLater,
+        }),
       ),
     },
     {
@@ -1103,6 +1169,41 @@ const cases: { readonly [Kind in EditKind]: readonly Case<Kind>[] } = {
       expected: {
         memos: having(island.memos, 'on-study', { ...memo('on-study'), text: 'Why not?\n' }),
       },
+    },
+  ],
+  drawMade: [
+    {
+      does: 'records which passages were drawn, and how',
+      edit: { kind: 'drawMade', draw: draw('new') },
+      expected: { draws: new Map([['new', draw('new')]]) },
+    },
+    {
+      does: 'records a cold sample before the first fit',
+      before: after(
+        started,
+        { kind: 'readerAdded', reader: ada },
+        { kind: 'participantAdded', participant: maren },
+        { kind: 'transcriptGathered', transcript: harbour },
+        { kind: 'transcriptGathered', transcript: mill },
+      ),
+      edit: { kind: 'drawMade', draw: cold },
+      expected: { draws: new Map([['cold', cold]]) },
+    },
+  ],
+  drawRemoved: [
+    {
+      does: 'takes a draw away',
+      before: drawn,
+      edit: { kind: 'drawRemoved', draw: draw('any') },
+      expected: { draws: new Map() },
+    },
+  ],
+  drawScored: [
+    {
+      does: 'holds a cold sample against a fit',
+      before: drawnCold,
+      edit: { kind: 'drawScored', draw: 'cold', from: null, to: scored },
+      expected: { draws: new Map([['cold', { ...cold, scored }]]) },
     },
   ],
   modelFitted: [

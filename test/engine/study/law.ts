@@ -82,7 +82,15 @@ export function nextEntry(study: Study, edit: Edit): Entry {
 
 /** What an edit leaves alone is the very same object, so that an edit is cheap. */
 function expectSharing(before: Study, after: Study, expectation: Expectation): void {
-  const fields = ['readers', 'transcripts', 'participants', 'themes', 'fits', 'settings'] as const;
+  const fields = [
+    'readers',
+    'transcripts',
+    'participants',
+    'themes',
+    'fits',
+    'draws',
+    'settings',
+  ] as const;
   for (const field of fields) {
     if (!(field in expectation)) expect(after[field] === before[field], field).toBe(true);
   }

@@ -1,7 +1,7 @@
 import type { Edit, Study, Theme } from '../../../engine/study/index.ts';
 import type { Span } from '../../../engine/spans/index.ts';
 import { offsetAmong, reworded, spanAmong, type Rewording } from '../spans/marked-text.ts';
-import { coding, fit, memo, none, theme } from './scene.ts';
+import { coding, draw, fit, memo, none, theme } from './scene.ts';
 
 /** A decision about a stretch of a transcript, as the model keeps it. */
 interface Decided {
@@ -34,6 +34,8 @@ export interface World {
   codings: Record<string, Decided>;
   nones: Record<string, Decided>;
   memos: Record<string, Decided>;
+  /** By the id under which a draw's one place is moved. */
+  draws: Record<string, Decided>;
   fits: Record<string, { themes: string[]; from: string | null; found: string }>;
   fit: string | null;
 }
@@ -48,6 +50,7 @@ export const newWorld = (): World => ({
   codings: {},
   nones: {},
   memos: {},
+  draws: {},
   fits: {},
   fit: null,
 });
@@ -97,6 +100,12 @@ export function worldOf(study: Study): World {
         if (subject.kind !== 'passage') throw new Error('the model writes memos on passages only');
         return [id, { at: subject.transcript, ...subject.span, reader }];
       }),
+    ),
+    draws: Object.fromEntries(
+      [...study.draws.values()].map(({ id, places: [place], reader }) => [
+        `${id} 0`,
+        { at: place!.transcript, ...place!.span, reader },
+      ]),
     ),
     fits: Object.fromEntries(
       [...study.fits.values()].map(({ id, themes, start }) => [
@@ -224,6 +233,10 @@ function fullFit(id: string, { themes, from }: World['fits'][string]) {
   });
 }
 
+function fullDraw(id: string, { at, start, end, reader }: Decided) {
+  return draw(id, { places: [{ transcript: at, span: { start, end } }], reader });
+}
+
 const isUsed = (world: World, id: string) =>
   world.themes.some((each) => each.into === id) ||
   Object.values(world.fits).some(({ themes }) => themes.includes(id)) ||
@@ -286,7 +299,7 @@ export const tries: Readonly<Record<string, Try>> = {
 
   removeReader: (world, { a }) => {
     const id = pick(readerIds, a);
-    const decisions = [world.codings, world.nones, world.memos].flatMap((all) =>
+    const decisions = [world.codings, world.nones, world.memos, world.draws].flatMap((all) =>
       Object.values(all),
     );
     return {
@@ -330,7 +343,10 @@ export const tries: Readonly<Record<string, Try>> = {
   },
 
   discard: (world, { a }) => {
-    const id = pick(transcriptIds, a);
+    const one = pick(transcriptIds, a);
+    // What was drawn outlives its transcript; a new one of that id would be no study's doing.
+    const drawn = Object.values(world.draws).some(({ at }) => at === one);
+    const id = drawn ? 'nowhere' : one;
     const current = world.transcripts[id];
     const decisions = [world.codings, world.nones, world.memos].flatMap((all) =>
       Object.values(all),
@@ -376,7 +392,7 @@ export const tries: Readonly<Record<string, Try>> = {
       at = end;
     }
     const marks = reworded('x'.repeat(current.length), rewordings);
-    const here = [world.codings, world.nones, world.memos].flatMap((all) =>
+    const here = [world.codings, world.nones, world.memos, world.draws].flatMap((all) =>
       Object.entries(all).filter(([, decided]) => decided.at === id),
     );
     const forgets = d % 7 === 6 && here.length > 0;
@@ -593,14 +609,16 @@ export const tries: Readonly<Record<string, Try>> = {
         ? { start: decided.start, end: decided.end }
         : { start: 0, end: choices.b % 12 };
     const from = fullCoding(id, decided);
+    const { under, strength, codebookVersion } = from;
+    const known = of.id === decided.theme ? {} : { known: { under, strength, codebookVersion } };
     const keepsSpan = to.start === decided.start && to.end === decided.end;
     return {
       edit: {
         kind: 'codingRevised',
         transcript: decided.at,
         coding: id,
-        from: { theme: from.theme, standing: from.standing, span: from.span, memo: '' },
-        to: { theme: of.id, standing, span: to, memo: '' },
+        from: { theme: from.theme, standing: from.standing, span: from.span, memo: '', ...known },
+        to: { theme: of.id, standing, span: to, memo: '', ...known },
       },
       allowed:
         decided !== gone &&
@@ -646,6 +664,27 @@ export const tries: Readonly<Record<string, Try>> = {
       edit: { kind: 'memoErased', memo: fullMemo(id, decided) },
       allowed: decided !== gone,
       act: () => void delete world.memos[id],
+    };
+  },
+
+  draw: (world, choices) => {
+    const { allowed, ...at } = decisionAt(world, choices);
+    // A draw may name a transcript that is gone; here it is tried by nobody instead.
+    const decided = at.at in world.transcripts ? at : { ...at, reader: 'nobody' };
+    const id = `draw ${choices.b % 4}`;
+    return {
+      edit: { kind: 'drawMade', draw: fullDraw(id, decided) },
+      allowed: allowed && !(`${id} 0` in world.draws),
+      act: () => void (world.draws[`${id} 0`] = stored(decided)),
+    };
+  },
+
+  forget: (world, { a }) => {
+    const [id, decided] = oneOf(world.draws, a) ?? ['gone 0', gone];
+    return {
+      edit: { kind: 'drawRemoved', draw: fullDraw(id.slice(0, -2), decided) },
+      allowed: decided !== gone,
+      act: () => void delete world.draws[id],
     };
   },
 

@@ -11,6 +11,7 @@ export function plain(study: Study) {
     participants,
     memos,
     fits,
+    draws,
     codings,
     nones,
   } = study;
@@ -30,6 +31,7 @@ export function plain(study: Study) {
     identifiers: sorted(study.identifiers),
     guide: study.guide,
     fits: sorted(fits),
+    draws: sorted(draws),
     fit: study.fit,
     absentFits: [...study.absentFits].sort(),
     withdrawn: sorted(study.withdrawn),

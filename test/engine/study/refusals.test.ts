@@ -18,6 +18,7 @@ import {
   after,
   candidate,
   coding,
+  draw,
   firstFit,
   fit,
   harbour,
@@ -75,6 +76,17 @@ const merged = after(island, { kind: 'themesMerged', into: 'sea', from: ['work']
 const aside = after(island, { kind: 'themeSetAside', theme: 'work' });
 const onHarbour = coding('on-harbour');
 const asItWas = { theme: 'sea', standing: 'confirmed', span: span(11, 30), memo: '' } as const;
+const cold = draw('cold', { kind: 'cold sample', name: 'cold sample' });
+const drawn = after(island, { kind: 'drawMade', draw: draw('any') });
+const drawnCold = after(
+  started,
+  { kind: 'readerAdded', reader: ada },
+  { kind: 'participantAdded', participant: maren },
+  { kind: 'transcriptGathered', transcript: harbour },
+  { kind: 'transcriptGathered', transcript: mill },
+  { kind: 'drawMade', draw: cold },
+);
+const knownThen = { under: onHarbour.under, strength: 0.75, codebookVersion: 1 };
 const harbourText = { text: harbour.text, length: harbour.length, turns: harbour.turns };
 const revised: Extract<Edit, { kind: 'textRevised' }> = {
   kind: 'textRevised',
@@ -154,6 +166,24 @@ const refusals: { readonly [Code in RefusalCode]: readonly Case[] } = {
       subject: 'Another',
     },
     { what: 'a theme twice', edit: { kind: 'themeAdded', theme: sea }, subject: 'sea' },
+    {
+      what: 'a draw twice',
+      before: drawn,
+      edit: { kind: 'drawMade', draw: draw('any') },
+      subject: 'random draw any',
+    },
+    {
+      what: 'two draws of one name',
+      before: drawn,
+      edit: { kind: 'drawMade', draw: draw('new', { name: 'random draw any' }) },
+      subject: 'random draw any',
+    },
+    {
+      what: 'a second cold sample',
+      before: drawnCold,
+      edit: { kind: 'drawMade', draw: { ...cold, id: 'colder', name: 'another' } },
+      subject: 'cold sample',
+    },
     {
       what: 'a coding twice',
       edit: { kind: 'codingMade', coding: onHarbour },
@@ -384,6 +414,34 @@ const refusals: { readonly [Code in RefusalCode]: readonly Case[] } = {
       subject: 'on-harbour',
     },
     {
+      what: 'to move a coding about which something else was known',
+      edit: {
+        kind: 'codingRevised',
+        transcript: 'harbour',
+        coding: 'on-harbour',
+        from: { ...asItWas, known: { ...knownThen, strength: 0.5 } },
+        to: asItWas,
+      },
+      subject: 'on-harbour',
+    },
+    {
+      what: 'to take away a draw of other passages',
+      before: drawn,
+      edit: { kind: 'drawRemoved', draw: draw('any', { places: [] }) },
+      subject: 'random draw any',
+    },
+    {
+      what: 'to score a cold sample that is scored otherwise',
+      before: drawnCold,
+      edit: {
+        kind: 'drawScored',
+        draw: 'cold',
+        from: { fit: 'f', reader: 'reader-ada', at: '' },
+        to: null,
+      },
+      subject: 'cold sample',
+    },
+    {
       what: 'to clear a none elsewhere',
       edit: { kind: 'noneCleared', none: none('none-on-harbour') },
       subject: 'none-on-harbour',
@@ -537,6 +595,23 @@ const refusals: { readonly [Code in RefusalCode]: readonly Case[] } = {
   ],
   'fit is in use': [
     {
+      what: 'to take back a fit that a cold sample was held against',
+      before: after(
+        drawnCold,
+        { kind: 'themeAdded', theme: sea },
+        { kind: 'themeAdded', theme: work },
+        { kind: 'modelFitted', fit: firstFit, found: [candidate], before: null },
+        {
+          kind: 'drawScored',
+          draw: 'cold',
+          from: null,
+          to: { fit: 'first-fit', reader: 'reader-ada', at: '2031-05-01T00:00:00.000Z' },
+        },
+      ),
+      edit: { kind: 'fitRemoved', fit: firstFit, found: [candidate], before: null },
+      subject: 'first-fit',
+    },
+    {
       what: 'to take back a fit under which something was decided',
       edit: { kind: 'fitRemoved', fit: firstFit, found: [candidate], before: null },
       subject: 'first-fit',
@@ -674,8 +749,8 @@ const refusals: { readonly [Code in RefusalCode]: readonly Case[] } = {
         kind: 'codingRevised',
         transcript: 'harbour',
         coding: 'on-harbour',
-        from: asItWas,
-        to: { ...asItWas, theme: 'work' },
+        from: { ...asItWas, known: knownThen },
+        to: { ...asItWas, theme: 'work', known: knownThen },
       },
       subject: 'work',
     },
@@ -837,6 +912,14 @@ const refusals: { readonly [Code in RefusalCode]: readonly Case[] } = {
         to: { ...asItWas, span: span(11, 61) },
       },
       subject: 'Harbour',
+    },
+    {
+      what: 'a draw past the end',
+      edit: {
+        kind: 'drawMade',
+        draw: draw('d', { places: [{ transcript: 'mill', span: span(0, 41) }] }),
+      },
+      subject: 'Mill',
     },
     {
       what: 'a none past the end',
@@ -1137,11 +1220,42 @@ const refusals: { readonly [Code in RefusalCode]: readonly Case[] } = {
       subject: 'gone',
     },
   ],
+  'fitted already': [
+    {
+      what: 'a cold sample after the first fit',
+      edit: { kind: 'drawMade', draw: cold },
+      subject: 'cold sample',
+    },
+  ],
+  'unknown draw': [
+    {
+      what: 'to take away a draw that is not there',
+      edit: { kind: 'drawRemoved', draw: draw('gone') },
+      subject: 'random draw gone',
+    },
+    {
+      what: 'to score a draw that is no cold sample',
+      before: drawn,
+      edit: { kind: 'drawScored', draw: 'any', from: null, to: null },
+      subject: 'any',
+    },
+  ],
   'unknown fit': [
     {
       what: 'to erase one twice',
       edit: { kind: 'fitsForgotten', fits: ['first-fit', 'first-fit'] },
       subject: 'first-fit',
+    },
+    {
+      what: 'to score a cold sample against a fit that is not there',
+      before: drawnCold,
+      edit: {
+        kind: 'drawScored',
+        draw: 'cold',
+        from: null,
+        to: { fit: 'gone', reader: 'reader-ada', at: '' },
+      },
+      subject: 'gone',
     },
     {
       what: 'to show a fit that is not there',
@@ -1443,6 +1557,25 @@ const refusals: { readonly [Code in RefusalCode]: readonly Case[] } = {
         to: { fileName: 'harbour.txt', details: [], facts: { collected: 'May' } },
       },
       subject: 'May',
+    },
+    {
+      what: 'to move a coding to another theme without what is known about that one',
+      edit: {
+        kind: 'codingRevised',
+        transcript: 'harbour',
+        coding: 'on-harbour',
+        from: asItWas,
+        to: { ...asItWas, theme: 'silence' },
+      },
+      subject: 'on-harbour',
+    },
+    {
+      what: 'a draw that is scored from the start',
+      edit: {
+        kind: 'drawMade',
+        draw: draw('d', { scored: { fit: 'first-fit', reader: 'reader-ada', at: '' } }),
+      },
+      subject: 'random draw d',
     },
     {
       what: 'evidence that JSON would not bring back',

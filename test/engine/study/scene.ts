@@ -2,6 +2,7 @@ import {
   emptyDefinition,
   emptyStudy,
   type Coding,
+  type Draw,
   type Edit,
   type Fit,
   type Memo,
@@ -154,6 +155,25 @@ export function none(id: string, changes: Partial<None> = {}): None {
 
 export function memo(id: string, subject: MemoSubject = { kind: 'study' }): Memo {
   return { id, subject, text: 'why', reader: 'reader-ada', at: '2031-04-05T06:07:08.000Z' };
+}
+
+export function draw(id: string, changes: Partial<Draw> = {}): Draw {
+  return {
+    id,
+    kind: 'random draw',
+    name: `random draw ${id}`,
+    seed: 7,
+    count: 2,
+    unreadOnly: true,
+    places: [
+      { transcript: 'harbour', span: span(41, 60) },
+      { transcript: 'mill', span: span(0, 12) },
+    ],
+    reader: 'reader-ada',
+    at: '2031-04-05T06:07:08.000Z',
+    scored: null,
+    ...changes,
+  };
 }
 
 export const started = after(emptyStudy, {

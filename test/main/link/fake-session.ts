@@ -76,4 +76,5 @@ export const overview: Overview = {
   undo: null,
   redo: null,
   reader: { id: 'r1', name: 'Ada' },
+  coldSample: null,
 };

@@ -146,6 +146,7 @@ export function fakeGather(options: FakeOptions = {}): FakeLink {
       undo: null,
       redo: null,
       reader: { id: 'reader-1', name: 'Ada' },
+      coldSample: null,
     };
   }
 

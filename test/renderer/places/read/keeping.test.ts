@@ -5,7 +5,7 @@ import {
   newlyDecided,
   Positions,
 } from '../../../../renderer/places/read/kept-transcripts.ts';
-import { keepStopped, stoppedAt } from '../../../../renderer/places/read/stopped.ts';
+import { stoppedAt, takenUp } from '../../../../renderer/places/read/stopped.ts';
 import { offersFor } from '../../../../renderer/places/read/theme-offers.ts';
 import { WordSelection } from '../../../../renderer/places/read/word-selection.ts';
 
@@ -23,6 +23,7 @@ const passage = (start: number, none: boolean): PassageView => ({
   suggestions: [],
   strongest: [],
   codings: [],
+  heldBack: false,
   none: none ? { id: 'n', reader: 'R', at: '' } : null,
   memos: [],
 });
@@ -38,43 +39,51 @@ const transcript = (id: string, passages: readonly PassageView[] = []): Transcri
   memos: [],
 });
 
-function memory(): Pick<Storage, 'getItem' | 'setItem'> & { kept: () => string } {
-  let kept: string | null = null;
-  return {
-    getItem: () => kept,
-    setItem: (_key, value) => void (kept = value),
-    kept: () => kept ?? '',
-  };
-}
-
 describe('where a reader stopped', () => {
-  const stopped = {
-    kind: 'random draw',
+  const orders = {
+    transcripts: [{ id: 'harbour' }, { id: 'mill' }],
+    themes: [{ id: 'sea' }, { id: 'work' }],
+  };
+  const request = {
+    kind: 'one theme',
+    theme: 'work',
+    transcript: null,
     unreadOnly: true,
     count: 60,
     seed: 7,
-    theme: -1,
-    only: -1,
-    transcript: 3,
-    start: 812,
   } as const;
+  const now = { fitted: true, coldSample: null };
 
-  it('is found again', () => {
-    const storage = memory();
-    keepStopped(storage, 'study', stopped);
-    expect(stoppedAt(storage, 'study')).toEqual(stopped);
+  it('is found again, list and place', () => {
+    const kept = stoppedAt(request, { transcript: 'mill', start: 812 }, orders);
+    expect(takenUp(kept, orders, now)).toEqual({
+      request,
+      at: { transcript: 'mill', start: 812 },
+    });
   });
 
-  it('is kept in numbers alone', () => {
-    const storage = memory();
-    keepStopped(storage, 'study', stopped);
-    expect(storage.kept()).toMatch(/^[-\d ]+$/);
+  it('is kept without a word of the study', () => {
+    const sought = { text: 'my sister', mode: 'phrase', within: 5, order: 'place' } as const;
+    const kept = stoppedAt(
+      { ...request, kind: 'keyword in context', search: sought },
+      { transcript: 'mill', start: 812 },
+      orders,
+    );
+    const { kind, unreadOnly, ...numbers } = kept;
+    expect([kind, unreadOnly]).toEqual(['in order', true]);
+    expect(Object.values(numbers).every(Number.isInteger)).toBe(true);
   });
 
-  it('is nowhere where what was kept makes no sense', () => {
-    for (const kept of ['', '1 2 3', '99 0 0 0 0 0 0 0', 'x 0 0 0 0 0 0 0']) {
-      expect(stoppedAt({ getItem: () => kept }, 'study')).toBeNull();
-    }
+  it('leaves the list out where it cannot be had any more', () => {
+    const at = { transcript: 'mill', start: 0 };
+    const gone = { ...orders, themes: [] };
+    expect(takenUp(stoppedAt(request, at, orders), gone, now).request).toBeNull();
+    const strong = stoppedAt({ ...request, kind: 'strongest first' }, at, orders);
+    expect(takenUp(strong, orders, { ...now, fitted: false }).request).toBeNull();
+    expect(takenUp(strong, orders, now).request).not.toBeNull();
+    const cold = stoppedAt({ ...request, kind: 'cold sample' }, at, orders);
+    expect(takenUp(cold, orders, now).request).toBeNull();
+    expect(takenUp(cold, { transcripts: [], themes: [] }, now).at.transcript).toBe('');
   });
 });
 
@@ -131,7 +140,7 @@ describe('themes to choose from', () => {
   const themes = [theme('a', 'School week'), theme('b', 'The week'), theme('c', 'Weather')];
 
   it('begin with the strongest here and keep their places in the codebook', () => {
-    const strongest = [{ theme: 'c', themeName: '', strength: 0.4, carriedBy: [] }];
+    const strongest = [{ theme: 'c', themeName: '', strength: 0.4, carriedBy: [], alike: null }];
     const offers = offersFor(themes, strongest, '');
     expect(offers.map((offer) => [offer.theme.id, offer.place])).toEqual([
       ['c', 3],

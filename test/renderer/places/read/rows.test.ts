@@ -25,6 +25,7 @@ const passage = (number: number, segments: readonly Span[]): PassageView => ({
   suggestions: [],
   strongest: [],
   codings: [],
+  heldBack: false,
   none: null,
   memos: [],
 });

@@ -12,6 +12,8 @@ const coding = (id: string, start: number, end: number): CodingView => ({
   reader: 'R',
   at: '',
   strengthAtDecision: null,
+  strengthWithout: null,
+  together: null,
 });
 
 const text = 'Shona took me in the end,\n  in the small boat 👩‍👩‍👧.';
