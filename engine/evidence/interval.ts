@@ -19,8 +19,7 @@ export function wilson(count: number, of: number): Interval {
   const squared = z * z;
   const scale = 1 + squared / of;
   const middle = (share + squared / (2 * of)) / scale;
-  const reach =
-    (z / scale) * Math.sqrt((share * (1 - share)) / of + squared / (4 * of * of));
+  const reach = (z / scale) * Math.sqrt((share * (1 - share)) / of + squared / (4 * of * of));
   return {
     low: count === 0 ? 0 : Math.max(0, middle - reach),
     high: count === of ? 1 : Math.min(1, middle + reach),

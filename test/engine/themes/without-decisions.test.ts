@@ -115,14 +115,22 @@ describe('what enters no prior', () => {
   const span = { start: 0, end: 70 };
   const made = coding('c', { transcript: 'one', span, theme: 'sea' });
   const there = new Map([['one', { ...harbour, id: 'one' }]]);
-  const coded: Study = { ...study, transcripts: there, codings: new Map([['one', new Map([['c', made]])]]) };
+  const coded: Study = {
+    ...study,
+    transcripts: there,
+    codings: new Map([['one', new Map([['c', made]])]]),
+  };
   const cold = draw('cold', { kind: 'cold sample', places: [{ transcript: 'one', span }] });
 
   test('is a mark that no theme applies', () => {
     const marked = none('n', { transcript: 'one', span });
-    expect(decisions({ ...study, transcripts: there, nones: new Map([['one', new Map([['n', marked]])]]) })).toEqual(
-      [],
-    );
+    expect(
+      decisions({
+        ...study,
+        transcripts: there,
+        nones: new Map([['one', new Map([['n', marked]])]]),
+      }),
+    ).toEqual([]);
   });
 
   test('is a decision in a cold sample, and nothing is suggested there, until it is scored', () => {
