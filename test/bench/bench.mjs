@@ -8,6 +8,7 @@ import { build } from 'vite';
 const benches = {
   engine: 'speed and quality of fits beside scikit-learn, and fits of a million words',
   decisions: 'what each kind of decision does on top of a fit, and what it leaves alone',
+  search: 'keyword in context over a generated study of a million words',
 };
 
 const here = dirname(fileURLToPath(import.meta.url));

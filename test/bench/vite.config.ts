@@ -18,6 +18,7 @@ export default defineConfig({
       input: {
         engine: join(top, 'test', 'bench', 'engine.ts'),
         decisions: join(top, 'test', 'bench', 'decisions.ts'),
+        search: join(top, 'test', 'bench', 'search.ts'),
         large: join(top, 'test', 'bench', 'large.ts'),
         ...Object.fromEntries(
           workers.map((name) => [name, join(top, 'main', 'work', `${name}.ts`)]),

@@ -417,6 +417,50 @@ export const scenes: readonly Scene[] = [
     },
   },
   {
+    name: 'read-keys-changing',
+    reach: async (page) => {
+      await button(page, 'Change keys').click();
+      await page.getByLabel('Key for: next passage').fill('k');
+      await page.keyboard.press('Tab');
+      await page.getByRole('alert').waitFor();
+    },
+  },
+  {
+    name: 'read-search',
+    reach: async (page) => {
+      await closeDialog(page);
+      await page.keyboard.press('s');
+      await page.getByLabel('Words').fill('boat');
+      await page.getByText(/places? in/u).waitFor();
+    },
+  },
+  {
+    name: 'read-keyword-list',
+    reach: async (page) => {
+      await button(page, 'Read these passages').click();
+      await page.getByRole('dialog').waitFor({ state: 'detached' });
+      await button(page, 'Code the 1 opened').waitFor();
+    },
+  },
+  {
+    name: 'read-code-opened',
+    reach: async (page) => {
+      await button(page, 'Code the 1 opened').click();
+      await page.getByRole('dialog').waitFor();
+    },
+  },
+  {
+    name: 'read-decisions-say',
+    reach: async (page) => {
+      await closeDialog(page);
+      await page
+        .getByRole('complementary')
+        .getByRole('button', { name: 'More', exact: true })
+        .click();
+      await page.getByRole('dialog', { name: 'What decisions say' }).waitFor();
+    },
+  },
+  {
     name: 'report',
     reach: async (page) => {
       await closeDialog(page);

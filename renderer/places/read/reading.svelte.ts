@@ -1,6 +1,7 @@
 import { tick } from 'svelte';
 import type {
   CodeRequest,
+  DrawRequest,
   PassagePlace,
   PassageView,
   ReadingList,
@@ -49,6 +50,8 @@ export class Reading {
   #names = $state.raw<readonly { id: string; name: string }[]>([]);
   #themes = $state.raw<readonly ThemeRowView[]>([]);
   #ready = $state(false);
+  /** Places of a keyword list that were in hand: only these can be coded together. */
+  #opened = $state.raw<readonly PassagePlace[]>([]);
 
   #asked: readonly { readonly id: string; readonly view: Promise<TranscriptView | undefined> }[] =
     [];
@@ -116,9 +119,23 @@ export class Reading {
     return this.#request.kind === 'in order';
   }
 
-  /** Whether suggestions are in sight. */
+  /** Whether suggestions are in sight: never in a cold sample that was not scored yet. */
   get suggesting(): boolean {
-    return this.#preferences.suggestions && this.#study.overview?.fitted === true;
+    return (
+      this.#preferences.suggestions &&
+      this.#study.overview?.fitted === true &&
+      this.passage?.heldBack !== true
+    );
+  }
+
+  /** Whether passages of the list can be coded together: it was found by words. */
+  get findsWords(): boolean {
+    return this.#request.kind === 'keyword in context';
+  }
+
+  /** Passages of a keyword list that were opened, in the order in which they were. */
+  get opened(): readonly PassagePlace[] {
+    return this.#opened;
   }
 
   /** The theme that a decision would be about: chosen by hand, or the list's, or the strongest. */
@@ -161,6 +178,7 @@ export class Reading {
     const list = await this.#study.ask('readingList', request);
     this.#ready = true;
     if (list === undefined) return false;
+    if (list.name !== this.#list?.name) this.#opened = [];
     this.#request = request;
     this.#list = list;
     this.#decided = list.decided;
@@ -173,6 +191,15 @@ export class Reading {
           );
     this.#to(list.places[Math.max(found, 0)] ?? null, null);
     return true;
+  }
+
+  /** Draws passages, so that the trail knows which, and reads them. */
+  async draw(request: DrawRequest): Promise<boolean> {
+    if (this.#study.overview?.readOnly !== true) {
+      const drawn = await this.#while(() => this.#study.decide('drawSample', request), null);
+      if (!drawn) return false;
+    }
+    return this.read({ ...firstRequest, ...request });
   }
 
   /** The list again, as it is now; the passage in hand stays. */
@@ -300,6 +327,37 @@ export class Reading {
     await this.#changeHere(() => this.#study.decide('removeCoding', { transcript, coding }));
   }
 
+  /** Gives a coding of the passage in hand another theme. */
+  async moveCoding(coding: string, theme: string): Promise<boolean> {
+    const transcript = this.#place?.transcript;
+    if (transcript === undefined) return false;
+    return this.#changeHere(() =>
+      this.#study.decide('moveCoding', { transcript, coding, theme, ...this.under }),
+    );
+  }
+
+  /** Codes every passage of the keyword list that was opened. */
+  async codeOpened(theme: string): Promise<boolean> {
+    const places = this.#opened;
+    if (places.length === 0) return false;
+    const drawnBy = this.#list?.name ?? pointedTo;
+    const done = await this.#changeHere(() =>
+      this.#study.decide('codeTogether', {
+        places,
+        theme,
+        drawnBy,
+        seenSuggestion: this.suggesting,
+      }),
+    );
+    if (done) {
+      this.#transcripts = this.#transcripts.outdated();
+      this.#asked = [];
+      if (this.#place !== null) void this.#load(this.#place.transcript, true);
+      this.#opened = [];
+    }
+    return done;
+  }
+
   async clearNone(none: string): Promise<void> {
     const transcript = this.#place?.transcript;
     if (transcript === undefined) return;
@@ -386,6 +444,13 @@ export class Reading {
       return;
     }
     const position = this.#positions.of(place);
+    if (
+      position >= 0 &&
+      this.findsWords &&
+      !this.#opened.some((one) => keyOf(one) === keyOf(place))
+    ) {
+      this.#opened = [...this.#opened, place];
+    }
     if (position >= 0) this.#index = position;
     else this.#cameBy ??= pointedTo;
     void this.#load(place.transcript).then(() => this.#loadAhead());
