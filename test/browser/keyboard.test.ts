@@ -40,7 +40,7 @@ const focused = (): Promise<string> =>
     const element = document.activeElement;
     if (element === null || element === document.body) return '';
     const label = element.getAttribute('aria-label') ?? (element as HTMLElement).innerText;
-    return label.replace(/\s+/gu, ' ').trim();
+    return label.replace(/\s+/gu, ' ').trim().slice(0, 80);
   });
 
 /** Goes on with Tab until a control has the focus; fails where none of that name can be reached. */
@@ -88,7 +88,7 @@ it('finds themes', async () => {
 });
 
 it('reads and decides, with the keys that a person chose', async () => {
-  await choose(/^Read( |$)/u);
+  await choose(/^Read( |$)/u, 'Shift+Tab');
   await page.locator('[role=article][aria-current=true]').waitFor();
   await page.locator('[role=article][aria-current=true]:focus').waitFor();
   await page.keyboard.press('?');
