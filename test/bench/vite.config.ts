@@ -3,7 +3,7 @@ import { defineConfig } from 'vite';
 import { assemblyscript } from '../../.config/assemblyscript.ts';
 
 const top = join(import.meta.dirname, '..', '..');
-const workers = ['fit.worker', 'pool.worker', 'evidence.worker'];
+const workers = ['fit.worker', 'pool.worker', 'evidence.worker', 'prepare.worker'];
 
 /** Benches are bundled as the app is, so that the same code is measured. */
 export default defineConfig({

@@ -131,7 +131,8 @@ describe('looking for words', () => {
     const unread = await table.ask('readingList', { ...request, unreadOnly: true });
     expect(unread.places).toEqual(list.places.slice(1));
     await table.ask('undo', null);
-    const { search: _none, ...without } = request;
+    const { search: sought, ...without } = request;
+    expect(sought).toEqual(search);
     expect(await table.refused('readingList', without)).toBe('nothing to search');
   });
 
