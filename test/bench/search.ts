@@ -56,7 +56,9 @@ await ask('addTranscripts', {
 const overview = await ask('overview', null);
 say(`${overview?.words} words, ${overview?.passages} passages, ${overview?.transcripts} transcripts`);
 
-const [, common, rare] = /P: (\S+)(?:.*?)(\S{9})\b/u.exec(transcripts[0].text) ?? [];
+// The commonest of all, and one of the first answer.
+const common = 'the';
+const rare = /P: .*?(\S{9})\b/u.exec(transcripts[0].text)?.[1] ?? 'the';
 const base = { mode: 'words', within: 5, order: 'place' } as const;
 const questions: readonly [string, SearchRequest][] = [
   ['a common word', { ...base, text: common }],
@@ -64,7 +66,7 @@ const questions: readonly [string, SearchRequest][] = [
   ['a common word, by the words after', { ...base, text: common, order: 'right' }],
   ['a rare word', { ...base, text: rare }],
   ['a beginning', { ...base, text: `${rare.slice(0, 3)}*` }],
-  ['a phrase of two common words', { ...base, text: `${common} the`, mode: 'phrase' }],
+  ['a phrase of two common words', { ...base, text: `${common} and`, mode: 'phrase' }],
   ['two words near each other', { ...base, text: `${common} ${rare}`, mode: 'near' }],
 ];
 const first = await milliseconds(() => ask('search', { ...questions[0][1], from: 0, count: 200 }));
@@ -75,7 +77,7 @@ for (const [what, request] of questions) {
   let lines = 0;
   for (let round = 0; round < 7; round++) {
     // Another question in between, so that nothing is answered from what was kept.
-    await ask('search', { ...base, text: `zz${round}`, from: 0, count: 200 });
+    await ask('search', { ...base, text: `nobody${round}`, from: 0, count: 200 });
     times.push(
       await milliseconds(async () => {
         lines = (await ask('search', { ...request, from: 0, count: 200 })).lines;
@@ -87,7 +89,9 @@ for (const [what, request] of questions) {
 }
 say(`\nThe first search, which makes the index: ${first.toFixed(0)} ms\n`);
 say(table(['search', 'lines', 'median, ms', 'slowest, ms'], rows));
-say(`\nFind (Ctrl K): ${(await milliseconds(() => ask('find', { text: rare }))).toFixed(0)} ms`);
+await ask('find', { text: rare });
+const again = await milliseconds(() => ask('find', { text: common }));
+say(`\nFind (Ctrl K), once words are counted: ${again.toFixed(0)} ms`);
 say(`Memory of the process: ${Math.round(process.memoryUsage().rss / 2 ** 20)} MB`);
 keep('search', figures);
 await session.close();
