@@ -19,8 +19,11 @@ export interface Candidate {
   /** The label as lines are counted by: small letters, single spaces. */
   readonly key: string;
   readonly shape: LabelShape;
-  /** A colon behind the label, a time on the label's own line, or a tab behind the label. */
-  readonly layout: 'colon' | 'clock' | 'tab';
+  /**
+   * A colon behind the label, a time on the label's own line, a tab behind it; a full stop ("Q." and
+   * "A."), a dash, or the label alone in a heading.
+   */
+  readonly layout: 'colon' | 'clock' | 'tab' | 'stop' | 'dash' | 'heading';
   readonly bold: boolean;
   readonly startTime: number | null;
   readonly endTime: number | null;
@@ -30,7 +33,7 @@ export interface Candidate {
 
 const bold = String.raw`(?:\*\*|__|\*)`;
 const clock = String.raw`[\[({<]?\s?(${clockPattern})(?:\s?(?:-->|[-–—])\s?(${clockPattern}))?\s?[\])}>]?`;
-const labelText = String.raw`\p{L}[\p{L}\p{M}\p{N} \u00a0.'’\-_/&#,]{0,47}?(?:\s?\([^()\n:]{1,30}\))?`;
+const labelText = String.raw`\p{L}[\p{L}\p{M}\p{N} \u00a0.'’\-_/&#,]{0,119}?(?:\s?\([^()\n:]{1,60}\))?`;
 
 const opening = new RegExp(
   String.raw`^(?:[-–—•>]\s+|\d{1,4}(?:[.)]\s+|\t+))?(${bold}?)(?:${clock}\s*[-–—:]?\s*)?(${bold}?)`,
@@ -42,11 +45,14 @@ const beforeColon = new RegExp(
 );
 const beforeClock = new RegExp(String.raw`^(${labelText})${bold}?[\s,–-]+${clock}${bold}?$`, 'u');
 const alone = new RegExp(String.raw`^(${labelText})${bold}?$`, 'u');
+const beforeStop = /^([QFAR]\d{0,3})\.[ \t\u00a0]+(?=\S)/u;
+const beforeDash = new RegExp(String.raw`^(${labelText})${bold}?\s+[-–—]\s+(?=\S)`, 'u');
+const inHeading = new RegExp(String.raw`^#{1,6}\s+${bold}?(${labelText})${bold}?:?\s*#*$`, 'u');
 const beforeTab = new RegExp(String.raw`^(${labelText})\t+(?=\S)`, 'u');
 const clockBehind = new RegExp(String.raw`^\s*[\[({]${clock}[\])}]?`, 'u');
 const clockAlone = new RegExp(String.raw`^${bold}?${clock}${bold}?$`, 'u');
 
-const longestOpening = 140;
+const longestOpening = 260;
 
 /** The time that is all there is on a line, in milliseconds, or null. */
 export function timeAlone(line: string): number | null {
@@ -123,6 +129,12 @@ function candidateOf(text: string, line: Line, index: number): Candidate | null 
   }
   const tab = beforeTab.exec(rest);
   if (tab !== null) return make(tab[1]!, 'tab', at + tab[0].length, undefined, undefined);
+  const stop = beforeStop.exec(rest);
+  if (stop !== null) return make(stop[1]!, 'stop', at + stop[0].length, undefined, undefined);
+  const heading = whole ? inHeading.exec(beginning) : null;
+  if (heading !== null) return make(heading[1]!, 'heading', line.end, undefined, undefined);
+  const dash = beforeDash.exec(rest);
+  if (dash !== null) return make(dash[1]!, 'dash', at + dash[0].length, undefined, undefined);
   return null;
 }
 
@@ -131,7 +143,7 @@ const nameWord =
   /^(?:\p{Lu}[\p{L}\p{M}'’.-]*|[dlo]['’]\p{Lu}[\p{L}\p{M}-]*|\p{Lo}[\p{L}\p{M}]{0,7})$/u;
 const joiner =
   /^(?:de|da|do|dos|das|del|della|di|du|des|la|le|el|al|bin|ibn|van|von|vom|zu|der|den|ter|ten|of|and|und|et|y|e|og|och|en|&|\/|\d{1,4}|#\d{1,4}|\p{Lu}\d{0,3})$/u;
-const mostWords = 5;
+const mostWords = 16;
 
 /** What a label looks like, or null for what is no label whatever stands around it. */
 function shapeOf(label: string): LabelShape | null {
@@ -226,6 +238,16 @@ function mainLayout(found: readonly Candidate[]): Candidate['layout'] | null {
   const tabs = weight('tab', 4);
   if (clocks > 0 && clocks >= colons && clocks >= tabs) return 'clock';
   if (tabs > colons) return 'tab';
+  if (colons === 0 && tabs === 0) {
+    // Marks that talk has too: only where two labels or more come back with them, line after line.
+    const rare = (['stop', 'heading', 'dash'] as const).find((layout) => {
+      const back = groupsOf(found.filter((one) => one.layout === layout)).filter(
+        ({ lines, shape }) => lines.length > 1 || shape === 'role',
+      );
+      return back.length > 1 && back.reduce((sum, { lines }) => sum + lines.length, 0) >= 4;
+    });
+    if (rare !== undefined) return rare;
+  }
   return found.some((candidate) => candidate.layout === 'colon') ? 'colon' : null;
 }
 

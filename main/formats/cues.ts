@@ -42,7 +42,7 @@ const longestParagraph = 2_400;
 export function layOutCues(cues: readonly Cue[], details: readonly Detail[]): LaidOut {
   let text = '';
   const turns: Turn[] = [];
-  for (const pieces of joinPieces(piecesOf(cues))) {
+  for (const pieces of joinPieces(piecesOf(withoutRepeats(cues)))) {
     const { speaker, startTime } = pieces[0]!;
     if (text !== '') text += '\n\n';
     if (speaker !== null) text += `${speaker}: `;
@@ -52,6 +52,27 @@ export function layOutCues(cues: readonly Cue[], details: readonly Detail[]): La
     turns.push({ start, end: text.length, speaker, startTime, endTime });
   }
   return { text, details, turns };
+}
+
+const rollingShare = 0.3;
+
+/**
+ * Rolling captions show the last lines of one cue again at the head of the next. Where many cues do,
+ * what is shown again is dropped; somebody who says "Yes" twice elsewhere still said it twice.
+ */
+function withoutRepeats(cues: readonly Cue[]): readonly Cue[] {
+  const shown = cues.map(({ lines }) => lines.filter(({ text }) => tidy(text) !== ''));
+  const repeats = shown.map((lines, index) => {
+    const before = index === 0 ? [] : shown[index - 1]!;
+    for (let count = Math.min(lines.length, before.length); count > 0; count--) {
+      const tail = before.slice(-count);
+      if (tail.every(({ text }, at) => tidy(text) === tidy(lines[at]!.text))) return count;
+    }
+    return 0;
+  });
+  const repeating = repeats.filter((count) => count > 0).length;
+  if (cues.length < 4 || repeating < rollingShare * cues.length) return cues;
+  return cues.map((cue, index) => ({ ...cue, lines: shown[index]!.slice(repeats[index]) }));
 }
 
 export interface LaidOut {

@@ -1,6 +1,6 @@
 export { decode } from './decode.ts';
 export { mostFileMegabytes } from './limits.ts';
-export { readSource, readTranscript } from './read-transcript.ts';
+export { readNote, readSource, readTranscript } from './read-transcript.ts';
 export type {
   DocumentFormat,
   Format,

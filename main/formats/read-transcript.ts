@@ -26,6 +26,15 @@ import { isVtt, parseVtt } from './vtt.ts';
  * it is; its name is asked only where a text could be anything.
  */
 export async function readSource(bytes: Uint8Array, fileName: string): Promise<ReadSource> {
+  const read = await readNote(bytes, fileName);
+  if (read.ok && read.kind === 'transcript' && read.value.turns.length === 0) {
+    return { ok: false, code: 'no speech', format: read.value.format };
+  }
+  return read;
+}
+
+/** The same for what is kept beside transcripts: it need not hold speech. */
+export async function readNote(bytes: Uint8Array, fileName: string): Promise<ReadSource> {
   if (bytes.length === 0) return { ok: false, code: 'empty file' };
   if (bytes.length > mostFileMegabytes * 1_000_000) {
     return tooLarge(bytes.length, mostFileMegabytes);
@@ -120,6 +129,5 @@ function spoken(
   format: DocumentFormat,
   file: Omit<ReadFile, 'format' | 'notes'> & { readonly notes?: ReadFile['notes'] },
 ): ReadSource {
-  if (file.turns.length === 0) return { ok: false, code: 'no speech', format };
   return { ok: true, kind: 'transcript', value: { notes: [], format, ...file } };
 }

@@ -1,3 +1,4 @@
+import { strToU8 } from 'fflate';
 import { describe, expect, test } from 'vitest';
 import { readTranscript } from '../../../main/formats/index.ts';
 import { isSrt } from '../../../main/formats/srt.ts';
@@ -164,5 +165,25 @@ describe('SubRip', () => {
     const text =
       '1\n00:00:01,000 --> 00:00:02,000\nRuth: one\n\ntwo\n\n2\n00:00:03,000 --> 00:00:04,000\nTom: three';
     expect((await read(text, 'a.srt')).text).toBe('Ruth: one two\n\nTom: three');
+  });
+});
+
+describe('rolling captions', () => {
+  test('say once what the next cue shows again', async () => {
+    const lines = ['it was a long winter', 'and nobody came', 'for eleven days', 'then the boat'];
+    const cues = lines.map(
+      (line, index) =>
+        `00:0${index}.000 --> 00:0${index + 1}.000\n${index === 0 ? '' : `${lines[index - 1]}\n`}${line}\n`,
+    );
+    const result = await readTranscript(strToU8(`WEBVTT\n\n${cues.join('\n')}`), 'a.vtt');
+    expect(result.ok && result.value.text).toBe(lines.join(' '));
+  });
+
+  test('elsewhere what is said twice stands twice', async () => {
+    const cues = ['Yes.', 'Yes.', 'No.', 'So it was.', 'Then we left.'].map(
+      (line, index) => `00:0${index}.000 --> 00:0${index + 1}.000\n${line}\n`,
+    );
+    const result = await readTranscript(strToU8(`WEBVTT\n\n${cues.join('\n')}`), 'a.vtt');
+    expect(result.ok && result.value.text).toBe('Yes. Yes. No. So it was. Then we left.');
   });
 });
