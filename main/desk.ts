@@ -7,6 +7,7 @@ import {
   type BlobRef,
   type Edit,
   type Entry,
+  type FieldNoteId,
   type FitId,
   type HistoryStep,
   type Refusal,
@@ -158,6 +159,19 @@ export class Desk {
     const known = this.#textHashes.get(sequence) ?? hashOf(this.store.readBlob(sequence));
     this.#textHashes.set(sequence, known);
     return known;
+  }
+
+  /** The text of a field note. */
+  noteText(note: FieldNoteId): string {
+    const kept = this.#study.fieldNotes.get(note);
+    if (kept === undefined)
+      throw new Error(`Desk.noteText: ${note} is no field note of this study`);
+    const { sequence } = kept.text;
+    const known = this.#texts.get(sequence);
+    if (known !== undefined) return known;
+    const text = Buffer.from(this.store.readBlob(sequence)).toString('utf8');
+    this.#texts.set(sequence, text);
+    return text;
   }
 
   /** A transcript as the engine takes it in. */

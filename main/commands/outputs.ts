@@ -1,6 +1,6 @@
 import type { FitDone } from '../../engine/themes/index.ts';
 import { transcriptsInOrder, type Desk } from '../desk.ts';
-import type { SkippedFile } from '../gather/gather.ts';
+import type { SkippedFile } from '../gather/source-file.ts';
 import { codedExcerpts } from '../reports/coded-excerpts.ts';
 import { excerptsCsv } from '../reports/excerpts-csv.ts';
 import { fitJson } from '../reports/fit-json.ts';

@@ -4,18 +4,22 @@ import { basename, dirname, resolve } from 'node:path';
 import { compareCodeUnits } from '../../engine/numbers/index.ts';
 import { applyPlan, applySettings } from '../decisions.ts';
 import { Desk } from '../desk.ts';
+import { guessPlan } from '../gather/answers.ts';
 import { attributeEdits, readAttributeTable } from '../gather/attributes.ts';
 import { findFiles, type FoundFile } from '../gather/find-files.ts';
-import { gather, labelsNotFound, type SkippedFile } from '../gather/gather.ts';
+import { gather, labelsNotFound } from '../gather/gather.ts';
+import type { SkippedFile } from '../gather/source-file.ts';
 import { isInside } from '../is-inside.ts';
 import { derivedIds, hashOf } from '../ids.ts';
 import { emptyPlan } from '../plan.ts';
-import { decode } from '../formats/index.ts';
+import { decode, readCsv } from '../formats/index.ts';
 import { createStudyFile } from '../project/index.ts';
 import { sentenceFor, sentenceForSkipped, type FileRefusal } from '../sentences/sentences.ts';
 import { BufferedStore } from '../store.ts';
 import { refuse } from './refuse.ts';
 import { fitWithProgress } from './fitting.ts';
+import { gatherTables } from './answers.ts';
+import { keepFieldNotes, takeInCodebook } from './beside.ts';
 import { readOptions, usageStop, wholeNumber } from './options.ts';
 import { outputFiles } from './outputs.ts';
 import { readPlan } from './plan-file.ts';
@@ -24,7 +28,9 @@ import { checkFolder, stageFiles } from './write-files.ts';
 
 export const themeUsage =
   'understory theme FILES OR FOLDERS… --out DIR [--themes 12] [--seed 1] [--plan plan.json] ' +
-  '[--save study.understory] [--interviewer NAME]… [--attributes table.csv] [--no-guard] [--strict]';
+  '[--save study.understory] [--interviewer NAME]… [--attributes table.csv] ' +
+  '[--text COLUMN]… [--participant COLUMN] [--attribute COLUMN]… [--sheet NAME] ' +
+  '[--codebook FILE] [--by-hand] [--notes FILE OR FOLDER]… [--no-guard] [--strict]';
 
 const options = {
   themes: { type: 'string' },
@@ -34,6 +40,13 @@ const options = {
   save: { type: 'string' },
   interviewer: { type: 'string', multiple: true },
   attributes: { type: 'string' },
+  text: { type: 'string', multiple: true },
+  participant: { type: 'string' },
+  attribute: { type: 'string', multiple: true },
+  sheet: { type: 'string' },
+  codebook: { type: 'string' },
+  'by-hand': { type: 'boolean' },
+  notes: { type: 'string', multiple: true },
   'no-guard': { type: 'boolean' },
   strict: { type: 'boolean' },
 } as const;
@@ -62,8 +75,8 @@ export async function theme(words: readonly string[], terminal: Terminal): Promi
   await checkFolder(out);
   const saveTo = values.save === undefined ? null : resolve(terminal.folder, values.save);
   if (saveTo !== null) await checkSave(saveTo, out);
-  const given = [values.plan, values.save].flatMap((path) =>
-    path === undefined ? [] : [resolve(terminal.folder, path)],
+  const given = [values.plan, values.save, values.codebook, ...(values.notes ?? [])].flatMap(
+    (path) => (path === undefined ? [] : [resolve(terminal.folder, path)]),
   );
   // What an earlier run left in the folder to write to is no input of this one.
   const { found, missed } = await findFiles(positionals, terminal.folder, [out, ...given]);
@@ -80,7 +93,7 @@ export async function theme(words: readonly string[], terminal: Terminal): Promi
   const desk = new Desk(store, {
     by: 'command line',
     now: terminal.now,
-    mintId: derivedIds(['theme', inputs, plan, interviewers, themes, seed]),
+    mintId: derivedIds(['theme', inputs, plan, interviewers, themes, seed, ...moreAsked(values)]),
   });
   const name = saveTo === null ? 'Study' : studyName(saveTo);
   refuse(
@@ -94,19 +107,24 @@ export async function theme(words: readonly string[], terminal: Terminal): Promi
   refuse(applySettings(desk, { ...plan.settings, ...asked }));
 
   const line = new ProgressLine(terminal);
-  const gathered = await gather(desk, files, interviewers, (done) => {
-    stopIfAsked(terminal);
-    line.show(`Reading: ${done + 1} of ${files.length} files`, (done + 1) / files.length);
+  const gathered = await gather(desk, files, {
+    interviewers,
+    onProgress: (done) => {
+      stopIfAsked(terminal);
+      line.show(`Reading: ${done + 1} of ${files.length} files`, (done + 1) / files.length);
+    },
   });
   line.end();
   if (!gathered.ok) throw new Stop(sentenceFor(gathered));
-  skipped.push(...gathered.value.skipped);
+  const answers = gatherTables(desk, gathered.value.tables, values, terminal);
+  skipped.push(...gathered.value.skipped, ...answers.skipped);
   for (const { file, refusal } of skipped) {
     terminal.err(`Skipped ${file}: ${sentenceForSkipped(refusal as FileRefusal)}\n`);
   }
-  if (gathered.value.transcripts.length === 0) {
+  const count = gathered.value.transcripts.length + answers.transcripts.length;
+  if (count === 0) {
     throw new Stop(
-      'No transcript could be read, so nothing was written; give files in .txt, .md, .docx, .vtt or .srt.',
+      'No transcript could be read, so nothing was written; give files in .txt, .docx, .odt, .rtf, .pdf, .vtt, .srt, or a table of answers.',
     );
   }
   for (const label of labelsNotFound(desk.study, interviewers)) {
@@ -115,6 +133,10 @@ export async function theme(words: readonly string[], terminal: Terminal): Promi
     );
   }
   const unmatched = describeParticipants(desk, tables.texts, terminal);
+  if (values.notes !== undefined) await keepFieldNotes(desk, values.notes, terminal);
+  if (values.codebook !== undefined) {
+    await takeInCodebook(desk, values.codebook, values['by-hand'] === true, terminal);
+  }
   refuse(applyPlan(desk, { ...plan, settings: {}, interviewers: [] }));
 
   const done = await fitWithProgress(desk, 'from scratch', terminal);
@@ -138,12 +160,17 @@ export async function theme(words: readonly string[], terminal: Terminal): Promi
   } finally {
     await staged.discard();
   }
-  const count = gathered.value.transcripts.length;
   terminal.err(
     `${count} ${count === 1 ? 'transcript' : 'transcripts'}, ${done.passages} passages, ` +
       `${desk.fitted(desk.study.fit)?.fit.themes.length ?? 0} themes: written to ${values.out}\n`,
   );
   return values.strict === true && skipped.length > 0 ? 1 : 0;
+}
+
+/** Options that only some calls have: ids follow from them where they are given. */
+function moreAsked(values: Readonly<Record<string, unknown>>): unknown[] {
+  const names = ['text', 'participant', 'attribute', 'sheet', 'codebook', 'by-hand', 'notes'];
+  return names.flatMap((name) => (values[name] === undefined ? [] : [[name, values[name]]]));
 }
 
 /** Warns of seeds that nobody says, or that are several words: they could not be used. */
@@ -199,7 +226,7 @@ async function attributeTables(
     if (!/\.(csv|tsv)$/iu.test(file.name)) continue;
     // What is no such table stays among the files and is named there with the reason.
     const text = await tableText(file.path);
-    if (text === null || readAttributeTable(text) === null) continue;
+    if (text === null || readAttributeTable(text) === null || holdsAnswers(text)) continue;
     texts.set(file.name, text);
     used.add(file);
   }
@@ -218,6 +245,11 @@ async function attributeTables(
     if (![...used].some((file) => file.path === path)) texts.set(basename(named), text);
   }
   return { texts, used };
+}
+
+function holdsAnswers(text: string): boolean {
+  const read = readCsv(text);
+  return read?.ok === true && guessPlan(read.value.sheets[0]) !== null;
 }
 
 /** Null where it cannot be read or is no text. */

@@ -20,6 +20,16 @@ export function readAttributeTable(text: string): AttributeTable | null {
   return null;
 }
 
+/** The same of rows of cells; null where they are no table of attributes. */
+export function attributeTableIn(rows: readonly (readonly string[])[]): AttributeTable | null {
+  const [head, ...body] = rows;
+  if (head === undefined || head.length < 2 || nameKey(head[0]) !== 'participant') return null;
+  return {
+    columns: head.slice(1).map((heading) => heading.trim()),
+    rows: body.map(([person, ...values]) => ({ person: person.trim(), values })),
+  };
+}
+
 function readWith(delimiter: string, text: string): AttributeTable | null {
   let rows: string[][];
   try {
@@ -27,12 +37,7 @@ function readWith(delimiter: string, text: string): AttributeTable | null {
   } catch {
     return null;
   }
-  const [head, ...body] = rows;
-  if (head === undefined || head.length < 2 || nameKey(head[0]) !== 'participant') return null;
-  return {
-    columns: head.slice(1).map((heading) => heading.trim()),
-    rows: body.map(([person, ...values]) => ({ person: person.trim(), values })),
-  };
+  return attributeTableIn(rows);
 }
 
 /** Edits that describe the participants found in the table, and the names that were not found. */

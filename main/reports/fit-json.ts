@@ -3,7 +3,7 @@ import { rowOf } from '../../engine/themes/index.ts';
 import { countedForm } from '../../engine/text/index.ts';
 import { settingsOf } from '../../engine/themes/index.ts';
 import { transcriptsInOrder, type Desk } from '../desk.ts';
-import type { SkippedFile } from '../gather/gather.ts';
+import type { SkippedFile } from '../gather/source-file.ts';
 import { themeRows } from './theme-table.ts';
 
 export interface FitReport {

@@ -22,7 +22,7 @@ export function noBackup(failure: StudyFileFailure): string {
 
 /** Why a file did not become a transcript. */
 export type FileRefusal =
-  ReadRefusal | { readonly code: MissedFile['code'] } | { readonly code: 'duplicate' };
+  ReadRefusal | { readonly code: MissedFile['code'] | 'duplicate' | 'unreadable' };
 
 /** One sentence on a skipped file: what, why, and what to do. Does not repeat the file's name. */
 export function sentenceForSkipped(refusal: FileRefusal): string {
@@ -49,6 +49,8 @@ export function sentenceForSkipped(refusal: FileRefusal): string {
       return 'The file is a table of answers; say which of its columns hold text.';
     case 'no speech':
       return 'There is no speech in the file, only headings; check that it is the whole transcript.';
+    case 'unreadable':
+      return 'No sense could be made of the file; open it in the program that made it and save it as plain text.';
     case 'duplicate':
       return 'The same transcript is in the study already, so one copy was kept; remove this one.';
     case 'not found':
@@ -64,7 +66,7 @@ const saveAs = 'save the transcript as .txt, .docx, .odt, .rtf, .pdf, .vtt or .s
 
 function sentenceForKind(format: string): string {
   if (format === 'qdc') {
-    return 'The file is a codebook; add it with “Codebook…” in Shape, or with --codebook.';
+    return 'The file is a codebook; add it with “Codebook” in Gather, or with --codebook.';
   }
   if (format === 'doc') {
     return 'Documents of this old kind (.doc) are not read; save it as .docx, .odt or .rtf.';

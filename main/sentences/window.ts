@@ -61,6 +61,15 @@ export const windowSentences = {
     `${quoted(s)} is not among the counted words; check its spelling, or the lists of words in Gather.`,
   'no attribute table': (s) =>
     `${quoted(s)} is no table of attributes; head its first column “participant” and each other column with an attribute.`,
+  'no such table': () => 'That table is not waiting any more; add its file again.',
+  'no answers': (s) =>
+    `The columns chosen as text in ${quoted(s)} hold no words; choose at least one that does.`,
+  'words of codings gone': (s) =>
+    `Codings in ${quoted(s)} stand on words that the new file no longer has, so it was left as it is; keep both, or remove those codings first.`,
+  'no codebook': (s) =>
+    `${quoted(s)} is no codebook; give a table whose first row has a column “name”, or a .qdc file.`,
+  'nothing to take in': () =>
+    'Each of these themes is in the study already, so nothing was taken in; choose others.',
   'no files': () => 'No files were handed over; choose at least one.',
   'order out of date': () =>
     'The list of themes changed in the meantime; look at it again, then put it in order.',

@@ -42,7 +42,7 @@ export async function talkingDesk(
       },
     ]),
   );
-  must(await gather(desk, files, []));
+  must(await gather(desk, files, { interviewers: [] }));
   return desk;
 }
 

@@ -64,6 +64,7 @@ describe('every refusal is one sentence that says what to do', () => {
     { code: 'not allowed' },
     { code: 'cannot read' },
     { code: 'duplicate' },
+    { code: 'unreadable' },
   ];
 
   test.each(skipped.map((refusal) => [refusal.code, refusal] as const))(
