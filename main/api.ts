@@ -181,6 +181,7 @@ export interface GatherView {
     readonly extraStopWords: readonly string[];
   };
   /** Memos on the study as a whole, oldest first. */
+  readonly fieldNotes: readonly FieldNoteRow[];
   readonly memos: readonly MemoView[];
 }
 
@@ -198,6 +199,67 @@ export interface GatherOutcome {
   readonly skipped: readonly { readonly file: string; readonly sentence: string }[];
   /** What tables of attributes among the files said; null where there was none. */
   readonly attributes: AttributesOutcome | null;
+  readonly tables: readonly TableOffer[];
+  readonly doubles: readonly DoubleOffer[];
+}
+
+/** A table among the files that were added: a person says which of its columns hold what. */
+export interface TableOffer {
+  /** Names it in the calls that follow, as long as the study is open. */
+  readonly table: string;
+  readonly file: string;
+  readonly sheets: readonly {
+    readonly name: string;
+    readonly rows: number;
+    readonly columns: readonly {
+      readonly heading: string;
+      readonly guess: ColumnPart;
+      readonly filled: number;
+      /** Words in a cell that holds something, on average. */
+      readonly words: number;
+    }[];
+    /** The first rows, long cells cut short. */
+    readonly first: readonly (readonly string[])[];
+  }[];
+}
+
+export type ColumnPart = 'text' | 'participant' | 'attribute' | 'left out';
+
+/** A file of a name that a transcript came from before, with other words in it. */
+export interface DoubleOffer {
+  readonly double: string;
+  readonly file: string;
+  readonly transcript: string;
+  readonly transcriptName: string;
+  readonly codings: number;
+}
+
+export type DoubleChoice = 'skip' | 'replace' | 'keep both';
+
+export interface FieldNoteRow {
+  readonly id: string;
+  readonly name: string;
+  readonly fileName: string;
+  /** The transcript that it speaks of; null for the study as a whole. */
+  readonly transcript: { readonly id: string; readonly name: string } | null;
+  readonly words: number;
+}
+
+export interface FieldNotesOutcome {
+  readonly kept: readonly string[];
+  readonly skipped: readonly { readonly file: string; readonly sentence: string }[];
+}
+
+/** A codebook that was made elsewhere, before it is taken in. */
+export interface CodebookOffer {
+  readonly entries: readonly {
+    readonly name: string;
+    readonly heading: string | null;
+    readonly brief: string;
+    readonly seeds: readonly string[];
+    /** Whether the study has a theme of that name. */
+    readonly taken: boolean;
+  }[];
 }
 
 export interface AttributesOutcome {
@@ -279,6 +341,8 @@ export interface TranscriptView {
   readonly turns: readonly TurnView[];
   readonly passages: readonly PassageView[];
   readonly words: number;
+  /** Field notes and what stood beside the text in its file. */
+  readonly fieldNotes: readonly FieldNoteRow[];
   readonly memos: readonly MemoView[];
 }
 
@@ -1065,6 +1129,41 @@ export interface Api {
     takes: { files: readonly { name: string; bytes: Uint8Array }[] };
     gives: GatherOutcome;
   };
+  /** Makes a transcript of a table of answers. Columns by their headings. */
+  addTable: {
+    takes: {
+      table: string;
+      sheet: string;
+      text: readonly string[];
+      participant: string | null;
+      attributes: readonly string[];
+    };
+    gives: GatherOutcome;
+  };
+  leaveTable: { takes: { table: string }; gives: null };
+  settleDoubles: {
+    takes: { choices: readonly { double: string; choice: DoubleChoice }[] };
+    gives: GatherOutcome;
+  };
+  addFieldNotes: {
+    takes: {
+      files: readonly { name: string; bytes: Uint8Array }[];
+      transcript: string | null;
+    };
+    gives: FieldNotesOutcome;
+  };
+  fieldNoteView: { takes: { note: string }; gives: FieldNoteRow & { readonly text: string } };
+  describeFieldNote: {
+    takes: { note: string; name: string; transcript: string | null };
+    gives: Overview;
+  };
+  removeFieldNote: { takes: { note: string }; gives: Overview };
+  readCodebook: { takes: { name: string; bytes: Uint8Array }; gives: CodebookOffer };
+  /** Takes the named entries in as themes; those whose names are taken are passed over. */
+  addCodebook: {
+    takes: { name: string; bytes: Uint8Array; names: readonly string[]; byHand: boolean };
+    gives: { overview: Overview; added: number };
+  };
   addAttributes: { takes: { name: string; bytes: Uint8Array }; gives: AttributesOutcome };
   gatherView: { takes: null; gives: GatherView };
   /** Takes a moment in a large study; null while nothing is gathered. */
@@ -1288,6 +1387,15 @@ export const methods = [
   'redo',
   'chooseTranscripts',
   'addTranscripts',
+  'addTable',
+  'leaveTable',
+  'settleDoubles',
+  'addFieldNotes',
+  'fieldNoteView',
+  'describeFieldNote',
+  'removeFieldNote',
+  'readCodebook',
+  'addCodebook',
   'addAttributes',
   'gatherView',
   'counted',

@@ -126,6 +126,28 @@ export const payloads = {
 
   chooseTranscripts: nothing,
   addTranscripts: v.strictObject({ files: v.pipe(v.array(file), v.maxLength(limits.files)) }),
+  addTable: v.strictObject({
+    table: id,
+    sheet: name,
+    text: words,
+    participant: v.nullable(name),
+    attributes: words,
+  }),
+  leaveTable: v.strictObject({ table: id }),
+  settleDoubles: v.strictObject({
+    choices: listOf(
+      v.strictObject({ double: id, choice: v.picklist(['skip', 'replace', 'keep both']) }),
+    ),
+  }),
+  addFieldNotes: v.strictObject({
+    files: v.pipe(v.array(file), v.maxLength(limits.files)),
+    transcript: v.nullable(id),
+  }),
+  fieldNoteView: v.strictObject({ note: id }),
+  describeFieldNote: v.strictObject({ note: id, name, transcript: v.nullable(id) }),
+  removeFieldNote: v.strictObject({ note: id }),
+  readCodebook: v.strictObject({ name, bytes }),
+  addCodebook: v.strictObject({ name, bytes, names: words, byHand: v.boolean() }),
   addAttributes: v.strictObject({ name, bytes }),
   gatherView: nothing,
   counted: nothing,

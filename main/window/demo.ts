@@ -53,7 +53,7 @@ export async function buildDemo(
       ],
       { group: startGroup },
     ),
-    await gather(desk, files, []),
+    await gather(desk, files, { interviewers: [] }),
   ];
   if (steps.some((step) => !step.ok) || desk.study.transcripts.size === 0) return refuse('no demo');
   for (const table of tables) {

@@ -3,6 +3,7 @@ import type { Transcript } from '../../engine/study/index.ts';
 import { languages, speakerKey, type Language } from '../../engine/text/index.ts';
 import type { Counted, GatherView, ParticipantRow, SpeakerView, TranscriptRow } from '../api.ts';
 import { attributeNames } from '../reports/coded-excerpts.ts';
+import { fieldNoteRows } from './field-notes.ts';
 import { memosOnStudy } from './memos.ts';
 import { needsLook } from './needs-look.ts';
 import type { OpenStudy } from './open-study.ts';
@@ -33,6 +34,7 @@ export async function gatherView(open: OpenStudy): Promise<GatherView> {
       transcriptRow(open, transcript, talk.get(transcript.id) ?? new Map()),
     ),
     participants: participantRows(open),
+    fieldNotes: fieldNoteRows(open),
     attributes: attributeNames(study),
     settings: {
       themes: settings.themes,

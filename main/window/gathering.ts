@@ -1,11 +1,24 @@
-import { readFile } from 'node:fs/promises';
 import type { Study } from '../../engine/study/index.ts';
-import type { AttributesOutcome, Counted, GatherOutcome, Refused } from '../api.ts';
+import type { Api, AttributesOutcome, Counted, GatherOutcome, Refused } from '../api.ts';
 import type { Draft } from '../desk.ts';
 import { decode } from '../formats/index.ts';
-import { attributeEdits, readAttributeTable } from '../gather/attributes.ts';
+import { guessPlan } from '../gather/answers.ts';
+import {
+  attributeEdits,
+  attributeTableIn,
+  readAttributeTable,
+  type AttributeTable,
+} from '../gather/attributes.ts';
 import { findFiles } from '../gather/find-files.ts';
-import { gather, type HandedFile, type SourceFile } from '../gather/gather.ts';
+import {
+  answerDrafts,
+  gather,
+  gatherLoaded,
+  replacingDrafts,
+  type FoundTable,
+  type Gathered,
+} from '../gather/gather.ts';
+import type { HandedFile, SourceFile } from '../gather/source-file.ts';
 import { sentenceForSkipped, type FileRefusal } from '../sentences/sentences.ts';
 import { give, isRefused, refuse } from './answers.ts';
 import { countedWords, gatherView } from './gather-view.ts';
@@ -13,6 +26,7 @@ import type { OpenStudy } from './open-study.ts';
 import { people } from './people.ts';
 import type { Room } from './room.ts';
 import type { Handlers } from './session-types.ts';
+import { waitingFiles } from './waiting-files.ts';
 import { transcriptView } from './transcript-view.ts';
 
 export function gatheringHandlers(
@@ -21,6 +35,9 @@ export function gatheringHandlers(
   Handlers,
   | 'chooseTranscripts'
   | 'addTranscripts'
+  | 'addTable'
+  | 'leaveTable'
+  | 'settleDoubles'
   | 'addAttributes'
   | 'gatherView'
   | 'counted'
@@ -33,11 +50,13 @@ export function gatheringHandlers(
 > {
   const { dialogs } = room.surroundings;
   return {
-    chooseTranscripts: room.look<null, GatherOutcome | null>(async (open) => {
+    chooseTranscripts: room.look<null, GatherOutcome | null>(async (open, _, context) => {
       const paths = dialogs === null ? null : await dialogs.chooseTranscripts();
       if (paths === null || paths.length === 0) return give(null);
       const { found, missed } = await findFiles(paths, '/');
-      const outcome = await add(room, open, found);
+      const outcome = await add(room, open, found, (fraction) => {
+        context.onProgress({ sweep: 0, bound: null, change: 0, fraction });
+      });
       if (isRefused(outcome)) return outcome;
       const skipped = missed.map(({ name, code }) => ({
         file: name,
@@ -50,11 +69,38 @@ export function gatheringHandlers(
       files.length === 0 ? refuse('no files') : add(room, open, files),
     ),
 
+    addTable: room.look(
+      async (open, { table: token, sheet, text, participant, attributes }: AddTable) => {
+        const found = waitingFiles(open).tables.get(token);
+        if (found === undefined) return refuse('no such table');
+        const made = answerDrafts(open.desk, found, { sheet, text, participant, attributes });
+        if (made === null) return refuse('no answers', found.file);
+        const refused = open.decide(made.drafts);
+        if (refused !== null) return refused;
+        waitingFiles(open).tables.delete(token);
+        const after = await room.afterwards(open);
+        if (isRefused(after)) return after;
+        return give({ ...nothingGathered, gathered: [made.name] });
+      },
+    ),
+
+    leaveTable: room.look<Api['leaveTable']['takes'], null>((open, { table }) => {
+      waitingFiles(open).tables.delete(table);
+      return give(null);
+    }),
+
+    settleDoubles: room.look((open, { choices }: Api['settleDoubles']['takes']) =>
+      room.inTurn(async () =>
+        room.open === open ? settle(room, open, choices) : refuse('no study'),
+      ),
+    ),
+
     addAttributes: room.look(async (open, { name, bytes }: HandedFile) => {
       const decoded = decode(bytes);
       if (!decoded.ok) return { code: decoded.code, refused: sentenceForSkipped(decoded) };
-      const described = describe(open.study, decoded.text);
-      if (described === null) return refuse('no attribute table', name);
+      const table = readAttributeTable(decoded.text);
+      if (table === null) return refuse('no attribute table', name);
+      const described = describe(open.study, table);
       const refused = open.decide(described.drafts);
       if (refused !== null) return refused;
       const after = await room.afterwards(open);
@@ -83,10 +129,11 @@ function add(
   room: Room,
   open: OpenStudy,
   files: readonly SourceFile[],
+  onProgress?: (fraction: number) => void,
 ): Promise<{ readonly value: GatherOutcome } | Refused> {
   // One after the other, or the same file could come in twice; and a study is not closed in between.
   return room.inTurn(async () =>
-    room.open === open ? addFiles(room, open, files) : refuse('no study'),
+    room.open === open ? addFiles(room, open, files, onProgress) : refuse('no study'),
   );
 }
 
@@ -94,62 +141,119 @@ async function addFiles(
   room: Room,
   open: OpenStudy,
   files: readonly SourceFile[],
+  onProgress?: (fraction: number) => void,
 ): Promise<{ readonly value: GatherOutcome } | Refused> {
   const { desk } = open;
-  const tables = new Map<SourceFile, string>();
-  for (const file of files) {
-    const text = await tableIn(file);
-    if (text !== null) tables.set(file, text);
-  }
-  const transcripts = files.filter((file) => !tables.has(file));
   const group = desk.context.mintId('group');
-  const gathered = await gather(desk, transcripts, askingIn(open.study), undefined, group);
+  const gathered = await gather(desk, files, {
+    interviewers: askingIn(open.study),
+    group,
+    askAboutDoubles: true,
+    onProgress: (done) => onProgress?.(done / files.length),
+  });
   if (!gathered.ok) return open.refusal(gathered);
 
   const outcomes: AttributesOutcome[] = [];
-  for (const text of tables.values()) {
-    const described = describe(open.study, text);
-    if (described === null) continue;
+  const answers: FoundTable[] = [];
+  for (const found of gathered.value.tables) {
+    const table = attributesIn(found);
+    if (table === null) {
+      answers.push(found);
+      continue;
+    }
+    const described = describe(open.study, table);
     const made = desk.make(described.drafts, { group });
     if (!made.ok) return open.refusal(made);
     outcomes.push(described.outcome);
   }
+  return outcomeOf(room, open, { ...gathered.value, tables: answers }, outcomes);
+}
+
+async function outcomeOf(
+  room: Room,
+  open: OpenStudy,
+  { transcripts, skipped, tables, doubles }: Gathered,
+  attributes: readonly AttributesOutcome[],
+): Promise<{ readonly value: GatherOutcome } | Refused> {
   const after = await room.afterwards(open);
   if (isRefused(after)) return after;
+  const waiting = waitingFiles(open);
   return give({
-    gathered: gathered.value.transcripts,
-    skipped: gathered.value.skipped.map(({ file, refusal }) => ({
+    gathered: transcripts,
+    skipped: skipped.map(({ file, refusal }) => ({
       file,
       sentence: sentenceForSkipped(refusal as FileRefusal),
     })),
+    tables: tables.map((found) => waiting.table(found)),
+    doubles: doubles.map((found) => waiting.double(open, found)),
     attributes:
-      outcomes.length === 0
+      attributes.length === 0
         ? null
         : {
-            described: outcomes.reduce((sum, { described }) => sum + described, 0),
-            unmatched: outcomes.flatMap(({ unmatched }) => unmatched),
+            described: attributes.reduce((sum, { described }) => sum + described, 0),
+            unmatched: attributes.flatMap(({ unmatched }) => unmatched),
           },
   });
 }
 
-/** The text of a file that is a table of attributes; null for any other. */
-async function tableIn(file: SourceFile): Promise<string | null> {
-  if (!/\.(csv|tsv)$/iu.test(file.name)) return null;
-  try {
-    const decoded = decode('bytes' in file ? file.bytes : await readFile(file.path));
-    return decoded.ok && readAttributeTable(decoded.text) !== null ? decoded.text : null;
-  } catch {
-    // It stays among the transcripts and is named there with the reason.
-    return null;
+type AddTable = Api['addTable']['takes'];
+
+const nothingGathered: GatherOutcome = {
+  gathered: [],
+  skipped: [],
+  attributes: null,
+  tables: [],
+  doubles: [],
+};
+
+/** Does with files of known names what a person chose: leaves them, takes their words, or both. */
+async function settle(
+  room: Room,
+  open: OpenStudy,
+  choices: Api['settleDoubles']['takes']['choices'],
+): Promise<{ readonly value: GatherOutcome } | Refused> {
+  const { desk } = open;
+  const waiting = waitingFiles(open);
+  const group = desk.context.mintId('group');
+  const gathered: string[] = [];
+  const skipped: { file: string; sentence: string }[] = [];
+  for (const { double: token, choice } of choices) {
+    const double = waiting.doubles.get(token);
+    waiting.doubles.delete(token);
+    if (double === undefined || choice === 'skip') continue;
+    const asking = askingIn(open.study);
+    if (choice === 'keep both') {
+      const made = gatherLoaded(desk, [double], asking, group);
+      if (!made.ok) return open.refusal(made);
+      gathered.push(...made.value);
+      continue;
+    }
+    const transcript = open.study.transcripts.get(double.transcript);
+    if (transcript === undefined) continue;
+    const replacing = replacingDrafts(desk, double, asking);
+    if ('orphaned' in replacing) {
+      const { refused: sentence } = refuse('words of codings gone', transcript.name);
+      skipped.push({ file: double.file.name, sentence });
+      continue;
+    }
+    const made = desk.make(replacing.drafts, { group });
+    if (!made.ok) return open.refusal(made);
+    gathered.push(transcript.name);
   }
+  const after = await room.afterwards(open);
+  return isRefused(after) ? after : give({ ...nothingGathered, gathered, skipped });
+}
+
+/** The attributes in a table; null where it is one of answers. */
+function attributesIn({ table: { sheets } }: FoundTable): AttributeTable | null {
+  const [sheet] = sheets;
+  return guessPlan(sheet) === null ? attributeTableIn(sheet.rows) : null;
 }
 
 function describe(
   study: Study,
-  text: string,
-): { readonly drafts: Draft[]; readonly outcome: AttributesOutcome } | null {
-  const table = readAttributeTable(text);
-  if (table === null) return null;
+  table: AttributeTable,
+): { readonly drafts: Draft[]; readonly outcome: AttributesOutcome } {
   const { edits, unmatched } = attributeEdits(study, table);
   const changing = edits.filter(
     (edit) =>

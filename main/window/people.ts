@@ -44,7 +44,21 @@ export function people(
       }
       const without = new Map(open.study.transcripts);
       without.delete(id);
+      // What stood beside its text in the file goes with it; notes that somebody added stay.
+      const notes = [...open.study.fieldNotes.values()]
+        .filter((note) => note.transcript === id)
+        .map((note): Edit =>
+          note.source.hash === transcript.source.hash
+            ? { kind: 'fieldNoteLetGo', note }
+            : {
+                kind: 'fieldNoteDescribed',
+                note: note.id,
+                from: { name: note.name, transcript: id },
+                to: { name: note.name, transcript: null },
+              },
+        );
       return open.decide([
+        ...notes,
         { kind: 'transcriptRemoved', transcript },
         ...leaving(open.study, { ...open.study, transcripts: without }),
       ]);

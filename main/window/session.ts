@@ -1,7 +1,10 @@
 import type { ReadingEvidence, Strata } from '../api.ts';
 import { closesTrail } from '../../engine/study/index.ts';
 import { give, refuse } from './answers.ts';
+import { give } from './answers.ts';
+import { codebookHandlers } from './codebook-import.ts';
 import { evidenceHandlers } from './evidence.ts';
+import { fieldNoteHandlers } from './field-notes.ts';
 import { find } from './find.ts';
 import { fitHandlers } from './fits.ts';
 import { forgettingHandlers } from './forgetting.ts';
@@ -42,6 +45,8 @@ export function createSession(surroundings: Surroundings): Session {
     ...keepingHandlers(room),
     ...recoveringHandlers(room),
     ...gatheringHandlers(room),
+    ...fieldNoteHandlers(room),
+    ...codebookHandlers(room),
     ...fitHandlers(room),
     ...evidenceHandlers(room),
     ...splitHandlers(room),

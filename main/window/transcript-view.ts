@@ -1,5 +1,6 @@
 import type { Refused, TranscriptView } from '../api.ts';
 import { give } from './answers.ts';
+import { fieldNoteRows } from './field-notes.ts';
 import { memosOnTranscript } from './memos.ts';
 import type { OpenStudy } from './open-study.ts';
 import { wordsIn } from './overview.ts';
@@ -31,6 +32,7 @@ export function transcriptView(
     })),
     passages: placed.map((_, index) => passageView(open, id, index)),
     words: wordsIn(placed),
+    fieldNotes: fieldNoteRows(open, id),
     memos: memosOnTranscript(study, id),
   });
 }

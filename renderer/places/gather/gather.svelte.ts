@@ -1,9 +1,25 @@
-import type { About, AttributesOutcome, GatherOutcome } from '../../../main/api.ts';
+import type {
+  About,
+  Api,
+  AttributesOutcome,
+  CodebookOffer,
+  DoubleChoice,
+  DoubleOffer,
+  GatherOutcome,
+  TableOffer,
+} from '../../../main/api.ts';
 import { counted } from '../../parts/counted.ts';
 import type { StudyState } from '../../state/study.svelte.ts';
 import type { LooseFile } from './loose-files.ts';
 
-export type Section = 'transcripts' | 'participants' | 'words';
+export type Section = 'transcripts' | 'participants' | 'notes' | 'words';
+
+/** A codebook in hand: what is in it, and its file, which is asked for again when it is taken in. */
+export interface CodebookInHand {
+  readonly name: string;
+  readonly bytes: Uint8Array;
+  readonly offer: CodebookOffer;
+}
 
 export interface Skipped {
   readonly file: string;
@@ -30,7 +46,11 @@ export class GatherState {
   #unmatched = $state.raw<readonly Unmatched[]>([]);
   #adding = $state.raw<{ readonly done: number; readonly of: number } | null>(null);
   #about = $state.raw<About | null>(null);
+  #tables = $state.raw<readonly TableOffer[]>([]);
+  #doubles = $state.raw<readonly DoubleOffer[]>([]);
+  #codebook = $state.raw<CodebookInHand | null>(null);
   #begun = false;
+  note = $state<string | null>(null);
   section = $state<Section>('transcripts');
   chosen = $state<string | null>(null);
   onlyThoseThatNeedALook = $state(false);
@@ -54,6 +74,20 @@ export class GatherState {
     return this.#unmatched;
   }
 
+  /** Tables that wait until a person says which columns hold what. */
+  get tables(): readonly TableOffer[] {
+    return this.#adding === null ? this.#tables : [];
+  }
+
+  /** Files of known names that wait until a person says what to do with them. */
+  get doubles(): readonly DoubleOffer[] {
+    return this.#adding === null ? this.#doubles : [];
+  }
+
+  get codebook(): CodebookInHand | null {
+    return this.#codebook;
+  }
+
   /** How far the adding of files has come; null where none are added. */
   get adding(): { readonly done: number; readonly of: number } | null {
     return this.#adding;
@@ -75,7 +109,7 @@ export class GatherState {
   /** Transcripts and, after them, tables of attributes. */
   async add(files: readonly LooseFile[]): Promise<void> {
     if (this.#adding !== null || files.length === 0) return;
-    const isTable = ({ name }: LooseFile): boolean => /\.(csv|tsv)$/iu.test(name);
+    const isTable = ({ name }: LooseFile): boolean => /\.(csv|tsv|xlsx)$/iu.test(name);
     this.#study.hush();
     this.#adding = { done: 0, of: files.length };
     try {
@@ -93,10 +127,92 @@ export class GatherState {
   async choose(): Promise<void> {
     if (this.#adding !== null) return;
     this.#study.hush();
-    const outcome = await this.#study.ask('chooseTranscripts', null);
+    const outcome = await this.#study.ask('chooseTranscripts', null, {
+      onProgress: ({ fraction }) => {
+        this.#adding = { done: Math.floor(fraction * 100), of: 100 };
+      },
+    });
+    this.#adding = null;
     if (outcome === undefined || outcome === null) return;
     this.#keep(outcome, 'the table');
     this.#sayWhatCame([outcome]);
+  }
+
+  /** Makes a transcript of a table; true where it was made. */
+  async addTable(plan: Api['addTable']['takes']): Promise<boolean> {
+    this.#study.hush();
+    const outcome = await this.#study.ask('addTable', plan);
+    if (outcome === undefined) return false;
+    this.#tables = this.#tables.filter(({ table }) => table !== plan.table);
+    this.#keep(outcome, '');
+    this.#sayWhatCame([outcome]);
+    return true;
+  }
+
+  leaveTable(offer: TableOffer): void {
+    this.#tables = this.#tables.filter(({ table }) => table !== offer.table);
+    void this.#study.ask('leaveTable', { table: offer.table });
+    this.#keepSkipped([
+      { file: offer.file, sentence: 'Left out, since it is a table. Add it again to use it.' },
+    ]);
+  }
+
+  async settleDoubles(choices: ReadonlyMap<string, DoubleChoice>): Promise<boolean> {
+    this.#study.hush();
+    const outcome = await this.#study.ask('settleDoubles', {
+      choices: this.#doubles.map(({ double }) => ({
+        double,
+        choice: choices.get(double) ?? 'skip',
+      })),
+    });
+    if (outcome === undefined) return false;
+    this.#doubles = [];
+    this.#keep(outcome, '');
+    this.#sayWhatCame([outcome]);
+    return true;
+  }
+
+  /** Keeps files beside the transcripts. */
+  async addFieldNotes(files: readonly LooseFile[], transcript: string | null): Promise<void> {
+    if (this.#adding !== null || files.length === 0) return;
+    this.#study.hush();
+    const read: { name: string; bytes: Uint8Array }[] = [];
+    for (const file of files) {
+      const bytes = await this.#read(file);
+      if (bytes !== null) read.push({ name: file.name, bytes });
+    }
+    if (read.length === 0) return;
+    const outcome = await this.#study.ask('addFieldNotes', { files: read, transcript });
+    if (outcome === undefined) return;
+    this.#keepSkipped(outcome.skipped);
+    if (outcome.kept.length === 0) return;
+    this.section = 'notes';
+    this.#study.say('done', `${counted(outcome.kept.length, 'field note')} kept.`);
+  }
+
+  /** Looks into a codebook; what is in it is shown before anything is taken in. */
+  async openCodebook(file: LooseFile): Promise<void> {
+    this.#study.hush();
+    const bytes = await this.#read(file);
+    if (bytes === null) return;
+    const offer = await this.#study.ask('readCodebook', { name: file.name, bytes });
+    if (offer !== undefined) this.#codebook = { name: file.name, bytes, offer };
+  }
+
+  closeCodebook(): void {
+    this.#codebook = null;
+  }
+
+  async takeInCodebook(names: readonly string[], byHand: boolean): Promise<boolean> {
+    const book = this.#codebook;
+    if (book === null) return false;
+    this.#study.hush();
+    const { name, bytes } = book;
+    const outcome = await this.#study.ask('addCodebook', { name, bytes, names, byHand });
+    if (outcome === undefined) return false;
+    this.#codebook = null;
+    this.#study.say('done', `${counted(outcome.added, 'theme')} taken in. They stand in Shape.`);
+    return true;
   }
 
   /** One table of attributes; anything else is refused. */
@@ -107,7 +223,7 @@ export class GatherState {
     if (bytes === null) return;
     const attributes = await this.#study.ask('addAttributes', { name: file.name, bytes });
     if (attributes === undefined) return;
-    const outcome = { gathered: [], skipped: [], attributes };
+    const outcome = { gathered: [], skipped: [], attributes, tables: [], doubles: [] };
     this.#keep(outcome, file.name);
     this.#sayWhatCame([outcome]);
   }
@@ -182,7 +298,9 @@ export class GatherState {
     this.#keepSkipped(files.map(({ name }) => ({ file: name, sentence })));
   }
 
-  #keep({ skipped, attributes }: GatherOutcome, table: string): void {
+  #keep({ skipped, attributes, tables, doubles }: GatherOutcome, table: string): void {
+    this.#tables = [...this.#tables, ...tables];
+    this.#doubles = [...this.#doubles, ...doubles];
     this.#keepSkipped(skipped);
     if (attributes !== null) this.#keepUnmatched(attributes, table);
   }

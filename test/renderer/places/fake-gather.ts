@@ -258,6 +258,7 @@ export function fakeGather(options: FakeOptions = {}): FakeLink {
         participants: people,
         attributes: [...new Set(people.flatMap(({ attributes }) => Object.keys(attributes)))],
         settings,
+        fieldNotes: [],
         memos: [],
       },
     }),
@@ -293,6 +294,7 @@ export function fakeGather(options: FakeOptions = {}): FakeLink {
           turns,
           passages: [],
           words: row.words,
+          fieldNotes: [],
           memos: [],
         },
       };
@@ -312,6 +314,8 @@ export function fakeGather(options: FakeOptions = {}): FakeLink {
               'Files of this kind are not read. Save the transcript as .txt, .docx, .vtt or .srt.',
           })),
           attributes: null,
+          tables: [],
+          doubles: [],
         },
       };
     },

@@ -36,6 +36,7 @@ const transcript = (id: string, passages: readonly PassageView[] = []): Transcri
   turns: [],
   passages,
   words: 0,
+  fieldNotes: [],
   memos: [],
 });
 
