@@ -17,7 +17,12 @@ const workers = Object.fromEntries(
 
 // Everything is bundled: the packages stay development dependencies, and nothing of them that the
 // app does not use ends up in it (natural's database drivers, for one).
-const bundled = { externalizeDeps: false, sourcemap: false, reportCompressedSize: false } as const;
+const bundled = {
+  externalizeDeps: false,
+  sourcemap: false,
+  reportCompressedSize: false,
+  chunkSizeWarningLimit: 4000,
+} as const;
 
 // How long each plugin took is of no use to whoever starts the app.
 const checks = { pluginTimings: false } as const;

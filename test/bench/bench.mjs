@@ -6,6 +6,7 @@ import { fileURLToPath } from 'node:url';
 import { build } from 'vite';
 
 const benches = {
+  gather: 'reading and preparing a million words beside a plain tokenizer and stemmer',
   engine: 'speed and quality of fits beside scikit-learn, and fits of a million words',
   decisions: 'what each kind of decision does on top of a fit, and what it leaves alone',
   search: 'keyword in context over a generated study of a million words',

@@ -16,6 +16,7 @@ export default defineConfig({
     outDir: join(top, 'out', 'bench'),
     rolldownOptions: {
       input: {
+        gather: join(top, 'test', 'bench', 'gather.ts'),
         engine: join(top, 'test', 'bench', 'engine.ts'),
         decisions: join(top, 'test', 'bench', 'decisions.ts'),
         search: join(top, 'test', 'bench', 'search.ts'),
