@@ -143,7 +143,7 @@ const nameWord =
   /^(?:\p{Lu}[\p{L}\p{M}'’.-]*|[dlo]['’]\p{Lu}[\p{L}\p{M}-]*|\p{Lo}[\p{L}\p{M}]{0,7})$/u;
 const joiner =
   /^(?:de|da|do|dos|das|del|della|di|du|des|la|le|el|al|bin|ibn|van|von|vom|zu|der|den|ter|ten|of|and|und|et|y|e|og|och|en|&|\/|\d{1,4}|#\d{1,4}|\p{Lu}\d{0,3})$/u;
-const mostWords = 16;
+const mostWords = 20;
 
 /** What a label looks like, or null for what is no label whatever stands around it. */
 function shapeOf(label: string): LabelShape | null {
