@@ -3,7 +3,10 @@ import type { BrowserWindow, Dialog } from 'electron';
 import type { SystemDialogs } from '../window/session-types.ts';
 
 const studies = { name: 'Understory studies', extensions: ['understory'] };
-const transcripts = { name: 'Transcripts', extensions: ['txt', 'docx', 'vtt', 'srt', 'md'] };
+const transcripts = {
+  name: 'Transcripts',
+  extensions: 'txt md docx odt rtf pdf html htm vtt srt csv tsv xlsx'.split(' '),
+};
 const everything = { name: 'All files', extensions: ['*'] };
 
 export interface DialogOptions {
