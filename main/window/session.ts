@@ -1,7 +1,6 @@
 import type { ReadingEvidence, Strata } from '../api.ts';
 import { closesTrail } from '../../engine/study/index.ts';
 import { give, refuse } from './answers.ts';
-import { give } from './answers.ts';
 import { codebookHandlers } from './codebook-import.ts';
 import { evidenceHandlers } from './evidence.ts';
 import { fieldNoteHandlers } from './field-notes.ts';
