@@ -3,6 +3,7 @@ import {
   fittedThemes,
   isModelled,
   resolveTheme,
+  themesWithDecisions,
   type Study,
   type Theme,
   type ThemeId,
@@ -21,11 +22,12 @@ export interface ModelledTheme {
 
 /**
  * The themes that a fit models, in codebook order: those of the fit on screen, and those that a
- * person asked for. Candidates of other fits stay out. A merged theme brings its seeds along; what
- * either side shut out stays out only where the theme that remains says so.
+ * person asked for or decided on. Other candidates of other fits stay out. A merged theme brings
+ * its seeds along; what either side shut out stays out only where the theme that remains says so.
  */
 export function modelledThemes(study: Study): ModelledTheme[] {
   const fitted = fittedThemes(study);
+  const decided = themesWithDecisions(study);
   const absorbed = new Map<ThemeId, Theme[]>();
   for (const theme of study.themes.values()) {
     if (theme.mergedInto === null) continue;
@@ -41,6 +43,7 @@ export function modelledThemes(study: Study): ModelledTheme[] {
         (theme.origin === 'asked for' ||
           theme.name !== null ||
           theme.pinned ||
+          decided.has(theme.id) ||
           fitted.has(theme.id) ||
           (absorbed.get(theme.id) ?? []).some(({ id }) => fitted.has(id))),
     )

@@ -275,7 +275,7 @@ describe('any sequence of decisions and fits', () => {
         await walk.take({ does: 're-fit', a: 0, b: 0 });
         fits += walk.fits;
       }),
-      { numRuns: 10, seed: 20261201, endOnFailure: true },
+      { numRuns: 14, seed: 20261201, endOnFailure: true },
     );
     // Otherwise nothing much was tried.
     expect(fits).toBeGreaterThan(20);
