@@ -1062,6 +1062,86 @@ export interface ErasedView {
   readonly backupsLeft: readonly string[];
 }
 
+/** What kind of thing could tell who somebody is. */
+export type IdentifierKind =
+  | 'person'
+  | 'place'
+  | 'organisation'
+  | 'other name'
+  | 'e-mail'
+  | 'telephone'
+  | 'web'
+  | 'date'
+  | 'age'
+  | 'postcode'
+  | 'number';
+
+/** A stand-in is another name; a generalisation says what kind of thing stood there. */
+export type IdentifierDecision = 'stand-in' | 'generalised' | 'left' | 'not identifying';
+
+/** Something that could tell who somebody is, in all its ways of writing. */
+export interface IdentifierRow {
+  readonly key: string;
+  readonly kind: IdentifierKind;
+  readonly name: string;
+  readonly forms: readonly { readonly form: string; readonly occurrences: number }[];
+  /** Places that nobody has decided on; never 0. */
+  readonly open: number;
+  readonly transcripts: number;
+  /** What is offered first: the decision, and what would be put there. */
+  readonly offered: { readonly decision: IdentifierDecision; readonly replacement: string };
+  /** Stand-ins that were put in place of the same name before: two for two people of one name. */
+  readonly before: readonly string[];
+  /** What to mind, one sentence each ("Also the stand-in for somebody else"). */
+  readonly notes: readonly string[];
+}
+
+export interface IdentifiersView {
+  /** Kind by kind, the commonest first. */
+  readonly open: readonly IdentifierRow[];
+  readonly settled: readonly {
+    readonly id: string;
+    readonly kind: IdentifierKind;
+    readonly forms: readonly string[];
+    readonly decision: IdentifierDecision;
+    readonly replacement: string | null;
+    readonly transcripts: number;
+    /** Whether it can be opened again by itself: what was put into texts is taken back by undo. */
+    readonly canReopen: boolean;
+  }[];
+  /** Open places by transcript; one that is not here has none. */
+  readonly byTranscript: Readonly<Record<string, number>>;
+  /** Full dates that would move together. */
+  readonly dates: { readonly movable: number; readonly moved: boolean };
+}
+
+/** One place of an identifier. */
+export interface IdentifierPlace extends PassagePlace {
+  readonly key: string;
+  readonly kind: IdentifierKind;
+  readonly standing: 'open' | 'stand-in' | 'left' | 'not identifying';
+  readonly transcriptName: string;
+  readonly speaker: string | null;
+  readonly before: string;
+  readonly match: string;
+  readonly after: string;
+}
+
+export interface IdentifierPlaces {
+  readonly places: readonly IdentifierPlace[];
+  /** Where the same words stand outside the texts. */
+  readonly elsewhere: readonly { readonly where: string; readonly text: string }[];
+}
+
+export interface SettleRequest {
+  readonly key: string;
+  readonly decision: IdentifierDecision;
+  /** For a stand-in or a generalisation; null for others. */
+  readonly replacement: string | null;
+  /** Null for every open place. */
+  readonly places: readonly PassagePlace[] | null;
+}
+
 /** How a decision about a passage came about: stored with it. */
 export interface UnderView {
   /** The reading list's name. */
@@ -1169,6 +1249,28 @@ export interface Api {
   /** Takes a moment in a large study; null while nothing is gathered. */
   counted: { takes: null; gives: Counted | null };
   transcriptView: { takes: { transcript: string }; gives: TranscriptView };
+  /** What could tell who somebody is, over the whole study. Takes seconds in a large one. */
+  identifiers: { takes: null; gives: IdentifiersView };
+  /** Every place of one of them. */
+  identifierPlaces: { takes: { key: string }; gives: IdentifierPlaces };
+  /** All that stands in one transcript, in order, for marking it there. */
+  identifiersIn: { takes: { transcript: string }; gives: readonly IdentifierPlace[] };
+  /** Decides on any number at once; with `elsewhere`, in names, memos and the codebook as well. */
+  settleIdentifiers: {
+    takes: { settle: readonly SettleRequest[]; elsewhere: boolean };
+    gives: Overview;
+  };
+  /** Takes back that something stays as it is. */
+  reopenIdentifier: { takes: { identifier: string }; gives: Overview };
+  /** Moves every full date of the study by one number of days that nobody is told. */
+  moveDates: { takes: null; gives: Overview };
+  /** The names behind the stand-ins in a file that opens with this password alone. */
+  identifierKey: { takes: { password: string }; gives: NamedFile };
+  /** Takes such a file in: the same stand-ins are offered again. How many names it held. */
+  readIdentifierKey: {
+    takes: { name: string; bytes: Uint8Array; password: string };
+    gives: { names: number };
+  };
   renameTranscript: { takes: { transcript: string; name: string }; gives: Overview };
   removeTranscript: { takes: { transcript: string }; gives: Overview };
   assignSpeaker: {
@@ -1400,6 +1502,14 @@ export const methods = [
   'gatherView',
   'counted',
   'transcriptView',
+  'identifiers',
+  'identifierPlaces',
+  'identifiersIn',
+  'settleIdentifiers',
+  'reopenIdentifier',
+  'moveDates',
+  'identifierKey',
+  'readIdentifierKey',
   'renameTranscript',
   'removeTranscript',
   'assignSpeaker',

@@ -152,6 +152,24 @@ export const payloads = {
   gatherView: nothing,
   counted: nothing,
   transcriptView: v.strictObject({ transcript: id }),
+  identifiers: nothing,
+  identifierPlaces: v.strictObject({ key: name }),
+  identifiersIn: v.strictObject({ transcript: id }),
+  settleIdentifiers: v.strictObject({
+    settle: listOf(
+      v.strictObject({
+        key: name,
+        decision: v.picklist(['stand-in', 'generalised', 'left', 'not identifying']),
+        replacement: v.nullable(name),
+        places: v.nullable(listOf(place)),
+      }),
+    ),
+    elsewhere: v.boolean(),
+  }),
+  reopenIdentifier: v.strictObject({ identifier: id }),
+  moveDates: nothing,
+  identifierKey: v.strictObject({ password: name }),
+  readIdentifierKey: v.strictObject({ name, bytes, password: name }),
   renameTranscript: v.strictObject({ transcript: id, name }),
   removeTranscript: v.strictObject({ transcript: id }),
   assignSpeaker: v.strictObject({

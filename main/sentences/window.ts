@@ -70,6 +70,19 @@ export const windowSentences = {
     `${quoted(s)} is no codebook; give a table whose first row has a column “name”, or a .qdc file.`,
   'nothing to take in': () =>
     'Each of these themes is in the study already, so nothing was taken in; choose others.',
+  'identifier gone': () =>
+    'What was found changed in the meantime; look at the list again, then decide.',
+  'no replacement': (s) =>
+    `There is nothing to put in place of ${quoted(s)}; type a stand-in first.`,
+  'no dates to move': () =>
+    'No full date is left to move; decide on the others one by one, or leave them.',
+  'no stand-ins': () => 'There are no stand-ins with names behind them; put some in first.',
+  'key password': () =>
+    'The password must have 8 to 1024 characters; type a longer one, and keep it apart from the file.',
+  'no key file': (s) =>
+    `${quoted(s)} is no key of stand-ins, or it is damaged; choose the file that was saved here.`,
+  'key stays closed': (s) =>
+    `${quoted(s)} does not open with this password; type it again, or use another copy of the file.`,
   'no files': () => 'No files were handed over; choose at least one.',
   'order out of date': () =>
     'The list of themes changed in the meantime; look at it again, then put it in order.',

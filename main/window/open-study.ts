@@ -5,6 +5,7 @@ import { randomIds } from '../ids.ts';
 import type { StudyFile, StudyFileFailure } from '../project/index.ts';
 import { sentenceFor } from '../sentences/sentences.ts';
 import { Kept } from './kept.ts';
+import { NamesNow } from './names-now.ts';
 import { knownReader } from './readers.ts';
 import { SearchIndex } from './search-index.ts';
 import { StudyNow } from './study-now.ts';
@@ -27,6 +28,7 @@ export class OpenStudy {
   readonly desk: Desk;
   readonly now: StudyNow;
   readonly search: SearchIndex;
+  readonly names: NamesNow;
   readonly accountName: string;
   /** Aborted when the study is closed, so that a fit of it ends. */
   readonly closing = new AbortController();
@@ -56,6 +58,7 @@ export class OpenStudy {
     });
     this.now = new StudyNow(this.desk);
     this.search = new SearchIndex(this.now);
+    this.names = new NamesNow(this.desk);
   }
 
   get study() {
@@ -111,6 +114,7 @@ export class OpenStudy {
   /** Ends what goes on here; the file stays open for whoever has it next. */
   leave(): void {
     this.closing.abort();
+    this.names.close();
   }
 
   #inWords(subject: string): string {

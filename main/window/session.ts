@@ -10,6 +10,7 @@ import { forgettingHandlers } from './forgetting.ts';
 import { gatheringHandlers } from './gathering.ts';
 import { headingHandlers } from './headings.ts';
 import { redoInWords, undoInWords } from './history.ts';
+import { identifierHandlers } from './identifiers.ts';
 import { mergePreview } from './merge-preview.ts';
 import { keepingHandlers } from './keeping.ts';
 import { recoveringHandlers } from './recovering.ts';
@@ -46,6 +47,7 @@ export function createSession(surroundings: Surroundings): Session {
     ...gatheringHandlers(room),
     ...fieldNoteHandlers(room),
     ...codebookHandlers(room),
+    ...identifierHandlers(room),
     ...fitHandlers(room),
     ...evidenceHandlers(room),
     ...splitHandlers(room),

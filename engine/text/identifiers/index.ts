@@ -7,4 +7,5 @@ export {
   type Scanned,
   type SearchedText,
 } from './names.ts';
+export { shiftDate } from './shift-date.ts';
 export { shapedIdentifiers, type Shaped } from './patterns.ts';

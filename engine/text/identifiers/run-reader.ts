@@ -56,6 +56,12 @@ const germanPlaceEnding =
   /.{3}(?:dorf|burg|berg|hausen|heim|stadt|ingen|hafen|feld|bach|kirchen|münde|stedt|rode|walde|brück|brücken|büttel|oog|siel|holm|fehn)$/u;
 const germanStreet = /.{3}(?:straße|strasse|gasse|allee)$/u;
 
+const motions = new Set(
+  'move moved moving go goes went going gone come comes came coming back over across drove drive sailed sail travelled travel flew fly walked walk ferry boat bus road'.split(
+    ' ',
+  ),
+);
+
 const streetJoints = new Set("de des du d' la le les l' del los las el".split(' '));
 
 /** A given name that is written small so often is a word of the language. */
@@ -206,7 +212,7 @@ export class RunReader {
     const found: Found[] = [];
     let afterGiven = false;
     for (const [index, { start, end, key: raw }] of words.entries()) {
-      const key = germanKey(raw, given);
+      const key = this.#isPlain(raw) ? raw : germanKey(raw, given);
       const own = evidence.get(raw);
       const noun =
         this.#isPlain(key) || (index === 0 && this.#cues.determiners.has(before[0] ?? ''));
@@ -310,6 +316,7 @@ export class RunReader {
       return this.#language === 'deu' ? this.#germanPlace(words) : 'place';
     }
     if (given || this.#language === 'deu') return null;
+    if (near === 'to' && motions.has(second) && !this.#isPlain(first.key)) return 'place';
     if (near === 'on' && !this.#isPlain(first.key) && this.#language === 'eng') return 'place';
     return known && (near === 'to' || near === 'from' || near === 'of') ? 'place' : null;
   }

@@ -44,6 +44,25 @@ const samples: { readonly [Name in Method]: Api[Name]['takes'] } = {
   gatherView: null,
   counted: null,
   transcriptView: { transcript: 't1' },
+  identifiers: null,
+  identifierPlaces: { key: 'person ruth' },
+  identifiersIn: { transcript: 't1' },
+  settleIdentifiers: {
+    settle: [
+      {
+        key: 'person ruth',
+        decision: 'stand-in',
+        replacement: 'Anna',
+        places: [{ transcript: 't1', start: 3, end: 7 }],
+      },
+      { key: 'place nes', decision: 'left', replacement: null, places: null },
+    ],
+    elsewhere: true,
+  },
+  reopenIdentifier: { identifier: 'i1' },
+  moveDates: null,
+  identifierKey: { password: 'long enough' },
+  readIdentifierKey: { name: 'key.json', bytes: new Uint8Array([1]), password: 'long enough' },
   renameTranscript: { transcript: 't1', name: 'One' },
   removeTranscript: { transcript: 't1' },
   assignSpeaker: {
