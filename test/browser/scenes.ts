@@ -350,6 +350,31 @@ export const scenes: readonly Scene[] = [
     },
   },
   {
+    name: 'gather-names',
+    reach: async (page) => {
+      await closeDialog(page);
+      await page.getByRole('tab', { name: /Names and numbers/u }).click();
+      await page.getByRole('heading', { name: /Names of persons/u }).waitFor();
+      await page.getByRole('button', { name: 'Read it' }).first().waitFor();
+    },
+  },
+  {
+    name: 'gather-names-all',
+    reach: async (page) => {
+      await button(page, 'Put stand-ins in …').click();
+      await page.getByRole('dialog').waitFor();
+    },
+  },
+  {
+    name: 'gather-names-key',
+    reach: async (page) => {
+      await closeDialog(page);
+      await page.getByRole('button', { name: 'More' }).click();
+      await page.getByRole('menuitem', { name: /Take a key in/u }).click();
+      await page.getByRole('dialog').waitFor();
+    },
+  },
+  {
     name: 'gather-participants',
     reach: async (page) => {
       await closeDialog(page);

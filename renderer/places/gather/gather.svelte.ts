@@ -12,7 +12,7 @@ import { counted } from '../../parts/counted.ts';
 import type { StudyState } from '../../state/study.svelte.ts';
 import type { LooseFile } from './loose-files.ts';
 
-export type Section = 'transcripts' | 'participants' | 'notes' | 'words';
+export type Section = 'transcripts' | 'names' | 'participants' | 'notes' | 'words';
 
 /** A codebook in hand: what is in it, and its file, which is asked for again when it is taken in. */
 export interface CodebookInHand {
@@ -53,6 +53,8 @@ export class GatherState {
   note = $state<string | null>(null);
   section = $state<Section>('transcripts');
   chosen = $state<string | null>(null);
+  /** The name, number or date that is looked at, by its key. */
+  identifier = $state<string | null>(null);
   onlyThoseThatNeedALook = $state(false);
 
   constructor(study: StudyState) {
