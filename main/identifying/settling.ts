@@ -43,7 +43,12 @@ export function settlingDrafts(
     for (const { transcript, start, end, form } of settling.places) {
       const own = byTranscript.get(transcript) ?? { rewordings: [], outside: [] };
       byTranscript.set(transcript, own);
-      own.rewordings.push({ start, end, words: inPlaceOf(form, settling.replacement ?? '') });
+      const words = inPlaceOf(form, settling.replacement ?? '');
+      own.rewordings.push({
+        start,
+        end,
+        words: hasDeterminer(textOf(transcript), start) ? words.replace(/^an? /u, '') : words,
+      });
       const turns = study.transcripts.get(transcript)?.turns ?? [];
       const isSaid = turns.some((turn) => turn.start <= start && end <= turn.end);
       if (!isSaid && !own.outside.includes(settling)) own.outside.push(settling);
@@ -60,6 +65,13 @@ export function settlingDrafts(
     drafts.push(...rewordingDrafts(study, transcript, textOf(id), apart(rewordings), relabel));
   }
   return drafts;
+}
+
+/** "the Harbour Trust" becomes "the organisation", not "the an organisation". */
+function hasDeterminer(text: string, at: number): boolean {
+  return /\b(?:the|an?|my|your|his|her|its|our|their|this|that)\s$/iu.test(
+    text.slice(Math.max(0, at - 8), at),
+  );
 }
 
 /** One after the other over names and memos, so that an edit takes up what the one before left. */

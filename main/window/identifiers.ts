@@ -36,7 +36,8 @@ export function identifierHandlers(
 
     identifierPlaces: room.look(async (open, { key }: { key: string }) => {
       const group = (await open.names.groups()).find((each) => each.key === key);
-      if (group === undefined) return refuse('identifier gone');
+      // Settled a moment ago, here or in another window: nothing of it is left to show.
+      if (group === undefined) return give({ places: [], elsewhere: [] });
       return give({
         places: placesOf(open, [group]),
         elsewhere: foundElsewhere(open.study, formsOf(group.places)),

@@ -74,7 +74,8 @@ function collect(
     const token = tokens[at]!;
     if (at === 0 || isBoundary(tokens[at - 1]!, token, cues, outside)) boundary = at;
     if (!token.capital) {
-      small.set(token.key, (small.get(token.key) ?? 0) + 1);
+      // What stands small in an address says nothing about the word.
+      if (!isInAddress(text, token)) small.set(token.key, (small.get(token.key) ?? 0) + 1);
       continue;
     }
     const words: Capital[] = [capitalOf(token)];
@@ -106,6 +107,12 @@ function collect(
     });
     at = last;
   }
+}
+
+function isInAddress(text: string, { start, end }: Span): boolean {
+  return (
+    /[@./_]/u.test(text.charAt(start - 1)) || /^(?:[@/_]|\.\p{L})/u.test(text.slice(end, end + 2))
+  );
 }
 
 function tokensOf(text: string, start: number, end: number): Token[] {

@@ -188,6 +188,18 @@ describe('identifiers in the window', () => {
     expect((await open(other)).get('person ruth')?.before).toEqual(['Anna']);
   });
 
+  it('read well behind an article', async () => {
+    const talk = 'Interviewer: Where?\nP01: I do the books for the Skarvoy Fishing Trust, I do.';
+    const table = await started(file('four.txt', talk));
+    const key = 'organisation skarvoy fishing trust';
+    const settle = [
+      { key, decision: 'generalised' as const, replacement: 'an organisation', places: null },
+    ];
+    await table.ask('settleIdentifiers', { settle, elsewhere: false });
+    expect(await textOf(table, 'four')).toContain('books for the organisation, I do');
+    expect(await table.ask('identifierPlaces', { key })).toEqual({ places: [], elsewhere: [] });
+  });
+
   it('refuse a stand-in of nothing, and what is no longer there', async () => {
     const table = await started(file('one.txt', first));
     const one = { key: 'person ruth', decision: 'stand-in' as const, places: null };

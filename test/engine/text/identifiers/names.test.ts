@@ -109,6 +109,13 @@ describe('names of places, organisations and other things', () => {
     ).toEqual(['place: Lantern Street', 'place: Isle of Sula', 'organisation: St Olaf’s School']);
   });
 
+  it('does not take a name for a word because an address writes it small', () => {
+    expect(found('Write to skarvoy.stores@example.org. I live in Skarvoy now.')).toEqual([
+      'e-mail: skarvoy.stores@example.org',
+      'place: Skarvoy',
+    ]);
+  });
+
   it('takes what a thing is called for another name', () => {
     expect(found('We had a dog called Bess and a boat called Morning Light.')).toEqual([
       'other name: Bess',
