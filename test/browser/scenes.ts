@@ -248,6 +248,9 @@ export const scenes: readonly Scene[] = [
     reach: async (page) => {
       await button(page, /^Table/u).click();
       await page.getByRole('menuitem', { name: 'Show the picture' }).click();
+      // Words that are pinned are not divided.
+      await button(page, 'Unpin').click();
+      await button(page, 'Pin').waitFor();
       await fromMore(page, 'Split in two …');
       await page.getByRole('heading', { name: 'A new candidate' }).waitFor({ timeout: 60_000 });
     },
