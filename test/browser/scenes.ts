@@ -250,7 +250,7 @@ export const scenes: readonly Scene[] = [
       await page.getByRole('menuitem', { name: 'Show the picture' }).click();
       // Words that are pinned are not divided.
       await button(page, 'Unpin').click();
-      await button(page, 'Pin').waitFor();
+      await page.getByRole('button', { name: 'Pin', exact: true }).waitFor();
       await fromMore(page, 'Split in two …');
       await page.getByRole('heading', { name: 'A new candidate' }).waitFor({ timeout: 60_000 });
     },
