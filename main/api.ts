@@ -91,10 +91,31 @@ export interface RecoveryView {
   readonly leftOut: readonly string[];
 }
 
+/** A study that waits for its password. Nothing of what is in it is told. */
+export interface LockedStudy {
+  /** It is being opened; nobody was there for a while; somebody asked for it. */
+  readonly why: 'opening' | 'idle' | 'asked';
+  /** While it is being opened: its file's name without the ending, and its folder. Else null. */
+  readonly name: string | null;
+  readonly folder: string | null;
+}
+
+/** How the open study is locked, and what goes with it. */
+export interface PasswordView {
+  readonly hasPassword: boolean;
+  /** Minutes without a sign of a person until a study with a password is locked; 0: never. */
+  readonly idleMinutes: number;
+  readonly idleChoices: readonly number[];
+  /** Characters that a new password must have. */
+  readonly shortest: number;
+}
+
 /** What the frame shows on every place. */
 export interface Overview {
   readonly study: { readonly id: string; readonly name: string; readonly path: string | null };
   readonly readOnly: boolean;
+  /** Whether the study's file has a password. */
+  readonly hasPassword: boolean;
   /** ISO 8601 in UTC: when the last decision reached the drive. */
   readonly savedAt: string | null;
   /** Goes up with every decision: a view with another number is out of date. */
@@ -1163,7 +1184,11 @@ export interface Api {
 
   openDemo: { takes: null; gives: Overview };
   /** `path` null: ask with the system's dialog, or use the studies folder. Null where cancelled. */
-  startStudy: { takes: { name: string; path: string | null }; gives: Overview | null };
+  startStudy: {
+    takes: { name: string; path: string | null; password?: string | undefined };
+    gives: Overview | null;
+  };
+  /** Refused with the code 'locked' where it needs a password: `lockedStudy` and `unlockStudy`. */
   openStudy: {
     takes: {
       path: string | null;
@@ -1173,6 +1198,22 @@ export interface Api {
     };
     gives: Overview | null;
   };
+  /** The study that waits for its password; null where none does. */
+  lockedStudy: { takes: null; gives: LockedStudy | null };
+  unlockStudy: { takes: { password: string }; gives: Overview };
+  /** No longer asks for the password; what was open before is open still. */
+  leaveLocked: { takes: null; gives: Overview | null };
+  /** Closes a study with a password and asks for it; a running fit is stopped. */
+  lockStudy: { takes: null; gives: null };
+  /** A person moved, typed or clicked. */
+  stillHere: { takes: null; gives: null };
+  passwordView: { takes: null; gives: PasswordView };
+  /** Sets, changes or (next null) removes the password; `current` is null where there is none. */
+  setPassword: {
+    takes: { current: string | null; next: string | null };
+    gives: { overview: Overview; /** What else a person should know. */ notes: readonly string[] };
+  };
+  setIdleMinutes: { takes: { minutes: number }; gives: PasswordView };
   closeStudy: { takes: null; gives: null };
   /**
    * Copies the open study to another place. `path` null: ask with the system's dialog, or beside it.
@@ -1459,9 +1500,18 @@ export interface Events {
   refining: { readonly fraction: number | null; readonly said: string | null };
   /** Something that nobody asked about went wrong, in a sentence; decisions are safe all the same. */
   caution: string;
+  /** A study waits for its password: nothing of the one that was shown may stay on screen. */
+  locked: LockedStudy;
   /** A menu item was chosen; the window carries it out. */
   command:
-    'undo' | 'redo' | 'find' | 'start study' | 'open study' | 'add transcripts' | 'close study';
+    | 'undo'
+    | 'redo'
+    | 'find'
+    | 'start study'
+    | 'open study'
+    | 'add transcripts'
+    | 'lock study'
+    | 'close study';
 }
 
 /** One line of what can travel, so that the three parts that are derived from it agree. */
@@ -1472,6 +1522,14 @@ export const methods = [
   'openDemo',
   'startStudy',
   'openStudy',
+  'lockedStudy',
+  'unlockStudy',
+  'leaveLocked',
+  'lockStudy',
+  'stillHere',
+  'passwordView',
+  'setPassword',
+  'setIdleMinutes',
   'closeStudy',
   'copyStudy',
   'backupsView',

@@ -109,7 +109,9 @@ class CarriedLink implements WindowLink {
   async #catchUp(): Promise<void> {
     const answer = await this.call('overview', null);
     if (!('value' in answer)) return;
-    if (answer.value === null) this.#tell('closed', null);
+    const locked = await this.call('lockedStudy', null);
+    if ('value' in locked && locked.value !== null) this.#tell('locked', locked.value);
+    else if (answer.value === null) this.#tell('closed', null);
     else this.#tell('changed', answer.value);
   }
 

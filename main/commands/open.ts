@@ -1,9 +1,10 @@
 import { resolve } from 'node:path';
 import { Desk } from '../desk.ts';
 import { derivedIds, hashOf, type MintId } from '../ids.ts';
-import { openStudyFile, type StudyFile } from '../project/index.ts';
+import { openStudyFile, type Result, type StudyFile } from '../project/index.ts';
 import { sentenceFor } from '../sentences/sentences.ts';
 import { BufferedStore } from '../store.ts';
+import { givenPassword } from './password.ts';
 import { Stop, type Terminal } from './terminal.ts';
 
 export interface OpenStudy {
@@ -21,7 +22,7 @@ export async function openStudy(
   terminal: Terminal,
   { readOnly, call }: { readonly readOnly: boolean; readonly call: unknown },
 ): Promise<OpenStudy> {
-  const opened = await openStudyFile(resolve(terminal.folder, path), { readOnly });
+  const opened = await openFile(resolve(terminal.folder, path), terminal, readOnly);
   if (!opened.ok) throw new Stop(sentenceFor({ ...opened, path }));
   const file = opened.value;
   const store = new BufferedStore(file);
@@ -39,6 +40,27 @@ export async function openStudy(
     throw error;
   }
   return { desk, store, file };
+}
+
+const tries = 3;
+
+/** With the password that was given; else with one that is typed, where somebody can. */
+async function openFile(
+  path: string,
+  terminal: Terminal,
+  readOnly: boolean,
+): Promise<Result<StudyFile>> {
+  const given = await givenPassword(terminal);
+  let opened = await openStudyFile(path, { readOnly, password: given ?? undefined });
+  const ask = terminal.password?.ask ?? null;
+  for (let time = 0; ask !== null && given === null && time < tries; time++) {
+    if (opened.ok || (opened.code !== 'locked' && opened.code !== 'wrong password')) break;
+    if (time > 0) terminal.err('That is not the password.\n');
+    const password = await ask('Password of the study: ');
+    if (password === null) throw new Stop('Stopped: nothing was written.');
+    opened = await openStudyFile(path, { readOnly, password });
+  }
+  return opened;
 }
 
 function contentHash({ study }: Desk): string {

@@ -1,3 +1,13 @@
+/** Where a command gets the password of a locked study from. */
+export interface PasswordSource {
+  /** The file given with --password-file, as it was typed; null without one. */
+  readonly file: string | null;
+  /** What the environment says; null where it says nothing. */
+  readonly environment: string | null;
+  /** Asks without showing what is typed; null where nobody can type. */
+  readonly ask: ((question: string) => Promise<string | null>) | null;
+}
+
 /** Where a command reads its paths from and writes its lines to. */
 export interface Terminal {
   /** Paths are meant from here. */
@@ -9,6 +19,8 @@ export interface Terminal {
   readonly now: () => string;
   /** Aborted when a person asks the command to stop. */
   readonly signal: AbortSignal;
+  /** Where passwords come from; from nowhere unless told. */
+  readonly password?: PasswordSource;
 }
 
 /** 0 done, 1 could not be done, 2 the command was not understood; `verify` says 3 for: cannot tell. */

@@ -10,10 +10,10 @@ import { findFiles, type FoundFile } from '../gather/find-files.ts';
 import { gather, labelsNotFound } from '../gather/gather.ts';
 import type { SkippedFile } from '../gather/source-file.ts';
 import { isInside } from '../is-inside.ts';
-import { derivedIds, hashOf } from '../ids.ts';
+import { derivedIds, hashOf, randomIds } from '../ids.ts';
 import { emptyPlan } from '../plan.ts';
 import { decode, readCsv } from '../formats/index.ts';
-import { createStudyFile } from '../project/index.ts';
+import { createStudyFile, passwordFault } from '../project/index.ts';
 import { sentenceFor, sentenceForSkipped, type FileRefusal } from '../sentences/sentences.ts';
 import { BufferedStore } from '../store.ts';
 import { refuse } from './refuse.ts';
@@ -22,6 +22,7 @@ import { gatherTables } from './answers.ts';
 import { keepFieldNotes, takeInCodebook } from './beside.ts';
 import { readOptions, usageStop, wholeNumber } from './options.ts';
 import { outputFiles } from './outputs.ts';
+import { givenPassword } from './password.ts';
 import { readPlan } from './plan-file.ts';
 import { ProgressLine, Stop, stopIfAsked, type ExitCode, type Terminal } from './terminal.ts';
 import { checkFolder, stageFiles } from './write-files.ts';
@@ -75,6 +76,11 @@ export async function theme(words: readonly string[], terminal: Terminal): Promi
   await checkFolder(out);
   const saveTo = values.save === undefined ? null : resolve(terminal.folder, values.save);
   if (saveTo !== null) await checkSave(saveTo, out);
+  const password = saveTo === null ? null : await givenPassword(terminal);
+  const fault = password === null ? null : passwordFault(password);
+  if (fault !== null) {
+    throw new Stop(sentenceFor({ ok: false, code: `password ${fault}`, path: saveTo ?? '' }));
+  }
   const given = [values.plan, values.save, values.codebook, ...(values.notes ?? [])].flatMap(
     (path) => (path === undefined ? [] : [resolve(terminal.folder, path)]),
   );
@@ -150,7 +156,7 @@ export async function theme(words: readonly string[], terminal: Terminal): Promi
   const keep = [...found.map(({ path }) => path), ...given];
   const staged = await stageFiles(out, outputs, keep);
   try {
-    if (saveTo !== null) await save(desk, store, saveTo);
+    if (saveTo !== null) await save(store, saveTo, password);
     try {
       await staged.commit();
     } catch (error) {
@@ -187,8 +193,10 @@ export function sayUnheard(
   }
 }
 
-async function save(desk: Desk, store: BufferedStore, path: string): Promise<void> {
-  const created = await createStudyFile(path, { studyId: desk.study.id });
+async function save(store: BufferedStore, path: string, password: string | null): Promise<void> {
+  // The file says its id to anybody, and one that followed from the transcripts would confirm a guess.
+  const studyId = randomIds('study');
+  const created = await createStudyFile(path, { studyId, password: password ?? undefined });
   if (!created.ok) throw new Stop(sentenceFor(created));
   const written = store.flush(created.value);
   created.value.close();

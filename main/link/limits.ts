@@ -8,6 +8,8 @@ export const limits = {
   files: 2000,
   /** Code units of a name, a word, an id, a label. */
   name: 1000,
+  /** Code units of a password. */
+  password: 4096,
   /** Code units of a path. */
   path: 32_768,
   /** Code units of a memo or a part of a definition. */

@@ -4,6 +4,7 @@ import { limits } from './limits.ts';
 
 const name = v.pipe(v.string(), v.maxLength(limits.name));
 const path = v.pipe(v.string(), v.minLength(1), v.maxLength(limits.path));
+const password = v.pipe(v.string(), v.maxLength(limits.password));
 const text = v.pipe(v.string(), v.maxLength(limits.text));
 const id = v.pipe(v.string(), v.minLength(1), v.maxLength(limits.name));
 const offset = v.pipe(v.number(), v.safeInteger(), v.minValue(0));
@@ -99,11 +100,21 @@ export const payloads = {
   overview: nothing,
 
   openDemo: nothing,
-  startStudy: v.strictObject({ name, path: v.nullable(path) }),
+  startStudy: v.strictObject({ name, path: v.nullable(path), password: v.optional(password) }),
   openStudy: v.strictObject({
     path: v.nullable(path),
     readOnly: v.boolean(),
     despiteNote: v.optional(v.boolean()),
+  }),
+  lockedStudy: nothing,
+  unlockStudy: v.strictObject({ password }),
+  leaveLocked: nothing,
+  lockStudy: nothing,
+  stillHere: nothing,
+  passwordView: nothing,
+  setPassword: v.strictObject({ current: v.nullable(password), next: v.nullable(password) }),
+  setIdleMinutes: v.strictObject({
+    minutes: v.pipe(v.number(), v.safeInteger(), v.minValue(0), v.maxValue(60)),
   }),
   closeStudy: nothing,
   copyStudy: v.strictObject({ path: v.nullable(path), goOn: v.boolean() }),

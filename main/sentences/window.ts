@@ -4,6 +4,10 @@ const quoted = (subject: string): string => `“${subject}”`;
 
 /** What only a window can ask for and cannot have: why, and what to do instead. */
 export const windowSentences = {
+  'wrong password': () =>
+    'That is not the password; check capital letters and the keyboard’s language, then try again.',
+  'no password': () => 'The study has no password yet; set one in the menu Study, under Password.',
+  'no such idle time': () => 'That is no time that can be chosen; choose one from the list.',
   'no study': () => 'No study is open; start one, or open one.',
   'no dialog': () => 'The system’s file dialog cannot be shown here; type where the study is.',
   'no dialog to save': () =>

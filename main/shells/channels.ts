@@ -12,6 +12,7 @@ export const eventNames = [
   'closed',
   'refining',
   'caution',
+  'locked',
   'command',
 ] as const satisfies (keyof Events)[];
 

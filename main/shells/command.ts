@@ -3,12 +3,14 @@ import { endingOf } from '../commands/fault.ts';
 import { sealCommand, sealUsage, withdrawCommand, withdrawUsage } from '../commands/forgetting.ts';
 import { howMany, howManyUsage } from '../commands/how-many.ts';
 import { moved, movedUsage } from '../commands/moved.ts';
+import { passwordVariable, takePasswordFile } from '../commands/password.ts';
 import { refit, refitUsage } from '../commands/refit.ts';
 import { steady, steadyUsage } from '../commands/steady.ts';
 import type { ExitCode, Terminal } from '../commands/terminal.ts';
 import { theme, themeUsage } from '../commands/theme.ts';
 import { trail, trailUsage } from '../commands/trail.ts';
 import { verifyStudy, verifyUsage } from '../commands/verify.ts';
+import { askHidden } from './hidden-prompt.ts';
 
 type Command = (words: readonly string[], terminal: Terminal) => Promise<ExitCode>;
 
@@ -51,6 +53,10 @@ const help = `Understory: theme and code interview transcripts on this machine a
   ${sealUsage}
       erases the originals behind stand-ins for good; says first what goes
 
+A study with a password: --password-file FILE (its first line) goes with every command, or the
+environment variable UNDERSTORY_PASSWORD; without either it is asked for. With either, theme --save
+locks the study that it writes.
+
 Run it as: npm run -s understory -- theme resources/demo --themes 12 --seed 1 --out demo-themes
 `;
 
@@ -69,6 +75,11 @@ export async function run(words: readonly string[], folder: string): Promise<Exi
       rewrites: process.stderr.isTTY === true,
       now: clockTime,
       signal: stop.signal,
+      password: {
+        file: null,
+        environment: process.env[passwordVariable] || null,
+        ask: process.stdin.isTTY === true ? askHidden : null,
+      },
     });
   } finally {
     process.removeListener('SIGINT', onInterrupt);
@@ -88,7 +99,9 @@ export async function runIn(words: readonly string[], terminal: Terminal): Promi
     return 2;
   }
   try {
-    return await commands[name](rest, terminal);
+    const { words: own, file } = takePasswordFile(rest);
+    const { environment = null, ask = null } = terminal.password ?? {};
+    return await commands[name](own, { ...terminal, password: { file, environment, ask } });
   } catch (error) {
     const { sentence, exitCode } = endingOf(error);
     terminal.err(`${sentence}\n`);

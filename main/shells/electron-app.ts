@@ -6,6 +6,7 @@ import {
   ipcMain,
   Menu,
   nativeTheme,
+  powerMonitor,
   protocol,
   screen,
   session as sessions,
@@ -13,6 +14,7 @@ import {
 import { methods, type Events } from '../api.ts';
 import { backupStore } from '../backup-settings.ts';
 import { faultLog, Line } from '../link/index.ts';
+import { lockSettings } from '../lock-settings.ts';
 import type { Session, Surroundings } from '../window/session-types.ts';
 import { accountName } from './account-name.ts';
 import {
@@ -106,6 +108,10 @@ class ElectronShell {
     serveApp(pages, new StaticFiles(this.#places.window));
     this.#session = this.#createSession(this.#surroundings());
     this.#answerWindows();
+    // Whoever locks the screen, or shuts the lid, has left the table.
+    for (const event of ['lock-screen', 'suspend'] as const) {
+      powerMonitor.on(event as 'suspend', () => void this.#session?.lock());
+    }
     Menu.setApplicationMenu(
       Menu.buildFromTemplate(
         menuTemplate({
@@ -177,6 +183,7 @@ class ElectronShell {
       recent: recentPaths(this.#settings('recent.json')),
       backups: backupStore(this.#settings('backups.json')),
       machine: machineSettings(this.#settings('machine.json')),
+      lock: lockSettings(this.#settings('lock.json')),
       demoFolder: this.#places.demo,
       now: () => new Date().toISOString(),
       readerName: accountName(),
@@ -193,8 +200,9 @@ class ElectronShell {
         { path, readOnly: false },
         { onProgress: () => undefined, signal: new AbortController().signal },
       );
-      // The window may not be there yet to say it.
-      if ('refused' in answer) dialog.showErrorBox('Understory', answer.refused);
+      // The window may not be there yet to say it; it asks for a password by itself.
+      if ('refused' in answer && answer.code !== 'locked')
+        dialog.showErrorBox('Understory', answer.refused);
     } catch (error) {
       this.#fault('openStudy', error);
     }

@@ -2,7 +2,9 @@ import { join } from 'node:path';
 import { createInterface } from 'node:readline';
 import { version } from '../../package.json';
 import { backupStore } from '../backup-settings.ts';
+import type { Answer, Refused } from '../api.ts';
 import { faultLog } from '../link/index.ts';
+import { lockSettings } from '../lock-settings.ts';
 import { createSession } from '../window/session.ts';
 import type { Session, Surroundings } from '../window/session-types.ts';
 import { accountName } from './account-name.ts';
@@ -70,7 +72,12 @@ async function openFirst({ handlers }: Session, path: string): Promise<void> {
     { onProgress: () => undefined, signal: new AbortController().signal },
   );
   // The window opens all the same, and offers other studies.
-  if ('refused' in answer) say(answer.refused);
+  if (isRefusedAloud(answer)) say(answer.refused);
+}
+
+/** The window itself asks for the password of a locked study. */
+function isRefusedAloud(answer: Answer<unknown>): answer is Refused {
+  return 'refused' in answer && answer.code !== 'locked';
 }
 
 /** How long a browser may take to come to the address, in milliseconds. */
@@ -114,6 +121,7 @@ function surroundings(demoFolder: string, settings: string, comeForward: () => v
     recent: recentPaths(join(settings, 'recent.json')),
     backups: backupStore(join(settings, 'backups.json')),
     machine: machineSettings(join(settings, 'machine.json')),
+    lock: lockSettings(join(settings, 'lock.json')),
     demoFolder,
     now: () => new Date().toISOString(),
     readerName: accountName(),

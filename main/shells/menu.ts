@@ -38,6 +38,7 @@ export function menuTemplate({
       line,
       item('Add transcripts…', 'CmdOrCtrl+I', 'add transcripts'),
       line,
+      item('Lock now', 'CmdOrCtrl+L', 'lock study'),
       item('Close study', 'CmdOrCtrl+Shift+W', 'close study'),
       { role: mac ? 'close' : 'quit' },
     ],

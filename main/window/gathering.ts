@@ -51,7 +51,7 @@ export function gatheringHandlers(
   const { dialogs } = room.surroundings;
   return {
     chooseTranscripts: room.look<null, GatherOutcome | null>(async (open, _, context) => {
-      const paths = dialogs === null ? null : await dialogs.chooseTranscripts();
+      const paths = dialogs === null ? null : await room.away(dialogs.chooseTranscripts());
       if (paths === null || paths.length === 0) return give(null);
       const { found, missed } = await findFiles(paths, '/');
       const outcome = await add(room, open, found, (fraction) => {

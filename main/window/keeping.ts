@@ -113,17 +113,16 @@ export function keepingHandlers(
 
     compactView: room.look<null, CompactView>((open) => give(compactView(open))),
 
-    compactStudy: (takes, context) =>
+    compactStudy: () =>
       room.inTurn(() =>
-        room.look<null, CompactView>(async (open) => {
-          if (open.fitting) return refuse('fit running');
+        room.alone<CompactView>(async (open) => {
           const { goes } = compactView(open);
           const unused = unusedRecords(open.study, open.desk.entries, open.file.records);
           const done = await open.file.compact(unused.records.map(({ sequence }) => sequence));
           if (open.file.closed) return closedByFault(room, open);
           if (!done.ok) return { code: done.code, refused: sentenceFor(done) };
           return give({ ...done.value, goes });
-        })(takes, context),
+        }),
       ),
   };
 }

@@ -1,9 +1,8 @@
 import { existsSync } from 'node:fs';
 import { mkdir } from 'node:fs/promises';
-import { homedir } from 'node:os';
-import { basename, dirname, isAbsolute, join, resolve, sep } from 'node:path';
+import { basename, dirname, isAbsolute, join, resolve } from 'node:path';
 import { editKinds } from '../../engine/study/index.ts';
-import type { Answer, Overview, RecentStudy, Refused } from '../api.ts';
+import type { Answer, Overview, Refused } from '../api.ts';
 import { randomIds } from '../ids.ts';
 import {
   bringForward,
@@ -13,6 +12,7 @@ import {
   type OpenOptions,
   type StudyFile,
   type StudyFileFailure,
+  type StudyFileOptions,
 } from '../project/index.ts';
 import { sentenceFor } from '../sentences/sentences.ts';
 import { upcast } from '../upcast.ts';
@@ -22,11 +22,10 @@ import { safeFileName } from './file-names.ts';
 import { firstEdits } from './first-edits.ts';
 import { OpenStudy, startGroup } from './open-study.ts';
 import { overview } from './overview.ts';
+import { asRecent, lockedStudy, studyEnding as ending } from './recent-study.ts';
 import { faultInWords, type Room } from './room.ts';
 import type { CallContext, Handlers } from './session-types.ts';
 import { folderFailure } from './write-file.ts';
-
-const ending = '.understory';
 
 export function openingHandlers(
   room: Room,
@@ -54,28 +53,29 @@ export function openingHandlers(
 
     openDemo: (_, context) => room.inTurn(() => openDemo(room, context)),
 
-    startStudy: ({ name, path }) =>
-      room.inTurn(async () => {
-        const title = name.trim();
-        if (title === '') return { code: 'empty name', refused: sentenceFor(emptyName) };
-        let place = path;
-        if (place === null && dialogs !== null) {
-          place = await dialogs.placeStudy(safeFileName(title));
-          if (place === null) return give(null);
-        }
-        return startStudy(room, title, placeOf(place ?? safeFileName(title), about.studiesFolder));
-      }),
+    // A dialog that nobody answers must not keep a study from being locked, so it has no turn.
+    startStudy: async ({ name, path, password }) => {
+      const title = name.trim();
+      if (title === '') return { code: 'empty name', refused: sentenceFor(emptyName) };
+      let place = path;
+      if (place === null && dialogs !== null) {
+        place = await dialogs.placeStudy(safeFileName(title));
+        if (place === null) return give(null);
+      }
+      const file = placeOf(place ?? safeFileName(title), about.studiesFolder);
+      return room.inTurn(() => startStudy(room, title, file, password));
+    },
 
-    openStudy: ({ path, readOnly, despiteNote = false }) =>
-      room.inTurn(async () => {
-        let place = path;
-        if (place === null) {
-          if (dialogs === null) return refuse('no dialog');
-          place = await dialogs.chooseStudy();
-          if (place === null) return give(null);
-        }
-        return openStudy(room, placeOf(place, about.studiesFolder, ''), readOnly, { despiteNote });
-      }),
+    openStudy: async ({ path, readOnly, despiteNote = false }) => {
+      let place = path;
+      if (place === null) {
+        if (dialogs === null) return refuse('no dialog');
+        place = await dialogs.chooseStudy();
+        if (place === null) return give(null);
+      }
+      const file = placeOf(place, about.studiesFolder, '');
+      return room.inTurn(() => openStudy(room, file, readOnly, { despiteNote }));
+    },
 
     closeStudy: () =>
       room.inTurn(async () => {
@@ -112,19 +112,28 @@ export async function openStudy(
   const opened = await openStudyFile(path, { readOnly, ...options, ...knock(room) });
   if (!opened.ok) {
     if (opened.code === 'not found') await surroundings.recent.remove(path);
+    if (opened.code === 'locked') {
+      room.wanted = { path, readOnly, why: 'opening' };
+      room.tell('locked', lockedStudy(room.wanted));
+    }
     return notOpened(opened, path);
   }
   return take(room, opened.value);
 }
 
-async function notOpened(failure: StudyFileFailure, path: string): Promise<Refused> {
+export async function notOpened(failure: StudyFileFailure, path: string): Promise<Refused> {
   if (failure.code === 'open elsewhere' && (await bringForward(path))) {
     return { ...refuse('shown forward', basename(path, ending)), code: failure.code };
   }
   return { code: failure.code, refused: sentenceFor(failure), path };
 }
 
-async function startStudy(room: Room, name: string, path: string): Promise<Answer<Overview>> {
+async function startStudy(
+  room: Room,
+  name: string,
+  path: string,
+  password: string | undefined,
+): Promise<Answer<Overview>> {
   const { readerName, now } = room.surroundings;
   try {
     await mkdir(dirname(path), { recursive: true });
@@ -133,7 +142,7 @@ async function startStudy(room: Room, name: string, path: string): Promise<Answe
     return { code: failure.code, refused: sentenceFor(failure) };
   }
   const id = randomIds('study');
-  const created = await createStudyFile(path, { studyId: id }, knock(room));
+  const created = await createStudyFile(path, { studyId: id, password }, knock(room));
   if (!created.ok) return { code: created.code, refused: sentenceFor(created) };
   const open = new OpenStudy(created.value, { accountName: readerName, now });
   const made = open.desk.make(firstEdits(id, name, open.reader), { group: startGroup });
@@ -145,7 +154,7 @@ async function startStudy(room: Room, name: string, path: string): Promise<Answe
 }
 
 /** Reads the trail of a file and shows its study in place of the one before. */
-async function take(room: Room, file: StudyFile): Promise<Answer<Overview>> {
+export async function take(room: Room, file: StudyFile): Promise<Answer<Overview>> {
   const { readerName, now } = room.surroundings;
   const open = new OpenStudy(file, { accountName: readerName, now });
   const fault = load(open);
@@ -194,6 +203,7 @@ function load({ desk, file }: OpenStudy): Refused | null {
 async function enter(room: Room, open: OpenStudy): Promise<Answer<Overview>> {
   closeStudy(room, { quietly: true });
   room.open = open;
+  room.seen();
   await room.surroundings.recent.add(open.file.path);
   try {
     return await room.afterwards(open);
@@ -206,7 +216,12 @@ async function enter(room: Room, open: OpenStudy): Promise<Answer<Overview>> {
 
 export function closeStudy(room: Room, { quietly = false } = {}): void {
   const { open } = room;
-  if (open === null) return;
+  const { wanted } = room;
+  room.wanted = null;
+  if (open === null) {
+    if (wanted !== null && !quietly) room.tell('closed', null);
+    return;
+  }
   room.open = null;
   room.backups.beforeClosing(open);
   open.close();
@@ -251,9 +266,12 @@ function nameReader(open: OpenStudy, name: string): Refused | null {
   return null;
 }
 
-function knock({ surroundings }: Room): { readonly onSecondOpen?: () => void } {
-  const { comeForward } = surroundings;
-  return comeForward === undefined ? {} : { onSecondOpen: comeForward };
+export function knock({ surroundings }: Room): StudyFileOptions {
+  const { comeForward, keyWork } = surroundings;
+  return {
+    ...(comeForward === undefined ? {} : { onSecondOpen: comeForward }),
+    ...(keyWork === undefined ? {} : { work: keyWork }),
+  };
 }
 
 function placeOf(path: string, folder: string, otherwise: string = ending): string {
@@ -263,22 +281,6 @@ function placeOf(path: string, folder: string, otherwise: string = ending): stri
 
 function samePath(a: string, b: string): boolean {
   return resolve(a) === resolve(b);
-}
-
-function asRecent(path: string): RecentStudy {
-  const folder = dirname(path);
-  const home = homedir();
-  return {
-    path,
-    name: basename(path, ending),
-    folder:
-      folder === home
-        ? '~'
-        : folder.startsWith(home + sep)
-          ? `~${folder.slice(home.length)}`
-          : folder,
-    missing: !existsSync(path),
-  };
 }
 
 const noContext: CallContext = { onProgress: () => {}, signal: new AbortController().signal };

@@ -25,6 +25,7 @@ export function overview(open: OpenStudy): Overview {
   return {
     study: { id: study.id, name: study.name, path: file.path },
     readOnly: file.readOnly,
+    hasPassword: file.locked,
     savedAt: lastOf(now.trail.values())?.at ?? null,
     revision: study.sequence,
     transcripts: study.transcripts.size,

@@ -55,7 +55,7 @@ export function reportHandlers(
     saveFile: async ({ fileName, bytes }) => {
       const { dialogs } = room.surroundings;
       if (dialogs === null) return refuse('no dialog to save');
-      const path = await dialogs.placeFile(fileName);
+      const path = await room.away(dialogs.placeFile(fileName));
       if (path === null) return give(null);
       const failure = await writeWholeFile(path, bytes);
       return failure === null ? give(path) : { code: failure.code, refused: sentenceFor(failure) };

@@ -1,5 +1,7 @@
 import type { BackupStore } from '../backup-settings.ts';
 import type { About, Answer, Api, Events, FitProgress, Method, Overview } from '../api.ts';
+import type { LockSettings } from '../lock-settings.ts';
+import type { DerivationWork } from '../project/index.ts';
 
 /** What a call brings along besides its payload. */
 export interface CallContext {
@@ -52,6 +54,10 @@ export interface Surroundings {
   readonly now: () => string;
   /** Characters times themes from which a fit from scratch shows a quick answer first. */
   readonly quickFrom?: number;
+  /** How studies with a password are locked on this machine; for this run alone unless told. */
+  readonly lock?: LockSettings;
+  /** How dear keys are made; the usual unless told, for tests. */
+  readonly keyWork?: DerivationWork;
   /** The name that a reader gets until one is typed. */
   readonly readerName: string;
   /** Brings this window to the front: somebody opened its study a second time. */
@@ -66,6 +72,8 @@ export interface Session {
   ) => () => void;
   /** Opens a study that the system handed over (a double-clicked file); a refusal is to be shown. */
   readonly openPath: (path: string) => Promise<Answer<Overview> | void>;
+  /** Locks the open study where it has a password and the machine locks studies by itself. */
+  readonly lock: () => Promise<void>;
   /** Closes the open study; safe to call twice. */
   readonly close: () => Promise<void>;
 }

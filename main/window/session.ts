@@ -16,6 +16,7 @@ import { keepingHandlers } from './keeping.ts';
 import { recoveringHandlers } from './recovering.ts';
 import { movedFloor } from './moved-floor.ts';
 import { closeStudy, openingHandlers, openStudy } from './opening.ts';
+import { lockingHandlers, lockStudy, watchIdle } from './locking.ts';
 import type { OpenStudy } from './open-study.ts';
 import { provingHandlers } from './proving.ts';
 import { readingHandlers } from './reading.ts';
@@ -40,10 +41,12 @@ import { wordView } from './word-view.ts';
 /** One window at work on one study at a time: answers every method of the api. */
 export function createSession(surroundings: Surroundings): Session {
   const room = new Room(surroundings);
+  const endWatch = watchIdle(room);
   const handlers: Handlers = {
     ...openingHandlers(room),
     ...keepingHandlers(room),
     ...recoveringHandlers(room),
+    ...lockingHandlers(room),
     ...gatheringHandlers(room),
     ...fieldNoteHandlers(room),
     ...codebookHandlers(room),
@@ -79,8 +82,13 @@ export function createSession(surroundings: Surroundings): Session {
     handlers,
     on: (event, listener) => room.on(event, listener),
     openPath: (path) => room.inTurn(() => openStudy(room, path, false)),
+    lock: () =>
+      room.inTurn(async () => {
+        if (room.lock.idleMinutes() > 0) lockStudy(room, 'idle');
+      }),
     close: () =>
       room.inTurn(async () => {
+        endWatch();
         closeStudy(room);
       }),
   };

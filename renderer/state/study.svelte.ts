@@ -3,6 +3,7 @@ import type {
   Api,
   FitProgress,
   Link,
+  LockedStudy,
   Method,
   Overview,
   PassagePlace,
@@ -48,6 +49,9 @@ export class StudyState {
   readonly link: Watched;
   #overview = $state.raw<Overview | null>(null);
   #message = $state.raw<Message | null>(null);
+  #locked = $state.raw<LockedStudy | null>(null);
+  #placeBefore: PlaceName | null = null;
+  #lastSign = -Infinity;
   #progress = $state.raw<readonly FitProgress[] | null>(null);
   #refining = $state<number | null>(null);
   #fitting: AbortController | null = null;
@@ -82,16 +86,25 @@ export class StudyState {
         if (said !== null) this.say('caution', said);
       }),
       this.link.on('caution', (sentence) => this.say('caution', sentence)),
+      this.link.on('locked', (locked) => this.#lock(locked)),
       this.link.onConnection?.((connection) => this.#connected(connection)) ?? (() => {}),
     ];
     void this.ask('overview', null).then((overview) => {
       if (overview !== undefined) this.#overview = overview;
+    });
+    void this.ask('lockedStudy', null).then((locked) => {
+      if (locked !== undefined && locked !== null) this.#lock(locked);
     });
     return () => ends.forEach((end) => end());
   }
 
   get overview(): Overview | null {
     return this.#overview;
+  }
+
+  /** The study that waits for its password; null where none does. */
+  get locked(): LockedStudy | null {
+    return this.#locked;
   }
 
   get revision(): number {
@@ -150,7 +163,10 @@ export class StudyState {
       const answer = await this.link.call(method, takes, options);
       if ('value' in answer) return answer.value;
       this.#refusal = answer;
-      this.say('refused', answer.refused);
+      // What waits for a password has a page of its own; what was closed by the lock has no answer.
+      const silent =
+        answer.code === 'locked' || (answer.code === 'no study' && this.#locked !== null);
+      if (!silent) this.say('refused', answer.refused);
       return undefined;
     } finally {
       this.#busy--;
@@ -195,7 +211,7 @@ export class StudyState {
   }
 
   /** Opens, starts or shows a study; true where one is open afterwards. */
-  async enter<Name extends 'openDemo' | 'openStudy' | 'startStudy' | 'openBackup'>(
+  async enter<Name extends 'openDemo' | 'openStudy' | 'startStudy' | 'openBackup' | 'unlockStudy'>(
     method: Name,
     takes: Api[Name]['takes'],
   ): Promise<boolean> {
@@ -213,11 +229,14 @@ export class StudyState {
   show(overview: Overview, stay = false): void {
     this.trouble = null;
     this.#overview = overview;
+    this.#locked = null;
+    const back = this.#placeBefore;
+    this.#placeBefore = null;
     if (stay) return;
     this.theme = null;
     this.goal = null;
     this.marked = [];
-    this.place = overview.fitted ? 'shape' : 'gather';
+    this.place = back ?? (overview.fitted ? 'shape' : 'gather');
   }
 
   #seeTrouble(): void {
@@ -226,6 +245,35 @@ export class StudyState {
     if (known === undefined || path === undefined) return;
     this.hush();
     this.trouble = { code: known, text, path };
+  }
+
+  /** Closes a study that has a password, so that it has to be typed again. */
+  async lockNow(): Promise<void> {
+    await this.ask('lockStudy', null);
+  }
+
+  /** Lets the locked study be; shows what was open before, or the first page. */
+  async leaveLocked(): Promise<void> {
+    const overview = await this.ask('leaveLocked', null);
+    if (overview === undefined) return;
+    this.#leave();
+    this.#overview = overview;
+  }
+
+  /** Sets, changes or removes the password; what else is to be known, or null where it was refused. */
+  async protect(current: string | null, next: string | null): Promise<readonly string[] | null> {
+    this.hush();
+    const result = await this.ask('setPassword', { current, next });
+    if (result === undefined) return null;
+    this.#take(result.overview);
+    return result.notes;
+  }
+
+  /** A person moved, typed or clicked: told now and then, while there is something to lock. */
+  sign(now: number = Date.now()): void {
+    if (this.#overview?.hasPassword !== true || Math.abs(now - this.#lastSign) < 10_000) return;
+    this.#lastSign = now;
+    void this.link.call('stillHere', null);
   }
 
   async close(): Promise<void> {
@@ -285,11 +333,24 @@ export class StudyState {
     this.#refining = overview.refining?.fraction ?? null;
   }
 
+  #lock(locked: LockedStudy): void {
+    const { place } = this;
+    const wasOpen = this.#overview !== null;
+    this.#leave();
+    if (wasOpen && locked.why !== 'opening') this.#placeBefore = place;
+    this.#locked = locked;
+  }
+
   #leave(): void {
     clearTimeout(this.#following);
     this.list = null;
     this.marked = [];
     this.#overview = null;
+    this.#locked = null;
+    this.#placeBefore = null;
+    this.#progress = null;
+    this.#refining = null;
+    this.finding = false;
     this.#message = null;
     this.theme = null;
     this.goal = null;

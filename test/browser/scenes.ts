@@ -42,8 +42,18 @@ export const scenes: readonly Scene[] = [
     },
   },
   {
+    name: 'first-run-start-locked',
+    reach: async (page) => {
+      await page.getByLabel('Name of the study').fill('An empty study');
+      await page.getByLabel('Lock it with a password').check();
+      await page.getByLabel('New password').fill('moss after four rains');
+      await page.getByLabel('Once more').fill('bark');
+    },
+  },
+  {
     name: 'gather-empty',
     reach: async (page) => {
+      await page.getByLabel('Lock it with a password').uncheck();
       await page.getByLabel('Name of the study').fill('An empty study');
       await button(page, 'Start the study').click();
       await page.getByText('Bring in your transcripts').waitFor();
@@ -94,9 +104,70 @@ export const scenes: readonly Scene[] = [
     },
   },
   {
-    name: 'first-run-open',
+    name: 'study-password',
     reach: async (page) => {
       await closeDialog(page);
+      await fromStudy(page, 'Set a password');
+      await page.getByLabel('New password').waitFor();
+    },
+  },
+  {
+    name: 'study-password-set',
+    reach: async (page) => {
+      await page.getByLabel('New password').fill('moss after four rains');
+      await page.getByLabel('Once more').fill('moss after four rains');
+      await page.getByLabel('The password is kept in a safe place').check();
+      await button(page, 'Set the password').click();
+      await page.getByText('The password is set.').waitFor();
+    },
+  },
+  {
+    name: 'study-password-change',
+    reach: async (page) => {
+      await closeDialog(page);
+      await fromStudy(page, 'Password and locking');
+      await page.getByLabel('Password of now').waitFor();
+    },
+  },
+  {
+    name: 'study-password-remove',
+    reach: async (page) => {
+      await page.getByLabel('Remove it').check();
+      await page.getByLabel('Password of now').fill('a guess');
+      await button(page, 'Remove the password').click();
+      await page.getByRole('dialog').getByRole('alert').waitFor();
+    },
+  },
+  {
+    name: 'locked',
+    reach: async (page) => {
+      await closeDialog(page);
+      await fromStudy(page, 'Lock now');
+      await page.getByRole('heading', { name: 'Locked' }).waitFor();
+    },
+  },
+  {
+    name: 'locked-wrong',
+    reach: async (page) => {
+      await page.getByLabel('Password', { exact: true }).fill('a guess');
+      await button(page, 'Open the study').click();
+      await page.getByText('That is not the password').waitFor();
+    },
+  },
+  {
+    name: 'locked-opening',
+    reach: async (page) => {
+      await button(page, 'Leave it locked').click();
+      await button(page, /An empty study/u).click();
+      await page.getByText('This study has a password.').waitFor();
+    },
+  },
+  {
+    name: 'first-run-open',
+    reach: async (page) => {
+      await page.getByLabel('Password', { exact: true }).fill('moss after four rains');
+      await page.keyboard.press('Enter');
+      await page.getByRole('navigation', { name: 'Places' }).waitFor();
       await button(page, /^Study/u).click();
       await page.getByRole('menuitem', { name: 'Close the study' }).click();
       await button(page, 'Open a study').click();

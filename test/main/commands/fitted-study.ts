@@ -9,6 +9,7 @@ export async function fittedStudy(
   name: string,
   people = 6,
   themes: readonly object[] = [],
+  more: readonly string[] = [],
 ): Promise<void> {
   const talk = new Talk(5);
   const files = Array.from({ length: people }, (_, i): [string, string] => [
@@ -24,7 +25,7 @@ export async function fittedStudy(
   });
   const ended = await run(folder, [
     ...['theme', `in ${name}`, '--themes', '4', '--seed', '1', '--plan', 'plan.json'],
-    ...['--out', `out ${name}`, '--save', name],
+    ...['--out', `out ${name}`, '--save', name, ...more],
   ]);
   if (ended.code !== 0) throw new Error(ended.err);
 }

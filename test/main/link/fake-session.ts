@@ -45,6 +45,7 @@ export function fakeSession(own: Partial<Record<Method, Handler>> = {}): FakeSes
       return () => void known.delete(listener);
     },
     openPath: async (path) => void opened.push(path),
+    lock: async () => {},
     close: async () => void session.closes++,
     tell: (event, detail) => {
       for (const listener of listeners.get(event) ?? []) listener(detail as never);
@@ -60,6 +61,7 @@ export const studyWord = 'Skerrabraith';
 export const overview: Overview = {
   study: { id: 's1', name: studyWord, path: `/studies/${studyWord}.understory` },
   readOnly: false,
+  hasPassword: false,
   savedAt: null,
   revision: 3,
   transcripts: 2,

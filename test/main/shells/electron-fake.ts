@@ -133,6 +133,8 @@ export const schemes: unknown[] = [];
 export const menus: unknown[] = [];
 export const errorBoxes: Call[] = [];
 
+export const powerMonitor = new EventEmitter();
+
 export const fakeElectron = {
   app,
   BrowserWindow: FakeWindow,
@@ -151,6 +153,7 @@ export const fakeElectron = {
     buildFromTemplate: (template: unknown) => template,
     setApplicationMenu: (menu: unknown): void => void menus.push(menu),
   },
+  powerMonitor,
   nativeTheme: { shouldUseDarkColors: false },
   protocol: {
     registerSchemesAsPrivileged: (list: unknown[]): void => void schemes.push(...list),

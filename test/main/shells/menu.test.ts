@@ -19,6 +19,7 @@ describe.each(['linux', 'win32', 'darwin'] as const)('the menu on %s', (platform
       'start study',
       'open study',
       'add transcripts',
+      'lock study',
       'close study',
       'undo',
       'redo',

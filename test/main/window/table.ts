@@ -75,6 +75,7 @@ export function newTable(given: Partial<Surroundings> & { readonly folder?: stri
     demoFolder,
     now: steadyClock(),
     readerName: 'Ada',
+    keyWork: { n: 1024, r: 8, p: 1 },
     ...rest,
   });
   sessions.push(session);

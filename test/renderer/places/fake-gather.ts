@@ -129,6 +129,7 @@ export function fakeGather(options: FakeOptions = {}): FakeLink {
         name: long ? longName : 'Winter timetable',
         path: '/studies/w.understory',
       },
+      hasPassword: false,
       readOnly: options.readOnly ?? false,
       savedAt: '2026-03-02T10:42:00Z',
       revision,
