@@ -26,9 +26,10 @@ export const fileSentences: Record<StudyFileCode, Say> = {
     `That is not the password of ${file(f)}; check capital letters and the keyboard’s language, then try again.`,
   'asks too much': (f) =>
     `Opening ${file(f)} would take more memory or time than a study of ours does, so it was left as it is; if you made it, open it on a machine with more memory, or use a backup.`,
-  'password too short': () =>
-    'A password needs at least 8 characters; four words picked by chance make a good one.',
-  'password too long': () => 'A password may have 1,024 characters; choose a shorter one.',
+  'password too short': (f) =>
+    `The password of ${file(f)} needs at least 8 characters; four words picked by chance make a good one.`,
+  'password too long': (f) =>
+    `The password of ${file(f)} may have at most 1,024 characters; choose a shorter one.`,
   'open elsewhere': (f) =>
     `${file(f)} is open in another window or command${owner(f)}; close it there, then try again.`,
   'noted elsewhere': (f) =>

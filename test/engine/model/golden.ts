@@ -16,11 +16,20 @@ import {
   sha256,
   trigamma,
 } from '../../../engine/numbers/index.ts';
+import { goldenWords } from './golden-words.ts';
 import { plantedCorpus } from './planted.ts';
 
 /** What is hashed; one hash each, of every bit of the result. */
 export type Golden = Readonly<
-  Record<'functions' | 'corpus' | 'from scratch' | 're-fit with decisions' | 'mean field', string>
+  Record<
+    | 'functions'
+    | 'prepared words'
+    | 'corpus'
+    | 'from scratch'
+    | 're-fit with decisions'
+    | 'mean field',
+    string
+  >
 >;
 
 const themes = 6;
@@ -91,6 +100,7 @@ export function golden(): Golden {
 
   return {
     functions: hashed(...functionValues()),
+    'prepared words': hashed(...preparedWords()),
     corpus: hashed(counts.offsets, counts.indices, counts.counts),
     'from scratch': hashedFit(scratch),
     're-fit with decisions': hashedFit(refit),
@@ -113,6 +123,17 @@ function hashedFit(fit: ModelFit): string {
     JSON.stringify({ terms, trace: points, sweeps, stopReason }),
   );
   return hashed(fit.theta, fit.phi, fit.themeWords, fit.unexplained, history);
+}
+
+function preparedWords(): ArrayBufferView[] {
+  return goldenWords().flatMap(({ counts, occurrences, ...rest }) => [
+    new TextEncoder().encode(JSON.stringify(rest)),
+    counts.offsets,
+    counts.indices,
+    counts.counts,
+    occurrences.offsets,
+    occurrences.words,
+  ]);
 }
 
 /** Our own functions, at arguments over their whole range. */
