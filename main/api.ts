@@ -1072,6 +1072,34 @@ export interface SealView {
   readonly beyondReach: string;
 }
 
+export type TakeInChoice = 'mine' | 'theirs' | 'both';
+
+/** What another copy of the study would bring. */
+export interface TakeInView {
+  readonly path: string;
+  readonly name: string;
+  /** The copy's head: taking in refuses another state of it than the one shown. */
+  readonly head: string;
+  readonly readers: readonly string[];
+  readonly themes: readonly string[];
+  readonly codings: number;
+  readonly removed: number;
+  readonly nones: number;
+  readonly memos: number;
+  /** Decisions on what is not here: withdrawn, or gathered in the other copy alone. */
+  readonly left: number;
+  readonly conflicts: readonly {
+    readonly id: string;
+    /** Where it stands, in words. */
+    readonly on: string;
+    readonly text: string;
+    /** Null where it was removed. */
+    readonly mine: string | null;
+    readonly theirs: string | null;
+    readonly both: boolean;
+  }[];
+}
+
 /** What an act of erasing came to. */
 export interface ErasedView {
   readonly overview: Overview;
@@ -1482,6 +1510,18 @@ export interface Api {
   /** `names`: originals that are replaced by their stand-ins wherever they stand. */
   sealOriginals: { takes: { names: readonly string[]; refit: boolean }; gives: ErasedView };
 
+  /** `path` null: ask with the system's dialog. Null where cancelled. */
+  takeInView: { takes: { path: string | null; password: string | null }; gives: TakeInView | null };
+  takeIn: {
+    takes: {
+      path: string;
+      password: string | null;
+      head: string;
+      choices: Record<string, TakeInChoice>;
+    };
+    gives: Overview;
+  };
+
   /** Shows the system's dialog and writes the file; the path, or null where cancelled. */
   saveFile: { takes: NamedFile; gives: string | null };
 }
@@ -1636,6 +1676,8 @@ export const methods = [
   'withdrawParticipant',
   'sealView',
   'sealOriginals',
+  'takeInView',
+  'takeIn',
   'saveFile',
 ] as const satisfies readonly Method[];
 

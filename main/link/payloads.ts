@@ -316,6 +316,13 @@ export const payloads = {
   withdrawParticipant: v.strictObject({ participant: id, names: words, refit: v.boolean() }),
   sealView: nothing,
   sealOriginals: v.strictObject({ names: words, refit: v.boolean() }),
+  takeInView: v.strictObject({ path: v.nullable(path), password: v.nullable(name) }),
+  takeIn: v.strictObject({
+    path,
+    password: v.nullable(name),
+    head: name,
+    choices: entries(v.picklist(['mine', 'theirs', 'both'])),
+  }),
   saveFile: v.strictObject({ fileName: id, bytes }),
 } as const satisfies {
   readonly [Name in Method]: v.GenericSchema<unknown, Api[Name]['takes']>;

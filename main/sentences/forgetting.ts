@@ -50,5 +50,4 @@ export const forgettingSentences = {
     'What would be left does not follow from one another any more, so nothing was erased; leave one of the names out, then try again.',
   'nothing to seal':
     'No transcript was reworded and no name has a stand-in, so there are no originals to seal; put stand-ins in place first.',
-  'names remain': 'Nothing was chosen to be erased; choose a person.',
 } as const;

@@ -7,6 +7,7 @@ import { passwordVariable, takePasswordFile } from '../commands/password.ts';
 import { refit, refitUsage } from '../commands/refit.ts';
 import { steady, steadyUsage } from '../commands/steady.ts';
 import type { ExitCode, Terminal } from '../commands/terminal.ts';
+import { takeInCommand, takeInUsage } from '../commands/take-in.ts';
 import { theme, themeUsage } from '../commands/theme.ts';
 import { trail, trailUsage } from '../commands/trail.ts';
 import { verifyStudy, verifyUsage } from '../commands/verify.ts';
@@ -25,6 +26,7 @@ const commands: Record<string, Command> = {
   trail,
   withdraw: withdrawCommand,
   seal: sealCommand,
+  takein: takeInCommand,
 };
 
 const help = `Understory: theme and code interview transcripts on this machine alone.
@@ -52,6 +54,8 @@ const help = `Understory: theme and code interview transcripts on this machine a
       erases a participant's text, codings, memos and attributes for good; says first what goes
   ${sealUsage}
       erases the originals behind stand-ins for good; says first what goes
+  ${takeInUsage}
+      takes another copy’s codings, memos and readers in
 
 A study with a password: --password-file FILE (its first line) goes with every command, or the
 environment variable UNDERSTORY_PASSWORD; without either it is asked for. With either, theme --save

@@ -31,6 +31,7 @@ import { shapeView } from './shape-view.ts';
 import { strataFigure } from './strata-figure.ts';
 import { splitHandlers } from './split.ts';
 import { strata } from './strata.ts';
+import { takingInHandlers } from './taking-in.ts';
 import { themeDecisions } from './theme-decisions.ts';
 import { themePassages } from './theme-passages.ts';
 import { themeSpread } from './theme-spread.ts';
@@ -62,6 +63,7 @@ export function createSession(surroundings: Surroundings): Session {
     ...reportHandlers(room),
     ...provingHandlers(room),
     ...forgettingHandlers(room),
+    ...takingInHandlers(room),
     undo: room.look((open) => takeBack(room, open, 'undo')),
     redo: room.look((open) => takeBack(room, open, 'redo')),
     shapeView: room.look<null, ReturnType<typeof shapeView>>((open) => give(shapeView(open))),

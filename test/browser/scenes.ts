@@ -71,6 +71,23 @@ export const scenes: readonly Scene[] = [
     },
   },
   {
+    name: 'study-trail',
+    reach: async (page) => {
+      await closeDialog(page);
+      await fromStudy(page, 'Trail …');
+      await page.getByText('The chain ends in').waitFor();
+    },
+  },
+  {
+    name: 'study-check',
+    reach: async (page) => {
+      await closeDialog(page);
+      await fromStudy(page, 'Check the study …');
+      await page.getByRole('dialog').getByRole('button', { name: 'Check the study' }).click();
+      await page.getByText('The chain ends in').waitFor();
+    },
+  },
+  {
     name: 'study-save-as',
     reach: async (page) => {
       await closeDialog(page);
@@ -424,6 +441,14 @@ export const scenes: readonly Scene[] = [
     },
   },
   {
+    name: 'gather-seal',
+    reach: async (page) => {
+      await closeDialog(page);
+      await page.getByRole('button', { name: 'Seal originals …' }).click();
+      await page.getByText('There are no originals to seal').waitFor();
+    },
+  },
+  {
     name: 'gather-names',
     reach: async (page) => {
       await closeDialog(page);
@@ -456,8 +481,19 @@ export const scenes: readonly Scene[] = [
     },
   },
   {
+    name: 'gather-withdraw',
+    reach: async (page) => {
+      await page
+        .getByRole('button', { name: /^Withdraw /u })
+        .first()
+        .click();
+      await page.getByText('Transcripts that go').waitFor();
+    },
+  },
+  {
     name: 'gather-attribute',
     reach: async (page) => {
+      await closeDialog(page);
       await button(page, 'Add an attribute').click();
       await page.getByRole('dialog').waitFor();
     },

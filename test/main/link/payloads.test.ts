@@ -178,6 +178,8 @@ const samples: { readonly [Name in Method]: Api[Name]['takes'] } = {
   withdrawParticipant: { participant: 'p', names: [], refit: true },
   sealView: null,
   sealOriginals: { names: ['Ruth'], refit: false },
+  takeInView: { path: '/a/b.understory', password: null },
+  takeIn: { path: '/a/b.understory', password: 'secret', head: 'ab', choices: { c: 'both' } },
   saveFile: { fileName: 'excerpts.csv', bytes },
 };
 
