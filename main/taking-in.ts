@@ -273,7 +273,7 @@ function themesFor(mine: Study, now: Study, merge: Merge): (id: string) => strin
   const known = new Map<string, string | null>();
   return (given) => {
     let id = given;
-    for (let theme = now.themes.get(id); theme?.mergedInto != null;) {
+    for (let theme = now.themes.get(id); theme !== undefined && theme.mergedInto !== null;) {
       id = theme.mergedInto;
       theme = now.themes.get(id);
     }
@@ -291,7 +291,8 @@ function themesFor(mine: Study, now: Study, merge: Merge): (id: string) => strin
       }
     } else {
       const theirs = now.themes.get(id);
-      const namesake = theirs?.name == null ? undefined : byName.get(nameKey(theirs.name));
+      const named = theirs?.name ?? null;
+      const namesake = named === null ? undefined : byName.get(nameKey(named));
       if (namesake !== undefined) found = namesake;
       else if (theirs === undefined) found = null;
       else {
