@@ -20,9 +20,9 @@ const ownWords = 0.9;
  * are added up, columns follow word forms, passages follow their places in the text. A theme that
  * the fit did not know starts as the average of all words, with an even part of each passage; where
  * a person gave it passages (`marked`, for each theme), it starts from their words and with most of
- * them. A passage that the fit did not know starts even, too. One that was set aside meanwhile starts from the words that are
- * remembered of it and is held to them: from the average it came back as another theme (README.md
- * of the model).
+ * them. A passage that the fit did not know starts even, too. A theme that was set aside meanwhile
+ * starts from the words that are remembered of it and is held to them: from the average it came back
+ * as another theme (README.md of the model).
  */
 export function warmStart(
   themes: readonly ModelledTheme[],
@@ -120,11 +120,14 @@ function mixRows(
   into: Float32Array,
 ): void {
   const old = previous.words.vocabulary;
-  const places = new Map(old.map((form, index) => [form, index]));
+  // Asked of every theme: in a re-fit of the same words, looking forms up took longer than the sweeps.
+  const places = sameVocabulary(old, vocabulary)
+    ? null
+    : new Map(old.map((form, index) => [form, index]));
   const mixed = new Float64Array(vocabulary.length);
   let sum = 0;
   vocabulary.forEach((form, word) => {
-    const place = places.get(form);
+    const place = places === null ? word : places.get(form);
     if (place === undefined) return;
     rows.forEach((row, i) => {
       const weight = rows.length === 1 ? 1 : sizes[rows[i]];
@@ -220,5 +223,6 @@ function averageWords(words: Prepared): Float32Array {
 }
 
 function sameVocabulary(a: readonly string[], b: readonly string[]): boolean {
+  if (a === b) return true;
   return a.length === b.length && a.every((form, index) => form === b[index]);
 }
