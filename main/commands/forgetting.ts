@@ -139,8 +139,9 @@ function finished(
   terminal: Terminal,
 ): ExitCode {
   if (!done.ok) throw new Stop(whyNotErased(done));
-  // Backups that hold what was erased may not stay; those in a folder set in the window are its own.
-  const backups = rewriteBackups(file, placesFor(usualBackups, file.path), { now: terminal.now });
+  // Backups that hold what was erased may not stay.
+  const settings = terminal.backups?.() ?? usualBackups;
+  const backups = rewriteBackups(file, placesFor(settings, file.path), { now: terminal.now });
   const { records, fits, refitted } = done.value;
   terminal.out(
     `${records} records lost their content, ${fits} ${fits === 1 ? 'fit' : 'fits'} among it` +

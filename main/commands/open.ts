@@ -45,7 +45,7 @@ export async function openStudy(
 const tries = 3;
 
 /** With the password that was given; else with one that is typed, where somebody can. */
-async function openFile(
+export async function openFile(
   path: string,
   terminal: Terminal,
   readOnly: boolean,

@@ -35,7 +35,11 @@ export function takePasswordFile(words: readonly string[]): {
 /** The password that was given with the call, the file's before the environment's; null without. */
 export async function givenPassword({ folder, password }: Terminal): Promise<string | null> {
   const { file = null, environment = null } = password ?? {};
-  if (file === null) return environment;
+  return file === null ? environment : passwordIn(file, folder);
+}
+
+/** The first line of a file: what may be written there for a password. */
+export async function passwordIn(file: string, folder: string): Promise<string> {
   let text: string;
   try {
     text = await readFile(resolve(folder, file), 'utf8');

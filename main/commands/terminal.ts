@@ -1,3 +1,5 @@
+import type { BackupSettings } from '../backup-settings.ts';
+
 /** Where a command gets the password of a locked study from. */
 export interface PasswordSource {
   /** The file given with --password-file, as it was typed; null without one. */
@@ -21,6 +23,8 @@ export interface Terminal {
   readonly signal: AbortSignal;
   /** Where passwords come from; from nowhere unless told. */
   readonly password?: PasswordSource;
+  /** How backups are kept on this machine; the usual unless told. */
+  readonly backups?: () => BackupSettings;
 }
 
 /** 0 done, 1 could not be done, 2 the command was not understood; `verify` says 3 for: cannot tell. */

@@ -1,9 +1,13 @@
+import { join } from 'node:path';
+import { readBackupSettings } from '../backup-settings.ts';
+import { compact, compactUsage } from '../commands/compact.ts';
 import { exportExcerpts, exportUsage } from '../commands/export.ts';
 import { endingOf } from '../commands/fault.ts';
 import { sealCommand, sealUsage, withdrawCommand, withdrawUsage } from '../commands/forgetting.ts';
 import { howMany, howManyUsage } from '../commands/how-many.ts';
 import { moved, movedUsage } from '../commands/moved.ts';
 import { passwordVariable, takePasswordFile } from '../commands/password.ts';
+import { changePassword, changePasswordUsage } from '../commands/change-password.ts';
 import { refit, refitUsage } from '../commands/refit.ts';
 import { steady, steadyUsage } from '../commands/steady.ts';
 import type { ExitCode, Terminal } from '../commands/terminal.ts';
@@ -12,6 +16,7 @@ import { theme, themeUsage } from '../commands/theme.ts';
 import { trail, trailUsage } from '../commands/trail.ts';
 import { verifyStudy, verifyUsage } from '../commands/verify.ts';
 import { askHidden } from './hidden-prompt.ts';
+import { settingsFolder } from './places.ts';
 
 type Command = (words: readonly string[], terminal: Terminal) => Promise<ExitCode>;
 
@@ -27,6 +32,8 @@ const commands: Record<string, Command> = {
   withdraw: withdrawCommand,
   seal: sealCommand,
   takein: takeInCommand,
+  compact,
+  password: changePassword,
 };
 
 const help = `Understory: theme and code interview transcripts on this machine alone.
@@ -56,6 +63,10 @@ const help = `Understory: theme and code interview transcripts on this machine a
       erases the originals behind stand-ins for good; says first what goes
   ${takeInUsage}
       takes another copy’s codings, memos and readers in
+  ${compactUsage}
+      writes the study anew without what was taken back and can no longer be done again
+  ${changePasswordUsage}
+      sets, changes or removes the password; backups are made anew with the same lock
 
 A study with a password: --password-file FILE (its first line) goes with every command, or the
 environment variable UNDERSTORY_PASSWORD; without either it is asked for. With either, theme --save
@@ -84,6 +95,7 @@ export async function run(words: readonly string[], folder: string): Promise<Exi
         environment: process.env[passwordVariable] || null,
         ask: process.stdin.isTTY === true ? askHidden : null,
       },
+      backups: () => readBackupSettings(join(settingsFolder(), 'backups.json')),
     });
   } finally {
     process.removeListener('SIGINT', onInterrupt);
