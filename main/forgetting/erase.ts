@@ -6,6 +6,7 @@ import {
   spansLost,
   type Edit,
   type Entry,
+  type FieldNoteId,
   type FitId,
   type Refusal,
   type Study,
@@ -18,7 +19,7 @@ import type { StudyFile, StudyFileFailure } from '../project/index.ts';
 import { BufferedStore } from '../store.ts';
 import { wordLists } from '../word-lists.ts';
 import { redactTrail, afterRedaction, type Redaction } from './redact.ts';
-import { marked, type Marking } from './words.ts';
+import { marked, nameFinder, namesIn, type Marking } from './words.ts';
 
 /** One act of erasing. */
 export interface Erasure {
@@ -27,7 +28,7 @@ export interface Erasure {
   readonly decision: Edit;
   /** What is put in the place of words in transcripts that stay. */
   readonly markings: ReadonlyMap<TranscriptId, readonly Marking[]>;
-  readonly redaction: Omit<Redaction, 'fits'>;
+  readonly redaction: Omit<Redaction, 'fits' | 'otherwise'>;
 }
 
 export interface EraseOptions {
@@ -81,6 +82,11 @@ export async function erase(
     const made = desk.make([revision(desk.study, id, texts.get(id) ?? '', own)], { group });
     if (!made.ok) return made;
   }
+  const notes = rewordedNotes(desk, redaction);
+  for (const draft of notes.drafts) {
+    const made = desk.make([draft], { group });
+    if (!made.ok) return made;
+  }
 
   const stale = fitsOfOtherWords([...desk.entries], desk.study);
   const onScreen = desk.study.fit;
@@ -101,7 +107,11 @@ export async function erase(
   if (!closed.ok) return closed;
 
   const entries = [...desk.entries];
-  const redacted = redactTrail(entries, { ...redaction, fits: stale });
+  const redacted = redactTrail(entries, {
+    ...redaction,
+    fits: stale,
+    otherwise: new Set([...markings.keys(), ...notes.ids]),
+  });
   const after = fold(afterRedaction(entries, redacted));
   if (!after.ok) return { ok: false, code: 'cannot be taken apart' };
   const first = file.nextSequence;
@@ -162,6 +172,36 @@ function revision(
       placed: [],
       lost,
     }),
+  };
+}
+
+/**
+ * Field notes that say one of the names, kept anew without it under the ids that they had: no edit
+ * gives a note other words, since nobody else does.
+ */
+function rewordedNotes(
+  desk: Desk,
+  { names }: Pick<Redaction, 'names'>,
+): { readonly ids: readonly FieldNoteId[]; readonly drafts: readonly Draft[] } {
+  const finder = nameFinder(names);
+  if (finder === null) return { ids: [], drafts: [] };
+  const found = [...desk.study.fieldNotes.values()].flatMap((note) => {
+    const text = desk.noteText(note.id);
+    const own = namesIn(text, finder);
+    return own.length === 0 ? [] : [{ note, text: marked(text, own) }];
+  });
+  return {
+    ids: found.map(({ note }) => note.id),
+    drafts: found.flatMap(({ note, text }): Draft[] => [
+      { edit: { kind: 'fieldNoteLetGo', note } },
+      {
+        blobs: [Buffer.from(text, 'utf8')],
+        edit: ([blob]) => ({
+          kind: 'fieldNoteKept',
+          note: { ...note, text: blob, length: text.length },
+        }),
+      },
+    ]),
   };
 }
 

@@ -24,6 +24,11 @@ export interface Mention {
     | 'setting'
     | 'stand-in'
     | 'field note'
+    | 'interviewer'
+    | 'question of the guide'
+    | 'name of a draw'
+    | 'name of a fit'
+    | 'file name of a report'
     | 'the trail';
   /** What it stands in or on, as a person calls it. */
   readonly on: string;
@@ -49,12 +54,13 @@ export function mentionsOf(
   };
   look('name of the study', study.name, study.name);
   for (const transcript of study.transcripts.values()) {
-    const { id, name, source, details, speakers } = transcript;
+    const { id, name, source, details, speakers, facts } = transcript;
     if (except.has(id)) continue;
     look('name of a transcript', name, name);
     look('file name', name, source.fileName);
     look('line before the first turn', name, ...details.flatMap((one) => [one.name, one.value]));
     look('speaker', name, ...speakers.map(({ label }) => label ?? ''));
+    look('interviewer', name, facts?.interviewedBy ?? '');
     look('transcript', name, desk.text(id));
   }
   for (const { name, attributes } of study.participants.values()) {
@@ -84,11 +90,15 @@ export function mentionsOf(
   for (const { forms, replacement } of study.identifiers.values()) {
     look('stand-in', replacement ?? 'a name that was left', ...forms, replacement ?? '');
   }
-  for (const { name, transcript, text } of study.fieldNotes.values()) {
+  for (const { name, transcript, source, text } of study.fieldNotes.values()) {
     if (transcript !== null && except.has(transcript)) continue;
     const note = Buffer.from(desk.store.readBlob(text.sequence)).toString('utf8');
-    look('field note', name, name, note);
+    look('field note', name, name, source.fileName, note);
   }
+  for (const { text: question } of study.guide) look('question of the guide', question, question);
+  for (const { name } of study.draws.values()) look('name of a draw', name, name);
+  for (const { name } of study.fits.values()) look('name of a fit', name ?? '', name ?? '');
+  for (const { fileName } of study.exported) look('file name of a report', fileName, fileName);
   const earlier = [...desk.entries].filter((entry) => speaksOf(entry, finder)).length;
   if (earlier > 0) found.push({ where: 'the trail', on: 'earlier decisions', count: earlier });
   return found;

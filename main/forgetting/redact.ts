@@ -1,9 +1,11 @@
-import { overlap, type Span, type Turn } from '../../engine/spans/index.ts';
+import { overlap, type Detail, type Span, type Turn } from '../../engine/spans/index.ts';
 import {
   apply,
   emptyStudy,
   type Edit,
+  type EditKind,
   type Entry,
+  type FieldNote,
   type FitId,
   type Participant,
   type ParticipantId,
@@ -11,7 +13,14 @@ import {
   type Study,
   type TranscriptId,
 } from '../../engine/study/index.ts';
-import { nameFinder, withdrawnMark, type GoneName, type NameFinder } from './words.ts';
+import {
+  nameFinder,
+  nameKeyOf,
+  searchable,
+  withdrawnMark,
+  type GoneName,
+  type NameFinder,
+} from './words.ts';
 
 /** What has to go from the trail. */
 export interface Redaction {
@@ -27,6 +36,10 @@ export interface Redaction {
   readonly names: readonly GoneName[];
   /** Of these the originals behind stand-ins go. */
   readonly sealed: ReadonlySet<TranscriptId>;
+  /** Transcripts and field notes that get other words: their files' hashes would confirm a guess. */
+  readonly otherwise: ReadonlySet<string>;
+  /** Originals that only the person said, as `nameKeyOf` has them. */
+  readonly forms: ReadonlySet<string>;
 }
 
 export const nothingRedacted: Redaction = {
@@ -36,6 +49,8 @@ export const nothingRedacted: Redaction = {
   fits: new Set(),
   names: [],
   sealed: new Set(),
+  otherwise: new Set(),
+  forms: new Set(),
 };
 
 /** What stands for an entry from now on; null for nothing. Entries that stay are not in the map. */
@@ -56,6 +71,7 @@ export function redactTrail(entries: readonly Entry[], redaction: Redaction): Re
     }
     let edit = withoutPerson(entry.edit, redaction);
     edit = withoutOriginals(edit, redaction);
+    edit = withoutHash(edit, redaction);
     if (finder !== null) edit = reworded(edit, finder);
     if (JSON.stringify(edit) !== JSON.stringify(entry.edit)) {
       changed.set(entry.sequence, { ...entry, edit });
@@ -72,6 +88,7 @@ export function afterRedaction(entries: readonly Entry[], redacted: Redacted): E
   });
 }
 
+/** Decided for every kind of edit: a new one is a fault of the types until somebody decides. */
 function goes(edit: Edit, { transcripts, fits }: Redaction, decided: ReadonlySet<string>): boolean {
   switch (edit.kind) {
     case 'transcriptGathered':
@@ -100,12 +117,58 @@ function goes(edit: Edit, { transcripts, fits }: Redaction, decided: ReadonlySet
       return decided.has(edit.note);
     case 'evidenceGathered':
       return fits.has(edit.fit);
-    default:
-      return (
-        'transcript' in edit &&
-        typeof edit.transcript === 'string' &&
-        transcripts.has(edit.transcript)
-      );
+    case 'transcriptRenamed':
+    case 'transcriptDescribed':
+    case 'speakersAssigned':
+    case 'textRevised':
+    case 'turnsTagged':
+      return transcripts.has(edit.transcript);
+    case 'studyStarted':
+    case 'studyRenamed':
+    case 'settingsChanged':
+    case 'readerAdded':
+    case 'readerRemoved':
+    case 'guideRevised':
+    // What is left of these is in withoutPerson and withoutOriginals.
+    case 'identifierSettled':
+    case 'participantAdded':
+    case 'participantRemoved':
+    case 'participantDescribed':
+    case 'drawMade':
+    case 'drawRemoved':
+    case 'drawScored':
+    case 'themeAdded':
+    case 'themeRemoved':
+    case 'themeRenamed':
+    case 'themeDefined':
+    case 'themePinned':
+    case 'themeUnpinned':
+    case 'themeSetAside':
+    case 'themeBroughtBack':
+    case 'themesMerged':
+    case 'themesUnmerged':
+    case 'themesOrdered':
+    case 'headingAdded':
+    case 'headingRemoved':
+    case 'headingRenamed':
+    case 'themePutUnder':
+    case 'wordSeeded':
+    case 'wordUnseeded':
+    case 'wordShutOut':
+    case 'wordLetIn':
+    // Their words and results are blobs, and go as such.
+    case 'modelFitted':
+    case 'fitRemoved':
+    case 'fitChosen':
+    case 'fitRenamed':
+    // They say that something went, or where words went, in ids.
+    case 'participantWithdrawn':
+    case 'originalsSealed':
+    case 'fitsForgotten':
+    case 'copyTakenIn':
+    case 'copyLetGo':
+    case 'reportExported':
+      return false;
   }
 }
 
@@ -150,7 +213,7 @@ function idsOnSharedTurns(
   return ids;
 }
 
-function withoutPerson(edit: Edit, { person, shared, transcripts }: Redaction): Edit {
+function withoutPerson(edit: Edit, { person, shared, transcripts, forms }: Redaction): Edit {
   if (person === null) return edit;
   switch (edit.kind) {
     case 'participantAdded':
@@ -173,9 +236,19 @@ function withoutPerson(edit: Edit, { person, shared, transcripts }: Redaction): 
           ...edit.transcript,
           turns: unnamedTurns(turns, labels),
           speakers: unnamedSpeakers(speakers, labels),
+          details: unnamedDetails(edit.transcript.details, labels),
           // A hash of the file would confirm a guess at it.
           source: { ...edit.transcript.source, hash: '' },
         },
+      };
+    }
+    case 'transcriptDescribed': {
+      const labels = shared.get(edit.transcript);
+      if (labels === undefined) return edit;
+      return {
+        ...edit,
+        from: { ...edit.from, details: unnamedDetails(edit.from.details, labels) },
+        to: { ...edit.to, details: unnamedDetails(edit.to.details, labels) },
       };
     }
     case 'speakersAssigned': {
@@ -202,20 +275,57 @@ function withoutPerson(edit: Edit, { person, shared, transcripts }: Redaction): 
           ? null
           : {
               ...identifier,
+              forms: identifier.forms.filter((form) => !forms.has(nameKeyOf(form))),
               putIn: identifier.putIn.filter((id) => !transcripts.has(id)),
               places:
                 identifier.places?.filter(({ transcript }) => !transcripts.has(transcript)) ?? null,
             };
       return { ...edit, from: kept(edit.from), to: kept(edit.to) };
     }
+    // A note that was tied to another transcript since, or to none, stays.
+    case 'fieldNoteKept':
+    case 'fieldNoteLetGo':
+      return { ...edit, note: untied(edit.note, transcripts) };
+    case 'fieldNoteDescribed':
+      return {
+        ...edit,
+        from: untied(edit.from, transcripts),
+        to: untied(edit.to, transcripts),
+      };
+    case 'drawMade':
+    case 'drawRemoved': {
+      // The places keep their order, by which edits of texts name them; new wordings of a transcript
+      // that went move nothing any more, so where a passage stood has to be the same in all edits.
+      const places = edit.draw.places.map((place) =>
+        transcripts.has(place.transcript) ? { ...place, span: { start: 0, end: 1 } } : place,
+      );
+      return { ...edit, draw: { ...edit.draw, places } };
+    }
     default:
       return edit;
   }
 }
 
+function untied<Note extends Pick<FieldNote, 'transcript'>>(
+  note: Note,
+  transcripts: ReadonlySet<TranscriptId>,
+): Note {
+  return transcripts.has(note.transcript ?? '') ? { ...note, transcript: null } : note;
+}
+
 function nobody(id: ParticipantId): Omit<Participant, 'id'> {
   // Names are unique, so two people who withdrew are told apart by their ids.
   return { name: `withdrawn ${id}`, attributes: {} };
+}
+
+/** Lines before the first turn call people as their turns do. */
+function unnamedDetails(
+  details: readonly Detail[],
+  labels: ReadonlySet<string | null>,
+): readonly Detail[] {
+  const called = searchable([...labels].filter((label) => label !== null));
+  const finder = nameFinder(called.map((name) => ({ name, mark: withdrawnMark })));
+  return finder === null ? details : reworded(details, finder);
 }
 
 function unnamedTurns(turns: readonly Turn[], labels: ReadonlySet<string | null>): readonly Turn[] {
@@ -263,11 +373,45 @@ function withoutOriginals(edit: Edit, { sealed }: Redaction): Edit {
   return { ...edit, from: without(edit.from), to: without(edit.to) };
 }
 
+/** Of what got other words, the hash of the file goes. */
+function withoutHash(edit: Edit, { otherwise }: Redaction): Edit {
+  const unhashed = <Kept extends { readonly id: string; readonly source: FieldNote['source'] }>(
+    kept: Kept,
+  ): Kept => (otherwise.has(kept.id) ? { ...kept, source: { ...kept.source, hash: '' } } : kept);
+  switch (edit.kind) {
+    case 'transcriptGathered':
+    case 'transcriptRemoved':
+      return { ...edit, transcript: unhashed(edit.transcript) };
+    case 'fieldNoteKept':
+    case 'fieldNoteLetGo':
+      return { ...edit, note: unhashed(edit.note) };
+    default:
+      return edit;
+  }
+}
+
+/** Edits that name things by ids and codes alone: a name that looks like one is left there. */
+const idsAlone: ReadonlySet<string> = new Set<EditKind>([
+  ...(['turnsTagged', 'themesMerged', 'themesUnmerged', 'themesOrdered', 'themePutUnder'] as const),
+  ...(['themePinned', 'themeUnpinned', 'themeSetAside', 'themeBroughtBack', 'fitChosen'] as const),
+  ...(['codingLookedAtAgain', 'drawScored', 'participantWithdrawn', 'originalsSealed'] as const),
+  ...(['fitsForgotten', 'copyTakenIn', 'copyLetGo'] as const),
+]);
+
 /** Keys whose strings people typed, or files brought along; ids and codes stand elsewhere. */
 const typed: ReadonlySet<string> = new Set([
   ...['name', 'from', 'to', 'label', 'speaker', 'code', 'brief', 'full', 'whenToUse'],
   ...['whenNotToUse', 'examples', 'text', 'memo', 'word', 'seeds', 'shutOut', 'fileName'],
-  ...['value', 'forms', 'replacement', 'interviewer', 'collected', 'question', 'wording'],
+  ...[
+    'value',
+    'forms',
+    'replacement',
+    'interviewer',
+    'interviewedBy',
+    'drawnBy',
+    'question',
+    'wording',
+  ],
 ]);
 
 /** The same with names gone from everything that was typed, keys of attributes included. */
@@ -278,11 +422,14 @@ export function reworded<Value>(value: Value, finder: NameFinder, key = '', insi
     return value.map((each: unknown) => reworded(each, finder, key, inside)) as Value;
   }
   if (typeof value !== 'object' || value === null) return value;
+  if ('kind' in value && typeof value.kind === 'string' && idsAlone.has(value.kind)) return value;
   const attributes = inside || key === 'attributes';
+  // Values of settings are lists of words, too; their keys are codes.
+  const settings = key === 'settings';
   return Object.fromEntries(
     Object.entries(value).map(([inner, each]) => [
       attributes ? put(inner) : inner,
-      reworded(each as unknown, finder, inner, attributes),
+      reworded(each as unknown, finder, settings ? 'to' : inner, attributes),
     ]),
   ) as Value;
 }

@@ -1,6 +1,7 @@
 import { type Exported, type Identifier, type TranscriptId } from '../../engine/study/index.ts';
 import type { Desk, DeskContext } from '../desk.ts';
 import type { StudyFile } from '../project/index.ts';
+import { movedDates } from '../identifying/standing.ts';
 import { erase, fitsOfOtherWords, type Erased, type EraseOptions, type Erasure } from './erase.ts';
 import { mentionsOf, type Mention } from './mentions.ts';
 import { nothingRedacted } from './redact.ts';
@@ -98,7 +99,8 @@ export async function seal(
 /** Forms of what was replaced, longest first, each once. */
 function namesOf(identifiers: readonly Identifier[]): (GoneName & Pick<Identifier, 'kind'>)[] {
   return identifiers.flatMap(({ forms, replacement, kind }) =>
-    replacement === null
+    // The number of days by which dates were moved is no name; it goes with the forms of its record.
+    replacement === null || replacement === movedDates
       ? []
       : searchable(forms).map((name) => ({ name, mark: replacement, kind })),
   );

@@ -12,12 +12,14 @@ import {
 import type { Desk, DeskContext } from '../desk.ts';
 import type { StudyFile } from '../project/index.ts';
 import { erase, fitsOfOtherWords, type Erased, type EraseOptions, type Erasure } from './erase.ts';
+import { movedDates } from '../identifying/standing.ts';
 import { mentionsOf, type Mention } from './mentions.ts';
 import { nothingRedacted } from './redact.ts';
 import {
   joined,
   marking,
   nameFinder,
+  nameKeyOf,
   namesIn,
   searchable,
   withdrawnMark,
@@ -132,6 +134,7 @@ export function planWithdrawal(
             ]),
           ),
           names: names.map((name) => ({ name, mark: withdrawnMark })),
+          forms: formsOfTheirs(desk, id, wholeIds),
         },
       },
     },
@@ -166,6 +169,70 @@ function labelsIn(text: string, { turns }: Transcript, own: Transcript['turns'])
 
 function hasOthers(speakers: readonly Speaker[], id: ParticipantId): boolean {
   return speakers.some(({ role, participant }) => role === 'participant' && participant !== id);
+}
+
+/**
+ * Originals behind stand-ins, and names that were left, which the person said and nobody else did in
+ * any wording that is still in the file. Where no wording tells, those that were settled for the
+ * person's transcripts alone.
+ */
+function formsOfTheirs(
+  { study, entries, store }: Desk,
+  id: ParticipantId,
+  whole: ReadonlySet<TranscriptId>,
+): ReadonlySet<string> {
+  const settled = [...entries].flatMap(({ edit }) =>
+    edit.kind === 'identifierSettled'
+      ? [edit.from, edit.to].filter((one) => one !== null && one.replacement !== movedDates)
+      : [],
+  );
+  const finder = nameFinder(
+    searchable(settled.flatMap((one) => one?.forms ?? [])).map((name) => ({ name, mark: '' })),
+  );
+  if (finder === null) return new Set();
+  const theirs = new Set<string>();
+  const others = new Set<string>();
+  const look = (transcript: TranscriptId, text: string, turns: readonly Span[]): void => {
+    for (const found of namesIn(text, finder)) {
+      const own = whole.has(transcript) || turns.some((turn) => overlap(turn, found) > 0);
+      (own ? theirs : others).add(nameKeyOf(text.slice(found.start, found.end)));
+    }
+  };
+  const speakers = new Map<TranscriptId, readonly Speaker[]>();
+  for (const { id: one, speakers: own } of study.transcripts.values()) speakers.set(one, own);
+  const wordings = [...entries].flatMap(({ edit }) =>
+    edit.kind === 'transcriptGathered'
+      ? [{ ...edit.transcript, transcript: edit.transcript.id }]
+      : edit.kind === 'textRevised'
+        ? [{ ...edit.to, transcript: edit.transcript }]
+        : [],
+  );
+  for (const { transcript, text, turns } of wordings) {
+    const read = readable(store, text.sequence);
+    if (read === null) continue;
+    const own = turnsOf({ turns, speakers: speakers.get(transcript) ?? [] }, id);
+    look(transcript, read, own);
+  }
+  for (const one of settled) {
+    const at = [...(one?.putIn ?? []), ...(one?.places ?? []).map((place) => place.transcript)];
+    const onlyHere = at.every(
+      (transcript) =>
+        whole.has(transcript) ||
+        speakers.get(transcript)?.some(({ participant }) => participant === id) === true,
+    );
+    if (at.length === 0 || !onlyHere) continue;
+    for (const form of one?.forms ?? []) theirs.add(nameKeyOf(form));
+  }
+  return new Set([...theirs].filter((form) => !others.has(form)));
+}
+
+/** The text of a blob; null where an earlier seal or withdrawal took it. */
+function readable(store: Desk['store'], sequence: number): string | null {
+  try {
+    return Buffer.from(store.readBlob(sequence)).toString('utf8');
+  } catch {
+    return null;
+  }
 }
 
 /** Transcripts that were removed from the study and in which the person spoke: still in the file. */

@@ -21,9 +21,14 @@ export function mentionInWords({ where, on, count }: Mention): string {
     case 'name of a transcript':
     case 'name of a participant':
     case 'name of a theme':
+    case 'name of a draw':
+    case 'name of a fit':
+    case 'file name of a report':
       return `the ${where} ${on}`;
     case 'field note':
-      return `the field note ${on}${times}, whose text is left as it is: let it go, or keep it knowingly`;
+      return `the field note ${on}${times}`;
+    case 'question of the guide':
+      return `a question of the guide, “${on}”`;
     case 'setting':
       return `a setting, ${on}${times}`;
     case 'heading':
