@@ -77,6 +77,7 @@ export function outcomeInWords({ outcome, faults, edits, fits }: Verified): stri
   if (outcome === 'not checked') {
     return `The chain of ${decisions} holds, and not every fit could be checked.`;
   }
+  if (fits.length === 0) return `The chain of ${decisions} holds. There is no fit to make again.`;
   const held = fits.filter(({ found }) => found.code === 'holds').length;
   return `The chain of ${decisions} holds, and ${held} of ${fits.length} ${fits.length === 1 ? 'fit' : 'fits'} came out the same, bit for bit.`;
 }

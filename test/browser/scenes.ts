@@ -27,6 +27,12 @@ const fromMore = async (page: Page, item: string): Promise<void> => {
   await button(page, /^More/u).click();
   await page.getByRole('menuitem', { name: item }).click();
 };
+/** Hands a file to the file field of this name, as the person's own chooser would. */
+const chooseFile = (page: Page, field: string, name: string, text: string): Promise<void> =>
+  page
+    .getByLabel(field, { exact: true })
+    .and(page.locator('input[type=file]'))
+    .setInputFiles({ name, mimeType: 'text/plain', buffer: Buffer.from(text) });
 
 /** Every place, dialog and empty state, in an order that a person could follow. */
 export const scenes: readonly Scene[] = [
@@ -143,14 +149,14 @@ export const scenes: readonly Scene[] = [
     reach: async (page) => {
       await closeDialog(page);
       await fromStudy(page, 'Password and locking');
-      await page.getByLabel('Password of now').waitFor();
+      await page.getByLabel('Present password').waitFor();
     },
   },
   {
     name: 'study-password-remove',
     reach: async (page) => {
       await page.getByLabel('Remove it').check();
-      await page.getByLabel('Password of now').fill('a guess');
+      await page.getByLabel('Present password').fill('a guess');
       await button(page, 'Remove the password').click();
       await page.getByRole('dialog').getByRole('alert').waitFor();
     },
@@ -210,12 +216,17 @@ export const scenes: readonly Scene[] = [
       writeSync(handle, 'damage!', readFileSync(file).length - 20);
       closeSync(handle);
       await page.getByRole('button', { name: /^An empty study/u }).click();
+      await page.getByLabel('Password', { exact: true }).fill('moss after four rains');
+      await page.keyboard.press('Enter');
       await button(page, 'Recover into a new file').waitFor();
     },
   },
   {
     name: 'recovered',
     reach: async (page) => {
+      await button(page, 'Recover into a new file').click();
+      const password = page.getByRole('dialog').getByLabel('Password of the study');
+      await password.fill('moss after four rains');
       await button(page, 'Recover into a new file').click();
       await button(page, 'Go on in the new file').waitFor();
     },
@@ -409,6 +420,14 @@ export const scenes: readonly Scene[] = [
     },
   },
   {
+    name: 'study-take-in',
+    reach: async (page) => {
+      await closeDialog(page);
+      await fromStudy(page, 'Take in another copy …');
+      await page.getByRole('dialog').waitFor();
+    },
+  },
+  {
     name: 'find',
     reach: async (page) => {
       await closeDialog(page);
@@ -506,8 +525,77 @@ export const scenes: readonly Scene[] = [
     },
   },
   {
+    name: 'gather-notes-empty',
+    reach: (page) => page.getByRole('tab', { name: 'Field notes' }).click(),
+  },
+  {
+    name: 'gather-notes',
+    reach: async (page) => {
+      await chooseFile(
+        page,
+        'Field notes',
+        'On the pier after the third interview.txt',
+        'Wind from the north, the shop shut early.\nShe kept coming back to the boat, and went quiet about the school.\n',
+      );
+      await page.getByRole('article', { name: /On the pier/u }).waitFor();
+    },
+  },
+  {
+    name: 'gather-table',
+    reach: async (page) => {
+      await chooseFile(
+        page,
+        'Transcript files',
+        'Open answers of the island survey.csv',
+        [
+          'Person,Age group,Email,What would make you stay on the island for another ten years?,What else?',
+          'P01,60 and over,,"A boat that goes when it says it goes, and a nurse.",Thank you for asking.',
+          'P02,30 to 44,,"Somewhere to rent that is not let by the week in summer.",',
+          'P03,18 to 29,,"Work that lasts through the winter; the rest I can do without.",The school.',
+          '',
+        ].join('\n'),
+      );
+      await page.getByRole('dialog', { name: 'A table of answers' }).waitFor();
+    },
+  },
+  {
+    name: 'gather-codebook',
+    reach: async (page) => {
+      await button(page, 'Leave it out').click();
+      await page.getByRole('dialog').waitFor({ state: 'detached' });
+      await chooseFile(
+        page,
+        'Codebook file',
+        'Codes from the pilot.csv',
+        [
+          'Code,Heading,Definition,Seed words',
+          'Waiting for the boat,Getting about,"Hours and nights lost when the ferry does not go.",ferry boat cancelled',
+          'Being the last ones,Staying,"A family or a trade of which nobody comes after.",last nobody',
+          'Silence,,"Where an answer stops short.",',
+          '',
+        ].join('\n'),
+      );
+      await page.getByRole('dialog', { name: 'A codebook' }).waitFor();
+      await page.getByLabel('From seed words').check();
+    },
+  },
+  {
+    name: 'gather-doubles',
+    reach: async (page) => {
+      await closeDialog(page);
+      await chooseFile(
+        page,
+        'Transcript files',
+        'P02 crofter.txt',
+        'Interviewer: How long have you been here?\n\nP02: All my days, and my father before me.\n',
+      );
+      await page.getByRole('dialog', { name: /of a name that is here already/u }).waitFor();
+    },
+  },
+  {
     name: 'read',
     reach: async (page) => {
+      await closeDialog(page);
       await place(page, 'Read');
       await page.locator('[role=article][aria-current=true]').waitFor();
     },
