@@ -9,6 +9,7 @@ const benches = {
   gather: 'reading and preparing a million words beside a plain tokenizer and stemmer',
   engine: 'speed and quality of fits beside scikit-learn, and fits of a million words',
   decisions: 'what each kind of decision does on top of a fit, and what it leaves alone',
+  file: 'the study file beside reading its bytes, a bare fdatasync, and the text and fits in it',
   search: 'keyword in context over a generated study of a million words',
 };
 

@@ -3,7 +3,7 @@ import { defineConfig } from 'vite';
 import { assemblyscript } from '../../.config/assemblyscript.ts';
 
 const top = join(import.meta.dirname, '..', '..');
-const workers = ['fit.worker', 'pool.worker', 'evidence.worker', 'prepare.worker'];
+const workers = ['read.worker', 'search.worker', 'fit.worker', 'pool.worker', 'evidence.worker', 'prepare.worker'];
 
 /** Benches are bundled as the app is, so that the same code is measured. */
 export default defineConfig({
@@ -19,6 +19,7 @@ export default defineConfig({
         gather: join(top, 'test', 'bench', 'gather.ts'),
         engine: join(top, 'test', 'bench', 'engine.ts'),
         decisions: join(top, 'test', 'bench', 'decisions.ts'),
+        file: join(top, 'test', 'bench', 'file.ts'),
         search: join(top, 'test', 'bench', 'search.ts'),
         large: join(top, 'test', 'bench', 'large.ts'),
         ...Object.fromEntries(
