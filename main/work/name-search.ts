@@ -46,8 +46,6 @@ function worker(): Worker {
   if (shared !== null) return shared;
   const started = new Worker(workerPath('search.worker'));
   shared = started;
-  // A search that nobody waits for keeps no program open.
-  started.unref();
   started.on('message', ({ number, groups }: SearchReply) => {
     waiting.get(number)?.resolve(groups);
     waiting.delete(number);
@@ -61,6 +59,9 @@ function worker(): Worker {
   };
   started.on('error', end);
   started.on('exit', () => end(new Error('NameSearch: the worker ended before it had a result')));
+  // A search that nobody waits for keeps no program open. After the listeners: one that is added
+  // later holds the program again.
+  started.unref();
   return started;
 }
 
