@@ -50,15 +50,23 @@ export async function openFile(
   terminal: Terminal,
   readOnly: boolean,
 ): Promise<Result<StudyFile>> {
+  return withPassword(terminal, (password) => openStudyFile(path, { readOnly, password }));
+}
+
+/** Tries a study with the password that was given; else asks for one, three times at most. */
+export async function withPassword<Value>(
+  terminal: Terminal,
+  attempt: (password: string | undefined) => Promise<Result<Value>>,
+): Promise<Result<Value>> {
   const given = await givenPassword(terminal);
-  let opened = await openStudyFile(path, { readOnly, password: given ?? undefined });
+  let opened = await attempt(given ?? undefined);
   const ask = terminal.password?.ask ?? null;
   for (let time = 0; ask !== null && given === null && time < tries; time++) {
     if (opened.ok || (opened.code !== 'locked' && opened.code !== 'wrong password')) break;
     if (time > 0) terminal.err('That is not the password.\n');
     const password = await ask('Password of the study: ');
     if (password === null) throw new Stop('Stopped: nothing was written.');
-    opened = await openStudyFile(path, { readOnly, password });
+    opened = await attempt(password);
   }
   return opened;
 }

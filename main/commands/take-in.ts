@@ -1,9 +1,8 @@
 import { resolve } from 'node:path';
-import { openStudyFile } from '../project/index.ts';
 import { sentenceFor } from '../sentences/sentences.ts';
 import { takeInSentences } from '../sentences/taking-in.ts';
 import { planTakeIn, takeIn, type Choice, type TakeInRefused } from '../taking-in.ts';
-import { openStudy } from './open.ts';
+import { openFile, openStudy } from './open.ts';
 import { readOptions, usageStop } from './options.ts';
 import { Stop, type ExitCode, type Terminal } from './terminal.ts';
 
@@ -28,7 +27,7 @@ export async function takeInCommand(
     readOnly: false,
     call: ['takein', conflicts ?? null],
   });
-  const opened = await openStudyFile(resolve(terminal.folder, from), { readOnly: true });
+  const opened = await openFile(resolve(terminal.folder, from), terminal, true);
   try {
     if (!opened.ok) throw new Stop(sentenceFor({ ...opened, path: from }));
     const plan = planTakeIn(desk, file, opened.value);

@@ -8,6 +8,7 @@ import {
 } from '../sentences/verify.ts';
 import { sentenceFor } from '../sentences/sentences.ts';
 import { leastHeadDigits, verifyFile } from '../verify.ts';
+import { withPassword } from './open.ts';
 import { readOptions, usageStop } from './options.ts';
 import { ProgressLine, Stop, type ExitCode, type Terminal } from './terminal.ts';
 
@@ -28,19 +29,22 @@ export async function verifyStudy(words: readonly string[], terminal: Terminal):
   }
   const [path] = positionals;
   const line = new ProgressLine(terminal);
-  const result = await verifyFile(resolve(terminal.folder, path), {
-    ...(head === undefined ? {} : { head }),
-    signal: terminal.signal,
-    onProgress: (done, of, fraction) =>
-      line.show(
-        `Fit ${done + 1} of ${of}: ${Math.floor(fraction * 100)} %`,
-        (done + fraction) / of,
-      ),
-    onFit: (check) => {
-      line.end();
-      terminal.out(`${fitCheckInWords(check)}\n`);
-    },
-  });
+  const result = await withPassword(terminal, (password) =>
+    verifyFile(resolve(terminal.folder, path), {
+      password,
+      ...(head === undefined ? {} : { head }),
+      signal: terminal.signal,
+      onProgress: (done, of, fraction) =>
+        line.show(
+          `Fit ${done + 1} of ${of}: ${Math.floor(fraction * 100)} %`,
+          (done + fraction) / of,
+        ),
+      onFit: (check) => {
+        line.end();
+        terminal.out(`${fitCheckInWords(check)}\n`);
+      },
+    }),
+  );
   if (!result.ok) throw new Stop(sentenceFor({ ...result, path }), 3);
   const found = result.value;
   for (const fault of found.faults) terminal.out(`${trailFaultInWords(fault)}\n`);

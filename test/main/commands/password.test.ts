@@ -1,5 +1,5 @@
 import { EventEmitter } from 'node:events';
-import { writeFileSync } from 'node:fs';
+import { copyFileSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { beforeAll, describe, expect, test } from 'vitest';
 import { isLocked, openStudyFile } from '../../../main/project/index.ts';
@@ -46,6 +46,16 @@ describe('a study with a password on the command line', () => {
     const out = ['export', 's.understory', '--as', 'csv', '--out', 'e.csv'];
     const exported = await run(folder, [...out, '--password-file', 'secret.txt']);
     expect(exported.code).toBe(0);
+  });
+
+  test('opens a study to be verified, and both copies of one that takes the other in', async () => {
+    const key = ['--password-file', 'secret.txt'];
+    expect((await run(folder, ['verify', 's.understory', ...key])).code).toBe(0);
+    expect((await run(folder, ['verify', 's.understory'], { password: noSource })).code).toBe(3);
+    copyFileSync(join(folder, 's.understory'), join(folder, 'copy.understory'));
+    const words = ['takein', 's.understory', '--from', 'copy.understory'];
+    const taken = await run(folder, [...words, ...key]);
+    expect([taken.code, taken.out]).toEqual([0, expect.stringMatching(/nothing was changed/u)]);
   });
 
   test('is opened with what the environment says, and the file goes before it', async () => {
