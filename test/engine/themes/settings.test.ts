@@ -61,6 +61,7 @@ describe('settings', () => {
     ['text.leaveOutFillers', [null]],
     ['text.extraStopWords', ['word', [''], [' '], [1]]],
     ['text.keptWords', [true, [null]]],
+    ['followChanges', ['yes', 1, null]],
     ['text.minimumPassages', [0]],
     ['text.minimumParticipants', [0, 101]],
     ['text.maximumPassageShare', [0, 1.01]],
@@ -73,7 +74,7 @@ describe('settings', () => {
   });
 
   test('every key has its limits tested above', () => {
-    expect(Object.keys(defaultSettings)).toHaveLength(19);
+    expect(Object.keys(defaultSettings)).toHaveLength(20);
   });
 
   test('an unknown key is refused, also one that every object has', () => {
