@@ -12,6 +12,7 @@ import {
   type Speaker,
   type Study,
   type TranscriptId,
+  type TranscriptPlace,
 } from '../../engine/study/index.ts';
 import {
   nameFinder,
@@ -277,8 +278,7 @@ function withoutPerson(edit: Edit, { person, shared, transcripts, forms }: Redac
               ...identifier,
               forms: identifier.forms.filter((form) => !forms.has(nameKeyOf(form))),
               putIn: identifier.putIn.filter((id) => !transcripts.has(id)),
-              places:
-                identifier.places?.filter(({ transcript }) => !transcripts.has(transcript)) ?? null,
+              places: identifier.places?.map((place) => emptied(place, transcripts)) ?? null,
             };
       return { ...edit, from: kept(edit.from), to: kept(edit.to) };
     }
@@ -294,16 +294,24 @@ function withoutPerson(edit: Edit, { person, shared, transcripts, forms }: Redac
       };
     case 'drawMade':
     case 'drawRemoved': {
-      // The places keep their order, by which edits of texts name them; new wordings of a transcript
-      // that went move nothing any more, so where a passage stood has to be the same in all edits.
-      const places = edit.draw.places.map((place) =>
-        transcripts.has(place.transcript) ? { ...place, span: { start: 0, end: 1 } } : place,
-      );
+      const places = edit.draw.places.map((place) => emptied(place, transcripts));
       return { ...edit, draw: { ...edit.draw, places } };
     }
     default:
       return edit;
   }
+}
+
+/**
+ * A place in a transcript that went says nothing but that it was one. Places keep their order, by which
+ * edits of texts name them; new wordings of a transcript that went move nothing any more, so where it
+ * stood has to be the same in all edits.
+ */
+function emptied<Place extends TranscriptPlace>(
+  place: Place,
+  transcripts: ReadonlySet<TranscriptId>,
+): Place {
+  return transcripts.has(place.transcript) ? { ...place, span: { start: 0, end: 1 } } : place;
 }
 
 function untied<Note extends Pick<FieldNote, 'transcript'>>(

@@ -39,6 +39,8 @@ function identifierFault(
   // A span that lost its words, or whose transcript went, was fit to stand once.
   if (restoring) return null;
   for (const { transcript, span } of places ?? []) {
+    // A trail has to fold when a person was withdrawn, and the transcript with them.
+    if (!study.transcripts.has(transcript)) continue;
     const fault = spanFault(study, transcript, span);
     if (fault !== null) return fault;
   }

@@ -1,6 +1,7 @@
 import { beforeAll, describe, expect, test } from 'vitest';
 import type { Edit, FieldNote, Identifier } from '../../../engine/study/index.ts';
 import { movedDates } from '../../../main/identifying/standing.ts';
+import { rewordingDrafts } from '../../../main/identifying/revising.ts';
 import { planSeal, seal } from '../../../main/forgetting/sealing.ts';
 import { planWithdrawal, withdraw } from '../../../main/forgetting/withdrawal.ts';
 import type { Desk } from '../../../main/desk.ts';
@@ -48,6 +49,23 @@ function noteOf(desk: Desk, id: string): FieldNote {
   return desk.study.fieldNotes.get(id)!;
 }
 
+/** The second place lies half in words that are replaced afterwards: that edit names it by its order. */
+function leftInTwoPlaces(desk: Desk): void {
+  const places = ['alone', 'other'].map((transcript) => {
+    const { start } = desk.study.transcripts.get(transcript)!.turns[1]!;
+    return { transcript, span: { start: start + 2, end: start + 9 } };
+  });
+  const to: Identifier = {
+    ...{ id: 'left', kind: 'other name', forms: ['heron'], decision: 'left' },
+    ...{ replacement: null, putIn: [], places },
+  };
+  made(desk, { kind: 'identifierSettled', identifier: 'left', from: null, to });
+  const other = desk.study.transcripts.get('other')!;
+  const start = other.turns[1]!.start;
+  const rewordings = [{ start, end: start + 4, words: 'So then' }];
+  made(desk, ...rewordingDrafts(desk.study, other, desk.text('other'), rewordings));
+}
+
 /** Words that nobody else says, in every kind of edit that holds any. */
 async function fullStudy(): Promise<Planted> {
   const study = await plantedStudy();
@@ -93,6 +111,7 @@ async function fullStudy(): Promise<Planted> {
     replacement: movedDates,
     putIn: ['alone', 'other'],
   });
+  leftInTwoPlaces(desk);
   made(
     desk,
     { kind: 'guideRevised', from: [], to: [{ id: 'q', text: `What of ${name}?` }] },
@@ -195,6 +214,11 @@ describe('after a withdrawal from a study with edits of every kind', () => {
     const { study: left } = await readAgain(study.file);
     expect(left.identifiers.get('village')).toMatchObject({ forms: [], replacement: 'musician' });
     expect(left.identifiers.get('dates')).toMatchObject({ forms: ['-271828'], putIn: ['other'] });
+    const other = left.transcripts.get('other')!.turns[1]!;
+    expect(left.identifiers.get('left')?.places).toEqual([
+      { transcript: 'alone', span: { start: 0, end: 1 } },
+      { transcript: 'other', span: { start: other.start, end: other.start + 12 } },
+    ]);
     expect(left.guide).toEqual([{ id: 'q', text: 'What of [withdrawn]?' }]);
     expect(await verify(study.file)).toMatchObject({ outcome: 'holds', faults: [] });
   });
