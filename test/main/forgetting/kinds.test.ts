@@ -5,6 +5,13 @@ import { rewordingDrafts } from '../../../main/identifying/revising.ts';
 import { planSeal, seal } from '../../../main/forgetting/sealing.ts';
 import { planWithdrawal, withdraw } from '../../../main/forgetting/withdrawal.ts';
 import type { Desk } from '../../../main/desk.ts';
+import {
+  backupFolderBeside,
+  listBackups,
+  makeBackup,
+  rewriteBackups,
+  type BackupPlaces,
+} from '../../../main/project/index.ts';
 import { verify } from '../../../main/verify.ts';
 import {
   context,
@@ -174,9 +181,12 @@ describe('after a withdrawal from a study with edits of every kind', () => {
     ...Object.values(planted),
   ];
   let study: Planted;
+  let backups: BackupPlaces;
   beforeAll(async () => {
     study = await fullStudy();
     expect(foundDecoded(study, traces)).toEqual(traces);
+    backups = { folder: backupFolderBeside(study.file.path), keep: 3, earlier: [] };
+    expect(makeBackup(study.file, backups)).toMatchObject({ ok: true });
     const request = { participant: 'person-z', names: [name] };
     const plan = planWithdrawal(study.desk, request);
     const places = plan.ok ? plan.value.mentions.map(({ where }) => where) : [];
@@ -193,6 +203,14 @@ describe('after a withdrawal from a study with edits of every kind', () => {
   test('nothing of the person is in raw bytes, edits or blobs', () => {
     expect(foundIn(study.file.path, traces)).toEqual([]);
     expect(foundDecoded(study, traces)).toEqual([]);
+  });
+
+  test('nor in a backup, once backups are made anew', () => {
+    const [before] = listBackups(study.file, backups);
+    expect(foundIn(before!.path, traces)).toEqual(traces);
+    expect(rewriteBackups(study.file, backups)).toMatchObject({ failed: null, left: [] });
+    const after = listBackups(study.file, backups);
+    expect(after.map(({ path }) => foundIn(path, traces))).toEqual([[]]);
   });
 
   test('field notes on their transcripts went, and others lost the name alone', async () => {
